@@ -1,0 +1,99 @@
+"""A room: its outline, what stands in it, what opens in its walls, and where in the drawing it came from."""
+
+from dataclasses import dataclass
+from typing import Literal, NamedTuple
+
+import numpy as np
+
+from kernelscan.geometry.rings import Ring, signed_area
+
+__all__ = ["NameSource", "Obstacle", "Opening", "OpeningKind", "Room", "Source", "WallRef"]
+
+NameSource = Literal["label", "layer", "number"]
+OpeningKind = Literal["door", "window", "gap"]
+
+
+class WallRef(NamedTuple):
+    """One wall of a room: ring 0 is the outline and 1 … the obstacles; edge i runs from vertex i to the next."""
+
+    ring: int
+    edge: int
+
+
+@dataclass(frozen=True, slots=True)
+class Source:
+    """Where in the drawing something came from: the layer's name and the entity's handle."""
+
+    layer: str = ""
+    handle: str = ""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Obstacle:
+    """Something inside a room that blocks sight, such as a column; a clockwise ring in metres."""
+
+    ring: Ring
+    source: Source = Source()
+
+
+@dataclass(frozen=True, slots=True)
+class Opening:
+    """A wall edge that is a door, a window or a bare gap: it bounds the room, but carries no device."""
+
+    wall: WallRef
+    kind: OpeningKind
+    width: float
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Room:
+    """One room of a plan.
+
+    Attributes
+    ----------
+    id
+        ``R001`` and so on, unique in its plan.
+    name
+        What people call it; two rooms of a plan may share one.
+    name_from
+        Whether the name is a label inside the outline, the layer's name or only a number.
+    outline
+        ``(n, 2)`` counter-clockwise ring in metres.
+    obstacles, openings
+        What stands in the room, and the edges that are doors, windows or gaps.
+    source
+        Layer and handle of the outline.
+    """
+
+    id: str
+    name: str
+    outline: Ring
+    obstacles: tuple[Obstacle, ...] = ()
+    openings: tuple[Opening, ...] = ()
+    name_from: NameSource = "number"
+    source: Source = Source()
+
+    @property
+    def holes(self) -> tuple[Ring, ...]:
+        """The obstacles' rings, clockwise."""
+        return tuple(obstacle.ring for obstacle in self.obstacles)
+
+    @property
+    def rings(self) -> tuple[Ring, ...]:
+        """The outline and then the holes: what a :class:`WallRef` counts in."""
+        return (self.outline, *self.holes)
+
+    @property
+    def area(self) -> float:
+        """Floor area in square metres, obstacles taken off."""
+        return float(sum(signed_area(ring) for ring in self.rings))
+
+    @property
+    def corner_count(self) -> int:
+        """How many corners the outline and the obstacles have."""
+        return sum(len(ring) for ring in self.rings)
+
+    def wall_ends(self, wall: WallRef) -> tuple[np.ndarray, np.ndarray]:
+        """Return the two ends of a wall, each ``(2,)`` in metres, in the ring's own direction."""
+        ring = self.rings[wall.ring]
+        return ring[wall.edge], ring[(wall.edge + 1) % len(ring)]

@@ -1,0 +1,5 @@
+"""Files into values: the only place that opens input, and the only place that knows drawing units."""
+
+from kernelscan.reading.plan_reader import read_plan
+
+__all__ = ["read_plan"]

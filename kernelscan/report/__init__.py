@@ -1,0 +1,1 @@
+"""The answers as data: JSON, CSV and terminal tables."""
