@@ -1,4 +1,4 @@
-"""kernelscan: where does one camera or line-of-sight sensor see every wall of a room?
+"""Find where one camera or line-of-sight sensor sees every wall of a room.
 
 ``read_plan`` turns a DXF into rooms, ``visibility_kernel`` gives the points that see every wall of one,
 ``verify_kernel`` checks such an answer exactly, and ``visible_region`` gives what one point sees.

@@ -1,0 +1,92 @@
+"""The program: its commands, and the one place where an error becomes a line and an exit code."""
+
+import os
+import sys
+from collections.abc import Sequence
+from typing import Annotated
+
+import typer
+from typer.exceptions import TyperException
+
+from kernelscan.cli.rooms import rooms
+from kernelscan.cli.zones import zones
+from kernelscan.errors import CertificateError, KernelscanError
+
+__all__ = ["app", "main", "run"]
+
+DONE, WRONG_INPUT, PROGRAM_FAULT, INTERRUPTED = 0, 2, 70, 130
+
+app = typer.Typer(
+    name="kernelscan",
+    help="Where does one camera or line-of-sight sensor see every wall of a room?",
+    epilog="The answer is a plan view. Local codes, the device's listing and the authority govern.",
+    no_args_is_help=True,
+    add_completion=False,
+    pretty_exceptions_enable=False,
+    rich_markup_mode=None,
+)
+
+
+def _print_version(wanted: bool) -> None:
+    if wanted:
+        from importlib.metadata import version
+
+        typer.echo(f"kernelscan {version('kernelscan')}")
+        raise typer.Exit
+
+
+@app.callback()
+def _program(
+    version: Annotated[
+        bool, typer.Option("--version", callback=_print_version, is_eager=True, help="Print the version.")
+    ] = False,
+) -> None:
+    pass
+
+
+app.command()(rooms)
+app.command()(zones)
+
+
+def run(arguments: Sequence[str]) -> int:
+    """Run one command line and return its exit code; errors are printed, never raised."""
+    command = typer.main.get_command(app)
+    try:
+        code = command.main(list(arguments), prog_name="kernelscan", standalone_mode=False)
+    except TyperException as error:
+        return _complain(f"{error.format_message()} See kernelscan --help.", WRONG_INPUT)
+    except CertificateError as error:
+        return _complain(
+            f"a fault of the program, please report it: {error}; nothing was written", PROGRAM_FAULT
+        )
+    except KernelscanError as error:
+        return _complain(str(error), WRONG_INPUT)
+    except (KeyboardInterrupt, EOFError):
+        return _complain("stopped", INTERRUPTED)
+    except BrokenPipeError:
+        # The reader of standard output has left; whatever is still buffered has nowhere to go.
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        return DONE
+    except Exception as error:
+        if "KERNELSCAN_DEBUG" in os.environ:
+            raise
+        return _complain(f"a fault of the program, please report it: {_brief(error)}", PROGRAM_FAULT)
+    return code if isinstance(code, int) else DONE
+
+
+def main() -> None:
+    """Run the command line of this process."""
+    sys.exit(run(sys.argv[1:]))
+
+
+def _complain(message: str, code: int) -> int:
+    print("kernelscan: " + " ".join(message.split()), file=sys.stderr)
+    return code
+
+
+def _brief(error: Exception) -> str:
+    trace = error.__traceback__
+    while trace is not None and trace.tb_next is not None:
+        trace = trace.tb_next
+    place = "" if trace is None else f" in {trace.tb_frame.f_code.co_name}, line {trace.tb_lineno}"
+    return f"{type(error).__name__}: {error}{place}; KERNELSCAN_DEBUG=1 shows all"

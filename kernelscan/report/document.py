@@ -1,0 +1,237 @@
+"""The report as data: the answers of one run in the shape that ``report.schema.json`` describes.
+
+Lengths are metres, areas square metres, angles degrees; a wall is ``[ring, edge]`` with ring 0 the outline and
+edge i running from vertex i to the next. Numbers are written as Python writes a float, so that reading them back
+gives the very same doubles.
+"""
+
+import json
+import re
+from collections.abc import Sequence
+from importlib.resources import files
+from math import degrees
+from typing import Any, NotRequired, TypedDict
+
+import numpy as np
+
+from kernelscan.coverage import RoomZones, Spot
+from kernelscan.coverage.cautions import CAUTIONS
+from kernelscan.geometry.kernel import Kernel
+from kernelscan.plan import Plan, Problem, Room
+
+__all__ = ["Report", "report_schema", "report_text", "rooms_report", "zones_report"]
+
+_PAIR = re.compile(r"\[\n\s*(-?[0-9][^,\s]*),\n\s*(-?[0-9][^,\s]*)\n\s*\]")
+
+FORMAT = "kernelscan-report"
+VERSION = 1
+
+Position = list[float]
+Wall = list[int]
+
+
+class PlanEntry(TypedDict):
+    """The drawing, its unit, and the rule by which rooms were found."""
+
+    file: str
+    unit: str
+    unit_from: str
+    room_rule: str
+
+
+class KernelEntry(TypedDict):
+    """The visibility kernel of one room."""
+
+    kind: str
+    vertices: list[Position]
+    area: float
+    walls: list[Wall]
+    conflict: list[Wall]
+
+
+class SpotEntry(TypedDict):
+    """A point where a device may be fixed, and what the device must be able to do there."""
+
+    mount: str
+    point: Position
+    field_of_view_deg: float
+    bearing_deg: float | None
+    farthest: float
+    tolerance: float
+    walls: list[Wall]
+
+
+class StretchEntry(TypedDict):
+    """A piece of one wall from which every wall is seen."""
+
+    wall: Wall
+    ends: list[Position]
+    length: float
+
+
+class ZonesEntry(TypedDict):
+    """Where one device sees every wall, by mount."""
+
+    ceiling: list[Position]
+    walls: list[StretchEntry]
+    corners: list[SpotEntry]
+
+
+class OpeningEntry(TypedDict):
+    """A wall that is a door, a window or a gap."""
+
+    wall: Wall
+    kind: str
+    width: float
+
+
+class RoomEntry(TypedDict):
+    """One room, with its answers when the command computed them."""
+
+    id: str
+    name: str
+    name_from: str
+    layer: str
+    handle: str
+    outline: list[Position]
+    holes: list[list[Position]]
+    area: float
+    openings: list[OpeningEntry]
+    kernel: NotRequired[KernelEntry]
+    zones: NotRequired[ZonesEntry]
+    recommended: NotRequired[list[SpotEntry]]
+
+
+class ProblemEntry(TypedDict):
+    """Something that was met while reading."""
+
+    code: str
+    message: str
+    at: Position | None
+    layer: str
+    handle: str
+
+
+class Report(TypedDict):
+    """The whole document."""
+
+    format: str
+    version: int
+    plan: PlanEntry
+    rooms: list[RoomEntry]
+    problems: list[ProblemEntry]
+    cautions: list[str]
+
+
+def rooms_report(plan: Plan) -> Report:
+    """Return the report of the rooms alone, as the ``rooms`` command writes it."""
+    return _report(plan, [_room(room) for room in plan.rooms])
+
+
+def zones_report(plan: Plan, answers: Sequence[RoomZones]) -> Report:
+    """Return the report of every answered room, as the ``zones`` command writes it."""
+    return _report(plan, [_answered(zones) for zones in answers])
+
+
+def report_text(report: Report) -> str:
+    """Return the document as JSON text, each position on one line; the same report always gives the same text."""
+    text = json.dumps(report, ensure_ascii=False, indent=1, allow_nan=False)
+    # A raw line break never stands inside a JSON string, so this touches pairs of numbers only.
+    return _PAIR.sub(r"[\1, \2]", text) + "\n"
+
+
+def report_schema() -> dict[str, Any]:
+    """Return the JSON Schema (draft 2020-12) that every report keeps to."""
+    text = files("kernelscan.report").joinpath("report.schema.json").read_text(encoding="utf-8")
+    schema: dict[str, Any] = json.loads(text)
+    return schema
+
+
+def _report(plan: Plan, rooms: list[RoomEntry]) -> Report:
+    return {
+        "format": FORMAT,
+        "version": VERSION,
+        "plan": {
+            "file": plan.file,
+            "unit": plan.unit.name,
+            "unit_from": plan.unit_from,
+            "room_rule": plan.room_rule,
+        },
+        "rooms": rooms,
+        "problems": [_problem(problem) for problem in plan.problems],
+        "cautions": list(CAUTIONS),
+    }
+
+
+def _room(room: Room) -> RoomEntry:
+    return {
+        "id": room.id,
+        "name": room.name,
+        "name_from": room.name_from,
+        "layer": room.source.layer,
+        "handle": room.source.handle,
+        "outline": _positions(room.outline),
+        "holes": [_positions(hole) for hole in room.holes],
+        "area": room.area,
+        "openings": [
+            {"wall": list(opening.wall), "kind": opening.kind, "width": opening.width}
+            for opening in room.openings
+        ],
+    }
+
+
+def _answered(zones: RoomZones) -> RoomEntry:
+    entry = _room(zones.room)
+    entry["kernel"] = _kernel(zones.kernel)
+    entry["zones"] = {
+        "ceiling": [] if zones.ceiling is None else _positions(zones.ceiling.vertices),
+        "walls": [
+            {"wall": list(zone.wall), "ends": _positions(zone.ends), "length": zone.length}
+            for zone in zones.walls
+        ],
+        "corners": [_spot(zone.spot) for zone in zones.corners],
+    }
+    entry["recommended"] = [_spot(spot) for spot in zones.recommended]
+    return entry
+
+
+def _kernel(kernel: Kernel) -> KernelEntry:
+    return {
+        "kind": kernel.kind,
+        "vertices": _positions(kernel.vertices),
+        "area": kernel.area,
+        "walls": _walls(kernel.walls),
+        "conflict": _walls(kernel.conflict),
+    }
+
+
+def _spot(spot: Spot) -> SpotEntry:
+    return {
+        "mount": spot.mount,
+        "point": [float(value) for value in spot.point],
+        "field_of_view_deg": degrees(spot.field_of_view),
+        "bearing_deg": None if spot.bearing is None else degrees(spot.bearing),
+        "farthest": spot.farthest,
+        "tolerance": spot.tolerance,
+        "walls": [list(wall) for wall in spot.walls],
+    }
+
+
+def _problem(problem: Problem) -> ProblemEntry:
+    return {
+        "code": problem.code,
+        "message": problem.message,
+        "at": None if problem.at is None else [float(value) for value in problem.at],
+        "layer": problem.source.layer,
+        "handle": problem.source.handle,
+    }
+
+
+def _positions(points: np.ndarray) -> list[Position]:
+    positions: list[Position] = points.tolist()
+    return positions
+
+
+def _walls(walls: np.ndarray) -> list[Wall]:
+    pairs: list[Wall] = walls.tolist()
+    return pairs

@@ -1,0 +1,115 @@
+"""Terminal tables: what a run found, for reading at a glance; full figures stand in the report."""
+
+from collections.abc import Sequence
+from math import ceil, degrees, log10
+from typing import TextIO
+
+from rich.console import Console
+from rich.table import Table
+from rich.text import Text
+
+from kernelscan.coverage import RoomZones, Spot
+from kernelscan.plain_text import plain_text
+from kernelscan.plan import Plan, Problem
+from kernelscan.report.schedule import kernel_in_words
+from kernelscan.units import feet_and_inches
+
+__all__ = ["print_problems", "print_rooms", "print_zones"]
+
+PIPE_WIDTH = 160
+"""Columns when the output is not a terminal, so that a redirected table is not folded to 80."""
+
+
+def print_rooms(plan: Plan, out: TextIO) -> None:
+    """Print a row for each room: what it is, how large, and what stands or opens in it."""
+    table = _table("room", "name", "area", "corners", "openings", "obstacles", "layer")
+    for room in plan.rooms:
+        table.add_row(
+            room.id,
+            _cell(room.name),
+            f"{room.area:.2f} m2",
+            str(room.corner_count),
+            str(len(room.openings)),
+            str(len(room.obstacles)),
+            _cell(room.source.layer),
+        )
+    _print(out, _heading(plan), table)
+
+
+def print_zones(plan: Plan, answers: Sequence[RoomZones], out: TextIO) -> None:
+    """Print for each room the kernel and the recommended spot of each mount, or why there is none."""
+    table = _table(
+        "room", "name", "area", "sees every wall", "mount", "x", "y", "field", "range", "may be off by"
+    )
+    for zones in answers:
+        room = zones.room
+        head = [room.id, _cell(room.name), f"{room.area:.2f} m2", kernel_in_words(zones)]
+        for spot in zones.recommended or (None,):
+            table.add_row(*head, *(["–"] * 6 if spot is None else _spot_cells(plan, spot)))
+            head = [""] * 4
+    _print(out, _heading(plan), table)
+
+
+def print_problems(plan: Plan, out: TextIO) -> None:
+    """Print each problem of the drawing with its place, layer and handle."""
+    if plan.problems:
+        _print(out, "Notes on the drawing:", *(_problem(plan, each) for each in plan.problems))
+
+
+def _heading(plan: Plan) -> str:
+    said_by = "its header" if plan.unit_from == "header" else "the option"
+    rule = plain_text(plan.room_rule, 400)
+    return f"{plain_text(plan.file)}: {_count(len(plan.rooms), 'room')}; unit {plan.unit.name}, from {said_by}. {rule}"
+
+
+def _count(number: int, noun: str) -> str:
+    return f"{number} {noun}" if number == 1 else f"{number} {noun}s"
+
+
+def _spot_cells(plan: Plan, spot: Spot) -> list[str]:
+    return [
+        spot.mount,
+        *(_coordinate(plan, float(value)) for value in spot.point),
+        f"{degrees(spot.field_of_view):.0f} deg",
+        _length(plan, spot.farthest),
+        _length(plan, spot.tolerance),
+    ]
+
+
+def _coordinate(plan: Plan, metres: float) -> str:
+    """A position as the drawing counts it, to a millimetre or finer."""
+    decimals = max(0, ceil(log10(plan.unit.metres / 0.001)))
+    return f"{metres / plan.unit.metres:.{decimals}f}"
+
+
+def _length(plan: Plan, metres: float) -> str:
+    return feet_and_inches(metres) if plan.unit.imperial else f"{metres:.2f} m"
+
+
+def _problem(plan: Plan, problem: Problem) -> str:
+    place = [
+        f"at ({', '.join(_coordinate(plan, value) for value in problem.at)}) {plan.unit.name}"
+        if problem.at
+        else "",
+        f"layer {plain_text(problem.source.layer)}" if problem.source.layer else "",
+        f"handle {plain_text(problem.source.handle)}" if problem.source.handle else "",
+    ]
+    where = ", ".join(part for part in place if part)
+    return f"  {problem.code}: {plain_text(problem.message, 400)}" + (f" ({where})" if where else "")
+
+
+def _table(*columns: str) -> Table:
+    table = Table(box=None, pad_edge=False, header_style="bold")
+    for column in columns:
+        table.add_column(column, overflow="fold")
+    return table
+
+
+def _cell(text: str) -> Text:
+    return Text(plain_text(text, 40))
+
+
+def _print(out: TextIO, *parts: str | Table) -> None:
+    console = Console(file=out, highlight=False, width=None if out.isatty() else PIPE_WIDTH)
+    for part in parts:
+        console.print(Text(part) if isinstance(part, str) else part, soft_wrap=isinstance(part, str))
