@@ -1,18 +1,100 @@
 """Polygon overlay and spatial search: the one module that knows shapely, behind a few functions on arrays.
 
 Shapely works in doubles and rounds what it constructs. Nothing here decides a kernel or a visible region; it
-serves where a rounded answer is right (areas for a table, label points, joining obstacles with walls) or where
+serves where a rounded answer is right (areas for a table, label points, joining an obstacle with a wall) or where
 only candidates are wanted, which others then settle exactly.
+
+All points are ``(n, 2)`` float64, all lengths in whatever unit comes in. Outlines come back counter-clockwise and
+holes clockwise, without a repeated last point; they are rounded, so :func:`kernelscan.geometry.rings.as_ring`
+has the last word on whether they are rings.
 """
+
+from collections.abc import Iterable, Sequence
+from typing import NamedTuple
+
+from collections.abc import Sequence
 
 import numpy as np
 import numpy.typing as npt
 import shapely
 
-__all__ = ["overlapping_boxes"]
+__all__ = [
+    "Patch",
+    "area",
+    "common_area",
+    "covers_points",
+    "difference",
+    "faces_of_lines",
+    "interior_point",
+    "intersection",
+    "noded_lines",
+    "overlapping_boxes",
+    "union",
+]
 
 Floats = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.intp]
+
+
+class Patch(NamedTuple):
+    """A connected piece of the plane: its outline and the holes in it, in either direction."""
+
+    outline: npt.ArrayLike
+    holes: Sequence[npt.ArrayLike] = ()
+
+
+def area(patch: Patch) -> float:
+    """Return the area of a patch, its holes taken off."""
+    return float(_polygon(patch).area)
+
+
+def common_area(a: Patch, b: Patch) -> float:
+    """Return the area of what two patches share."""
+    return float(_polygon(a).intersection(_polygon(b)).area)
+
+
+def covers_points(patch: Patch, points: npt.ArrayLike) -> npt.NDArray[np.bool_]:
+    """Return for each point, ``(k,)``, whether it lies in the patch or on its edge, as far as doubles can say."""
+    xy = np.asarray(points, dtype=np.float64).reshape(-1, 2)
+    polygon = _polygon(patch)
+    shapely.prepare(polygon)
+    return np.asarray(shapely.intersects_xy(polygon, xy[:, 0], xy[:, 1]))
+
+
+def union(patches: Iterable[Patch]) -> list[Patch]:
+    """Return what any of the patches covers, in pieces of some area."""
+    return _patches(shapely.union_all([_polygon(patch) for patch in patches]))
+
+
+def intersection(a: Patch, b: Patch) -> list[Patch]:
+    """Return what both patches cover, in pieces of some area."""
+    return _patches(_polygon(a).intersection(_polygon(b)))
+
+
+def difference(a: Patch, others: Iterable[Patch]) -> list[Patch]:
+    """Return what is left of a patch without the others, in pieces of some area."""
+    return _patches(_polygon(a).difference(shapely.union_all([_polygon(other) for other in others])))
+
+
+def interior_point(outline: npt.ArrayLike, holes: Sequence[npt.ArrayLike] = ()) -> tuple[float, float]:
+    """Return a point well inside, for a label: the centre of the largest disc that fits, to a hundredth of the size."""
+    polygon = _polygon(Patch(outline, holes))
+    low_x, low_y, high_x, high_y = polygon.bounds
+    tolerance = max(high_x - low_x, high_y - low_y) / 100
+    x, y = shapely.maximum_inscribed_circle(polygon, tolerance).coords[0]
+    return float(x), float(y)
+
+
+def noded_lines(lines: Iterable[npt.ArrayLike]) -> list[Floats]:
+    """Return the lines, each ``(k, 2)``, cut wherever two of them meet."""
+    noded = shapely.node(shapely.MultiLineString([np.asarray(line, dtype=np.float64) for line in lines]))
+    return [shapely.get_coordinates(line) for line in shapely.get_parts(noded)]
+
+
+def faces_of_lines(lines: Iterable[npt.ArrayLike]) -> list[Patch]:
+    """Return the bounded faces between lines that meet only at their ends, such as :func:`noded_lines` makes."""
+    strings = [shapely.LineString(np.asarray(line, dtype=np.float64)) for line in lines]
+    return _patches(shapely.polygonize(strings))
 
 
 def overlapping_boxes(low: Floats, high: Floats) -> tuple[Indices, Indices]:
@@ -21,3 +103,68 @@ def overlapping_boxes(low: Floats, high: Floats) -> tuple[Indices, Indices]:
     i, j = shapely.STRtree(boxes).query(boxes)
     once = i < j
     return i[once], j[once]
+
+
+def _polygon(patch: Patch) -> shapely.Polygon:
+    return shapely.Polygon(patch.outline, patch.holes)
+
+
+def _patches(geometry: shapely.Geometry) -> list[Patch]:
+    """Return the polygons of whatever an overlay gives, without the points and lines that it may give as well."""
+    polygons = [part for part in _leaves(geometry) if isinstance(part, shapely.Polygon) and part.area > 0]
+    return [
+        Patch(_open(part.exterior, ccw=True), tuple(_open(ring, ccw=False) for ring in part.interiors))
+        for part in polygons
+    ]
+
+
+def _leaves(geometry: shapely.Geometry) -> Iterable[shapely.Geometry]:
+    if not hasattr(geometry, "geoms"):
+        return [geometry]
+    return [leaf for part in geometry.geoms for leaf in _leaves(part)]
+
+
+def _open(ring: shapely.LinearRing, *, ccw: bool) -> Floats:
+    points = shapely.get_coordinates(ring)[:-1]
+    return points if ring.is_ccw == ccw else points[::-1].copy()
+
+
+def are_simple(rings: Sequence[Floats]) -> npt.NDArray[np.bool_]:
+    """Return for each ring, ``(n, 2)`` in either direction, whether it is simple: no crossing, no touching."""
+    return np.asarray(shapely.is_valid(_polygons(rings)), dtype=bool)
+
+
+def overlap_areas(first: Sequence[Floats], second: Sequence[Floats]) -> tuple[Indices, Indices, Floats]:
+    """Return the pairs (i of the first, j of the second) of simple rings that overlap, and the area they share."""
+    ours, theirs = _polygons(first), _polygons(second)
+    i, j = shapely.STRtree(theirs).query(ours)
+    boxes, others = shapely.bounds(ours)[i], shapely.bounds(theirs)[j]
+    shared = np.minimum(boxes[:, 2:], others[:, 2:]) - np.maximum(boxes[:, :2], others[:, :2])
+    near = (shared > 0).all(axis=1)
+    i, j = i[near], j[near]
+    area = shapely.area(shapely.intersection(ours[i], theirs[j]))
+    return i[area > 0], j[area > 0], area[area > 0]
+
+
+def rings_around(rings: Sequence[Floats], points: Floats) -> tuple[Indices, Indices]:
+    """Return the pairs (k of a point, i of a ring) where the point, ``(m, 2)``, lies within the simple ring."""
+    k, i = shapely.STRtree(_polygons(rings)).query(shapely.points(points), predicate="within")
+    return k, i
+
+
+def cut_out(outline: Floats, obstacles: Sequence[Floats]) -> list[list[Floats]]:
+    """Return what is left of a simple ring without the obstacles: per piece its outline and its holes, largest first."""
+    rest = shapely.difference(shapely.Polygon(outline), shapely.union_all(_polygons(obstacles)))
+    pieces = [piece for piece in shapely.get_parts(rest) if piece.geom_type == "Polygon" and piece.area > 0]
+    pieces.sort(key=lambda piece: -piece.area)
+    return [
+        [shapely.get_coordinates(ring)[:-1] for ring in (piece.exterior, *piece.interiors)] for piece in pieces
+    ]
+
+
+def _polygons(rings: Sequence[Floats]) -> npt.NDArray[np.object_]:
+    if not len(rings):
+        return np.empty(0, dtype=object)
+    counts = [len(ring) for ring in rings]
+    lines = shapely.linearrings(np.concatenate(rings), indices=np.repeat(np.arange(len(rings)), counts))
+    return np.asarray(shapely.polygons(lines), dtype=object)
