@@ -16,12 +16,12 @@ from straight_plans import annex, mezzanine, studios, workshop
 __all__ = ["SAMPLES", "main"]
 
 SAMPLES: dict[str, Callable[[], Drawing]] = {
-    "workshop": workshop,
-    "library": library,
-    "annex": annex,
-    "studios": studios,
+    "workshop-ground-floor": workshop,
+    "library-wing": library,
+    "annex-feet-and-inches": annex,
+    "studios-in-blocks": studios,
     "mezzanine": mezzanine,
-    "pavilion": pavilion,
+    "pavilion-on-survey-grid": pavilion,
 }
 """File names without ``.dxf``, and what draws them."""
 

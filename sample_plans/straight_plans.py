@@ -58,7 +58,7 @@ def workshop() -> Drawing:
     _furnish_workshop(pen)
     pen.dimension((0, 0), (18600, 0), 900)
     pen.dimension((0, 12600), (0, 0), 900)
-    pen.dimension((300, 300), (8300, 300), -4700)
+    pen.dimension((300, 300), (8300, 300), -4300)
     pen.note("WORKSHOP AND READING ROOM, GROUND FLOOR, DIMENSIONS IN MILLIMETRES", (0, -1900))
     doc.layers.add("A-AREA-PREV", color=8).off()
     pen.closed("A-AREA-PREV", rectangle(3500, 8500, 11300, 12300))
