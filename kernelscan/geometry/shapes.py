@@ -12,14 +12,13 @@ has the last word on whether they are rings.
 from collections.abc import Iterable, Sequence
 from typing import NamedTuple
 
-from collections.abc import Sequence
-
 import numpy as np
 import numpy.typing as npt
 import shapely
 
 __all__ = [
     "Patch",
+    "are_simple",
     "area",
     "common_area",
     "covers_points",
@@ -28,7 +27,9 @@ __all__ = [
     "interior_point",
     "intersection",
     "noded_lines",
+    "overlap_areas",
     "overlapping_boxes",
+    "rings_around",
     "union",
 ]
 
@@ -150,16 +151,6 @@ def rings_around(rings: Sequence[Floats], points: Floats) -> tuple[Indices, Indi
     """Return the pairs (k of a point, i of a ring) where the point, ``(m, 2)``, lies within the simple ring."""
     k, i = shapely.STRtree(_polygons(rings)).query(shapely.points(points), predicate="within")
     return k, i
-
-
-def cut_out(outline: Floats, obstacles: Sequence[Floats]) -> list[list[Floats]]:
-    """Return what is left of a simple ring without the obstacles: per piece its outline and its holes, largest first."""
-    rest = shapely.difference(shapely.Polygon(outline), shapely.union_all(_polygons(obstacles)))
-    pieces = [piece for piece in shapely.get_parts(rest) if piece.geom_type == "Polygon" and piece.area > 0]
-    pieces.sort(key=lambda piece: -piece.area)
-    return [
-        [shapely.get_coordinates(ring)[:-1] for ring in (piece.exterior, *piece.interiors)] for piece in pieces
-    ]
 
 
 def _polygons(rings: Sequence[Floats]) -> npt.NDArray[np.object_]:
