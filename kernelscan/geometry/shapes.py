@@ -126,7 +126,7 @@ def _leaves(geometry: shapely.Geometry) -> Iterable[shapely.Geometry]:
 
 
 def _open(ring: shapely.LinearRing, *, ccw: bool) -> Floats:
-    points = shapely.get_coordinates(ring)[:-1]
+    points: Floats = shapely.get_coordinates(ring)[:-1]
     return points if ring.is_ccw == ccw else points[::-1].copy()
 
 
