@@ -17,8 +17,11 @@ class Tolerances:
         Ends of drawn lines nearer than this are one point.
     smallest_room
         A closed outline under this area is not taken for a room by content.
+    thickest_wall
+        A strip narrower than this is the body of a wall, not a room.
     """
 
     chord: float = 0.001
     snap: float = 0.005
     smallest_room: float = 1.5
+    thickest_wall: float = 0.6

@@ -1,0 +1,78 @@
+"""The drawing's unit: what the option says, else what the header says, else an error that helps to choose.
+
+A header is wrong more often than not in drawings that people exchange, so its word is checked: when it makes the
+median room smaller than a cupboard or larger than a stadium, that is a problem of the plan.
+"""
+
+from collections.abc import Callable, Sequence
+from statistics import median
+
+from ezdxf.document import Drawing
+
+from kernelscan.errors import InputError
+from kernelscan.plan import Problem
+from kernelscan.plan.plan import UnitSource
+from kernelscan.units import HEADER_UNITS, OPTION_UNITS, Unit, unit_by_name
+
+__all__ = ["absurd_unit", "drawing_unit", "no_unit"]
+
+PROPOSED = ("mm", "cm", "m", "in", "ft")
+SMALLEST_MEDIAN, LARGEST_MEDIAN = 0.5, 5000.0
+
+
+def drawing_unit(drawing: Drawing, option: str | None) -> tuple[Unit, UnitSource] | None:
+    """Return the unit and who said so; ``None`` when nobody does.
+
+    Raises
+    ------
+    InputError
+        If the option names no unit.
+    """
+    if option is not None:
+        if option not in OPTION_UNITS:
+            raise InputError(f"--unit: got {option!r}, expected one of {', '.join(OPTION_UNITS)}")
+        return unit_by_name(option), "option"
+    code = drawing.header.get("$INSUNITS", 0)
+    unit = HEADER_UNITS.get(code) if isinstance(code, int) else None
+    return (unit, "header") if unit else None
+
+
+def no_unit(file: str, code: object, areas_in: Callable[[float], Sequence[float]]) -> InputError:
+    """Return the error for a drawing without a unit: what its rooms would measure under each likely one.
+
+    Parameters
+    ----------
+    file
+        The drawing's name.
+    code
+        What its header says.
+    areas_in
+        Gives the rooms' areas in square metres for a number of metres per drawing unit.
+    """
+    said = "says no unit" if code in (0, None) else f"says unit {code!r}, which does not exist"
+    return InputError(f"{file}: the header ($INSUNITS) {said}; {_choices(areas_in)}; give --unit")
+
+
+def absurd_unit(
+    areas: Sequence[float], unit: Unit, areas_in: Callable[[float], Sequence[float]]
+) -> list[Problem]:
+    """Return a problem if the header's unit makes the median room under 0.5 m2 or over 5,000 m2."""
+    if not areas or SMALLEST_MEDIAN <= median(areas) <= LARGEST_MEDIAN:
+        return []
+    text = (
+        f"the header's unit, {unit.name}, makes the median room {_square_metres(median(areas))}; "
+        f"{_choices(areas_in)}; give the right one by --unit"
+    )
+    return [Problem("absurd-unit", text)]
+
+
+def _choices(areas_in: Callable[[float], Sequence[float]]) -> str:
+    parts = []
+    for name in PROPOSED:
+        areas = areas_in(unit_by_name(name).metres)
+        parts.append(f"{_square_metres(median(areas))} in {name}" if areas else f"no room in {name}")
+    return "the median room would measure " + ", ".join(parts)
+
+
+def _square_metres(area: float) -> str:
+    return f"{area:,.2f} m2" if 0.01 <= area < 1e6 else f"{area:.1e} m2"
