@@ -1,0 +1,200 @@
+"""The tags of the plan: letters at the points and at the walls in conflict, and one tag a room.
+
+A room's tag says as much as its room holds: number, name, area and kernel; else number, name and kernel; else number
+and kernel; else the number. Where not even that fits, the tag stands outside at the end of a leader line. What finds
+no place at all is returned by name, so that the sheet can say so.
+"""
+
+from collections.abc import Iterator, Sequence
+
+import numpy as np
+
+from kernelscan.coverage import RoomZones
+from kernelscan.markup.drawing import conflict_walls, corner_ring, seeing_arrow
+from kernelscan.markup.labels import Label, Line, boxes_around, dot, leader, nearest_in
+from kernelscan.markup.placing import Occupied, boxes_inside, inner_points
+from kernelscan.markup.scene import Box, Item, Point
+from kernelscan.markup.style import CONFLICT_LETTERS, HEADING, MARKS, SYMBOL_RADIUS, WALL_BAND
+from kernelscan.markup.symbols import box_around, spot_ring
+from kernelscan.markup.text import clean_text, wrapped
+from kernelscan.markup.view import PlanView
+from kernelscan.markup.wording import Custom, kernel_in_words
+
+__all__ = ["Tags", "placed_tags"]
+
+WIDEST_NAME = 36.0
+"""A longer name is wrapped over two lines, in millimetres."""
+NEAR = (SYMBOL_RADIUS + 0.3, SYMBOL_RADIUS + 1.0, SYMBOL_RADIUS + 2.0, SYMBOL_RADIUS + 3.5)
+FAR = (6.0, 9.0, 13.0, 18.0, 24.0)
+BAND, EDGE = (np.array([-border, -border, border, border]) for border in (WALL_BAND + 0.6, 0.7))
+"""What is added to a box so that it keeps off the band of a wall zone, or at least off the line of the wall."""
+OUTSIDE = (4.0, 8.0, 13.0, 19.0, 26.0, 34.0, 45.0, 60.0)
+
+
+class Tags:
+    """What has been placed so far.
+
+    Attributes
+    ----------
+    items
+        Labels and leaders in painting order.
+    missing
+        What found no place, by room and letter.
+    """
+
+    def __init__(self, window: Box) -> None:
+        self.items: list[Item] = []
+        self.missing: list[str] = []
+        self.taken = Occupied(window)
+        """What no label may touch."""
+        self.shy = Occupied(window)
+        """What a label keeps off if it can: the borders of zones."""
+
+    def put(self, label: Label, box: Box, foot: Point | None = None) -> None:
+        """Draw a label in a box and keep the place, tied to a point by a leader where one is given."""
+        self.taken.add(box)
+        if foot is not None:
+            self.taken.add_line(foot, nearest_in(foot, box))
+            self.items += [leader(foot, box), dot(foot)]
+        self.items += label.items(box)
+
+
+def placed_tags(answers: Sequence[RoomZones], view: PlanView, custom: Custom) -> Tags:
+    """Return every tag of the plan, none touching another, a symbol or a wall in conflict."""
+    tags = Tags(view.box)
+    rings = [tuple(view.to_paper(ring) for ring in zones.room.rings) for zones in answers]
+    for zones in answers:
+        _keep_marks_clear(zones, view, tags)
+    for zones, room_rings in zip(answers, rings, strict=True):
+        for letter, at in _letters(zones, view):
+            _place_letter(letter, at, zones.room.id, room_rings, tags)
+    homeless = [
+        (zones, room_rings)
+        for zones, room_rings in zip(answers, rings, strict=True)
+        if not _place_inside(zones, room_rings, custom, tags)
+    ]
+    outlines = np.concatenate([_edges(room_rings[0]) for room_rings in rings]) if rings else np.empty((0, 4))
+    for zones, room_rings in homeless:
+        _place_outside(zones, room_rings, custom, outlines, tags)
+    return tags
+
+
+def _keep_marks_clear(zones: RoomZones, view: PlanView, tags: Tags) -> None:
+    for spot in zones.recommended:
+        tags.taken.add(box_around(spot_ring(spot, view.point(spot.point))))
+    for corner in zones.corners:
+        tags.shy.add(box_around(corner_ring(zones.room, corner, view)))
+    for wall in conflict_walls(zones):
+        start, end = zones.room.wall_ends(wall)
+        foot, tip = seeing_arrow(zones.room, wall, view)
+        tags.taken.add_line(view.point(start), view.point(end))
+        tags.taken.add(box_around((foot, tip)).grown(0.6))
+    ceiling = view.ring(zones.ceiling.vertices) if zones.ceiling is not None else ()
+    for start_point, end_point in zip(ceiling, ceiling[1:] + ceiling[:1], strict=True):
+        tags.shy.add_line(start_point, end_point)
+
+
+def _letters(zones: RoomZones, view: PlanView) -> Iterator[tuple[Label, Point]]:
+    for spot in zones.recommended:
+        yield Label((Line(MARKS[spot.mount].letter, bold=True),)), view.point(spot.point)
+    for letter, wall in zip(CONFLICT_LETTERS, conflict_walls(zones), strict=False):
+        foot, tip = seeing_arrow(zones.room, wall, view)
+        middle = (foot[0] + tip[0]) / 2, (foot[1] + tip[1]) / 2
+        yield Label((Line(letter, bold=True, height=HEADING),)), middle
+
+
+def _place_letter(letter: Label, at: Point, room: str, rings: tuple[np.ndarray, ...], tags: Tags) -> None:
+    """Place the letter of a point or a wall beside it, in its own room and off the zones' borders if it can."""
+    near = list(boxes_around(at, letter, NEAR, directions=16))
+    within, roomy = (
+        [
+            box
+            for box, wholly in zip(near, boxes_inside(rings, np.array(near) + border), strict=True)
+            if wholly
+        ]
+        for border in (0.0, BAND)
+    )
+    shy = [box for box in roomy if tags.shy.takes(box)]
+    for box in (*shy, *roomy, *within, *near):
+        if tags.taken.takes(box):
+            tags.put(letter, box)
+            return
+    for box in boxes_around(at, letter, FAR, directions=16):
+        if tags.taken.takes(box):
+            tags.put(letter, box, at)
+            return
+    tags.missing.append(f"{room} {letter.lines[0].string}")
+
+
+def _variants(zones: RoomZones, custom: Custom) -> Iterator[Label]:
+    """Yield a room's tag, the fullest first."""
+    number = Line(zones.room.id, bold=True)
+    name = _name_lines(zones)
+    area = Line(f"{custom.area(zones.room.area)} {custom.area_unit}")
+    kernel = _kernel_line(zones, custom)
+    yield Label((number, *name, area, kernel))
+    yield Label((number, *name, kernel))
+    yield Label((number, kernel))
+    yield Label((number,))
+
+
+def _kernel_line(zones: RoomZones, custom: Custom) -> Line:
+    words = kernel_in_words(zones, custom)
+    return Line(words if zones.kernel.kind == "empty" else f"kernel: {words.removeprefix('area ')}")
+
+
+def _name_lines(zones: RoomZones) -> tuple[Line, ...]:
+    name = clean_text(zones.room.name)
+    if name == zones.room.id:
+        return ()
+    return tuple(Line(line) for line in wrapped(name, WIDEST_NAME, 2.5, most=2))
+
+
+def _place_inside(zones: RoomZones, rings: tuple[np.ndarray, ...], custom: Custom, tags: Tags) -> bool:
+    """Place the fullest tag that the room holds, off its walls and its zones' borders if it can."""
+    middles = inner_points(rings)
+    for label in _variants(zones, custom):
+        for border, shy in ((BAND, True), (EDGE, False)):
+            half = np.array([label.width, label.height]) / 2
+            boxes = np.column_stack([middles - half, middles + half])
+            for sides in boxes[boxes_inside(rings, boxes + border)]:
+                box = Box(*(float(side) for side in sides))
+                if tags.taken.takes(box) and not (shy and not tags.shy.takes(box.grown(0.8))):
+                    tags.put(label, box)
+                    return True
+    return False
+
+
+def _place_outside(
+    zones: RoomZones, rings: tuple[np.ndarray, ...], custom: Custom, outlines: np.ndarray, tags: Tags
+) -> None:
+    """Place a tag at the end of a leader: clear of every room if it can, else on a room, else not at all."""
+    lines = (Line(zones.room.id, bold=True), *_name_lines(zones), _kernel_line(zones, custom))
+    label = Label(lines, framed=True)
+    foot = _pair(inner_points(rings)[0])
+    second: Box | None = None
+    for box in boxes_around(foot, label, OUTSIDE, directions=24):
+        if tags.taken.takes(box) and tags.taken.takes_line(foot, nearest_in(foot, box)):
+            if not _crosses(box, outlines):
+                tags.put(label, box, foot)
+                return
+            second = second or box
+    if second is not None:
+        tags.put(label, second, foot)
+        return
+    tags.missing.append(zones.room.id)
+
+
+def _edges(ring: np.ndarray) -> np.ndarray:
+    return np.column_stack([ring, np.roll(ring, -1, axis=0)])
+
+
+def _crosses(box: Box, edges: np.ndarray) -> bool:
+    """Whether the box of an edge meets the box of a label: coarse, and on the safe side."""
+    low, high = np.minimum(edges[:, :2], edges[:, 2:]), np.maximum(edges[:, :2], edges[:, 2:])
+    meets = (low < (box.right, box.top)).all(axis=1) & (high > (box.left, box.bottom)).all(axis=1)
+    return bool(meets.any())
+
+
+def _pair(point: np.ndarray) -> Point:
+    return float(point[0]), float(point[1])
