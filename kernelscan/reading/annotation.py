@@ -3,7 +3,11 @@
 from collections.abc import Iterator
 from math import cos, isfinite, radians, sin
 
-from ezdxf.entities import DXFEntity
+from ezdxf.entities.attrib import Attrib
+from ezdxf.entities.dimension import Dimension
+from ezdxf.entities.dxfentity import DXFEntity
+from ezdxf.entities.mtext import MText
+from ezdxf.entities.text import Text
 from ezdxf.enums import TextEntityAlignment as Align
 from ezdxf.tools.text import plain_mtext
 
@@ -21,24 +25,27 @@ LINE_PITCH = 1.6
 
 def label_of(entity: DXFEntity, layer: str) -> Label | None:
     """Return the label that a TEXT, MTEXT or ATTRIB makes, or ``None`` if it says nothing."""
-    if entity.dxf.hasattr("extrusion") and entity.dxf.extrusion.z < 0:
-        mirror = -1.0
-    else:
-        mirror = 1.0
-    if entity.dxftype() == "MTEXT":
+    mirror = -1.0 if entity.dxf.hasattr("extrusion") and entity.dxf.extrusion.z < 0 else 1.0
+    if isinstance(entity, MText):
         return _paragraph(entity, layer, mirror)
-    return _single_line(entity, layer, mirror)
+    return _single_line(entity, layer, mirror) if isinstance(entity, Text) else None
 
 
-def _single_line(entity: DXFEntity, layer: str, mirror: float) -> Label | None:
-    text = clean_text(entity.plain_text())
-    if entity.dxftype() == "ATTRIB" and entity.is_invisible:
+def _single_line(entity: Text, layer: str, mirror: float) -> Label | None:
+    if isinstance(entity, Attrib) and entity.is_invisible:
         return None
-    align, first, second = entity.get_placement()
+    raw = entity.dxf.text
+    text = clean_text(entity.plain_text() if "%%" in raw or "^" in raw else raw)
     height = float(entity.dxf.height)
-    place = first if second is None or align not in {Align.ALIGNED, Align.FIT} else first.lerp(second)
     wide = len(text) * height * SIGN_WIDTH
-    across, up = _offsets(align.name)
+    if not (entity.dxf.hasattr("halign") or entity.dxf.hasattr("valign")):
+        name, place = "LEFT", entity.dxf.insert
+    else:
+        align, place, second = entity.get_placement()
+        name = align.name
+        if second is not None and align in {Align.ALIGNED, Align.FIT}:
+            place = place.lerp(second)
+    across, up = _offsets(name)
     return _label(
         (text,),
         (place.x * mirror, place.y),
@@ -51,8 +58,8 @@ def _single_line(entity: DXFEntity, layer: str, mirror: float) -> Label | None:
     )
 
 
-def _paragraph(entity: DXFEntity, layer: str, mirror: float) -> Label | None:
-    lines = [clean_text(line) for line in plain_mtext(entity.text).split("\n")]
+def _paragraph(entity: MText, layer: str, mirror: float) -> Label | None:
+    lines = [clean_text(line) for line in plain_mtext(entity.text, split=True)]
     height = float(entity.dxf.char_height)
     wide = max((len(line) for line in lines), default=0) * height * SIGN_WIDTH
     column = (entity.dxf.attachment_point - 1) % 3
@@ -82,15 +89,15 @@ def _label(
     layer: str,
 ) -> Label | None:
     said = tuple(line for line in lines if line)
-    turn = radians(degrees)
-    x = place[0] + across * cos(turn) - up * sin(turn)
-    y = place[1] + across * sin(turn) + up * cos(turn)
+    cosine, sine = (cos(radians(degrees)), sin(radians(degrees))) if degrees else (1.0, 0.0)
+    x = place[0] + across * cosine - up * sine
+    y = place[1] + across * sine + up * cosine
     if not said or not all(map(isfinite, (*place, x, y, height))):
         return None
     return Label(said, (x, y), place, height, layer, entity.dxf.handle or "")
 
 
-def dimension_of(entity: DXFEntity) -> Iterator[MeasuredDimension]:
+def dimension_of(entity: Dimension) -> Iterator[MeasuredDimension]:
     """Return what a linear dimension measures, in drawing units; none for angles and for broken ones."""
     if entity.dimtype not in (0, 1):
         return

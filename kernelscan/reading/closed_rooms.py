@@ -34,6 +34,12 @@ SAME = 0.995
 FILLED = 0.6
 """An outline of which others fill this part is not a room but what holds them."""
 
+ROOM_SIZED = 4.0
+"""No table is as large as this, in square metres."""
+
+LEAST_OVERLAP = 1e-3
+"""Rooms that share less than this part of the smaller only touch."""
+
 INSIDE = 0.98
 """An outline of which this part lies in another is inside it."""
 
@@ -70,10 +76,10 @@ def chosen_outlines(
         layers = ", ".join(sorted({outline.stroke.layer for outline in named}))
         how = "named by --room-layer" if by_option else "whose names say room by convention"
         rule = f"Closed outlines on layers {how}: {layers or 'none found'}."
-        rooms, problems = _without_doubles(named)
+        rooms, problems = _without_doubles(named, by_content=False)
         return rooms, rule, problems
     candidates = [outline for outline in outlines if _may_be_room(outline, roles, tolerances)]
-    rooms, problems = _without_doubles(candidates)
+    rooms, problems = _without_doubles(candidates, by_content=True)
     rooms, inner = _without_inner(rooms)
     rule = (
         f"No layer's name says room, so by content: closed outlines of at least {tolerances.smallest_room:g} m2 "
@@ -97,60 +103,71 @@ def _is_symbol(blocks: str, roles: Mapping[str, LayerRole]) -> bool:
     return bool(words(blocks)) and roles[blocks].role in SYMBOL_ROLES if blocks else False
 
 
-def _without_doubles(outlines: Sequence[Outline]) -> tuple[list[Outline], list[Problem]]:
+def _without_doubles(outlines: Sequence[Outline], by_content: bool) -> tuple[list[Outline], list[Problem]]:
     """Leave out second copies and outlines that others fill; report these and every other overlap."""
-    problems = []
-    areas = np.array([outline.area for outline in outlines])
+    areas = np.array([outline.area for outline in outlines], dtype=np.float64)
     first, second, shared = _overlaps(outlines)
-    copy = shared >= SAME * np.maximum(areas[first], areas[second]) if len(first) else np.empty(0, dtype=bool)
-    gone: dict[int, int] = {}
-    for i, j in zip(first[copy].tolist(), second[copy].tolist(), strict=True):
-        if i not in gone and j not in gone:
-            gone[j] = i
-    for j, i in gone.items():
-        problems.append(
-            _problem("duplicate-outline", outlines[j], f"drawn twice; the first is {_where(outlines[i])}")
-        )
-    live = [k for k in range(len(first)) if first[k] not in gone and second[k] not in gone]
-    holders = _holders(live, first, second, shared, areas)
-    for i in sorted(holders):
-        problems.append(
-            _problem("outer-outline", outlines[i], "holds other rooms that fill it; not taken for a room")
-        )
-    for k in live:
-        i, j = int(first[k]), int(second[k])
-        if i not in holders and j not in holders and shared[k] > 1e-3 * min(areas[i], areas[j]):
-            text = f"overlaps {_where(outlines[j])} by {shared[k]:.2f} m2"
-            problems.append(_problem("overlapping-rooms", outlines[i], text))
-    return [outline for k, outline in enumerate(outlines) if k not in gone and k not in holders], problems
+    copies = _copies(first, second, shared >= SAME * np.maximum(areas[first], areas[second]))
+    live = [k for k in range(len(first)) if first[k] not in copies and second[k] not in copies]
+    holders = _holders(live, first, second, shared, areas, by_content)
+    problems = [
+        _problem("duplicate-outline", outlines[j], f"is drawn twice; the first is {_where(outlines[i])}")
+        for j, i in copies.items()
+    ]
+    problems += [
+        _problem("outer-outline", outlines[i], "holds rooms that fill it; not taken for one")
+        for i in sorted(holders)
+    ]
+    problems += [
+        _problem("overlapping-rooms", outlines[i], f"overlaps {_where(outlines[j])} by {shared[k]:.2f} m2")
+        for k, i, j in ((k, int(first[k]), int(second[k])) for k in live)
+        if not {i, j} & holders and shared[k] > LEAST_OVERLAP * min(areas[i], areas[j])
+    ]
+    return [outline for k, outline in enumerate(outlines) if k not in copies and k not in holders], problems
+
+
+def _copies(first: np.ndarray, second: np.ndarray, same: np.ndarray) -> dict[int, int]:
+    """Return the outlines that repeat another one, each with the one it repeats."""
+    copies: dict[int, int] = {}
+    for i, j in zip(first[same].tolist(), second[same].tolist(), strict=True):
+        if i not in copies and j not in copies:
+            copies[j] = i
+    return copies
 
 
 def _holders(
-    live: Sequence[int], first: np.ndarray, second: np.ndarray, shared: np.ndarray, areas: np.ndarray
+    live: Sequence[int],
+    first: np.ndarray,
+    second: np.ndarray,
+    shared: np.ndarray,
+    areas: np.ndarray,
+    by_content: bool,
 ) -> set[int]:
-    """Return the outlines that two or more others fill, or one that is not much smaller."""
+    """Return the outlines that others fill and, by content, those that hold two of a room's size or more."""
     filled: dict[int, float] = defaultdict(float)
+    held: dict[int, int] = defaultdict(int)
     for k in live:
         i, j = int(first[k]), int(second[k])
         outer, inner = (i, j) if areas[i] >= areas[j] else (j, i)
         if shared[k] >= INSIDE * areas[inner]:
             filled[outer] += float(shared[k])
-    return {k for k, area in filled.items() if area >= FILLED * areas[k]}
+            held[outer] += areas[inner] >= ROOM_SIZED
+    return {k for k in filled if filled[k] >= FILLED * areas[k] or (by_content and held[k] >= 2)}
 
 
 def _without_inner(outlines: Sequence[Outline]) -> tuple[list[Outline], list[Problem]]:
     """By content, what lies inside a room is something standing there; what it is, the drawing does not say."""
     first, second, shared = _overlaps(outlines)
     inner: dict[int, int] = {}
-    for i, j, area in zip(first.tolist(), second.tolist(), shared.tolist(), strict=True):
+    for i, j, common in zip(first.tolist(), second.tolist(), shared.tolist(), strict=True):
         small, large = (i, j) if outlines[i].area < outlines[j].area else (j, i)
-        if area >= INSIDE * outlines[small].area:
+        if common >= INSIDE * outlines[small].area:
             inner[small] = large
     problems = [
         _problem(
             "inner-outline",
             outlines[k],
-            f"lies inside {_where(outlines[home])} and is left out; if it blocks sight, name its layer by --obstacle-layer",
+            f"lies inside {_where(outlines[home])} and is left out; --obstacle-layer makes such things block sight",
         )
         for k, home in inner.items()
     ]
@@ -171,12 +188,12 @@ def with_obstacles(
     room_of, thing, shared = overlap_areas([r.ring for r in rooms], [o.ring for o in obstacles])
     inside: dict[int, list[Outline]] = defaultdict(list)
     problems = []
-    for i, j, area in zip(room_of.tolist(), thing.tolist(), shared.tolist(), strict=True):
-        if area >= 0.5 * rooms[i].area:
+    for i, j, common in zip(room_of.tolist(), thing.tolist(), shared.tolist(), strict=True):
+        if common >= 0.5 * rooms[i].area:
             problems.append(
                 _problem("obstacle-fills-room", obstacles[j], f"covers half of {_where(rooms[i])}; left out")
             )
-        elif area > snap * snap:
+        elif common > snap * snap:
             inside[i].append(obstacles[j])
     found = []
     for i, room in enumerate(rooms):

@@ -6,12 +6,22 @@ The points lie on the curve, so a flattened round room is never larger than the 
 bounded, whatever the size: no drawing can ask for endless work.
 """
 
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterable, Iterator
 from math import acos, atan, ceil, hypot, isfinite, pi, radians
 
 import numpy as np
 from ezdxf import path as paths
-from ezdxf.entities import DXFEntity
+from ezdxf.entities.arc import Arc
+from ezdxf.entities.circle import Circle
+from ezdxf.entities.dxfentity import DXFEntity
+from ezdxf.entities.ellipse import Ellipse
+from ezdxf.entities.line import Line
+from ezdxf.entities.lwpolyline import LWPolyline
+from ezdxf.entities.mline import MLine
+from ezdxf.entities.polygon import DXFPolygon
+from ezdxf.entities.polyline import Polyline
+from ezdxf.entities.solid import Solid
+from ezdxf.entities.spline import Spline
 from ezdxf.math import OCS, Z_AXIS, Vec2, Vec3, bulge_center
 
 __all__ = ["FLATTENED_KINDS", "flattened"]
@@ -43,44 +53,44 @@ def flattened(entity: DXFEntity, chord: float) -> Iterator[Flat]:
     return make(entity, chord) if make else iter(())
 
 
-def _line(entity: DXFEntity, _chord: float) -> Iterator[Flat]:
+def _line(entity: Line, _chord: float) -> Iterator[Flat]:
     start, end = entity.dxf.start, entity.dxf.end
     yield np.array(((start.x, start.y, start.z), (end.x, end.y, end.z))), False
 
 
-def _light_polyline(entity: DXFEntity, chord: float) -> Iterator[Flat]:
-    table = np.array(entity.lwpoints.values, dtype=float).reshape(-1, 5)
+def _light_polyline(entity: LWPolyline, chord: float) -> Iterator[Flat]:
+    table = np.array(entity.lwpoints.values, dtype=np.float64).reshape(-1, 5)
     points = _bulged(table[:, :2], table[:, 4], entity.closed, chord)
     level = entity.dxf.elevation if entity.dxf.hasattr("elevation") else 0.0
     spatial = np.column_stack((points, np.full(len(points), level)))
     yield _from_ocs(entity, spatial), bool(entity.closed)
 
 
-def _old_polyline(entity: DXFEntity, chord: float) -> Iterator[Flat]:
+def _old_polyline(entity: Polyline, chord: float) -> Iterator[Flat]:
     if entity.is_poly_face_mesh or entity.is_polygon_mesh:
         return
     drawn = [v for v in entity.vertices if not v.dxf.flags & 16]  # 16: frame of a fitted curve, not drawn
-    points = np.array([tuple(v.dxf.location) for v in drawn], dtype=float).reshape(-1, 3)
+    points = np.array([tuple(v.dxf.location) for v in drawn], dtype=np.float64).reshape(-1, 3)
     if entity.is_3d_polyline:
         yield points, bool(entity.is_closed)
         return
-    bulges = np.array([v.dxf.get("bulge", 0.0) for v in drawn], dtype=float)
+    bulges = np.array([v.dxf.get("bulge", 0.0) for v in drawn], dtype=np.float64)
     flat = _bulged(points[:, :2], bulges, bool(entity.is_closed), chord)
     level = points[0, 2] if len(points) else 0.0
     yield _from_ocs(entity, np.column_stack((flat, np.full(len(flat), level)))), bool(entity.is_closed)
 
 
-def _circle(entity: DXFEntity, chord: float) -> Iterator[Flat]:
+def _circle(entity: Circle, chord: float) -> Iterator[Flat]:
     yield _from_ocs(entity, _round_piece(entity, 0.0, 2 * pi, chord)[:-1]), True
 
 
-def _arc(entity: DXFEntity, chord: float) -> Iterator[Flat]:
+def _arc(entity: Arc, chord: float) -> Iterator[Flat]:
     start = radians(entity.dxf.start_angle)
     sweep = (radians(entity.dxf.end_angle) - start) % (2 * pi) or 2 * pi
     yield _from_ocs(entity, _round_piece(entity, start, sweep, chord)), False
 
 
-def _round_piece(entity: DXFEntity, start: float, sweep: float, chord: float) -> np.ndarray:
+def _round_piece(entity: Circle | Arc, start: float, sweep: float, chord: float) -> np.ndarray:
     centre, radius = entity.dxf.center, entity.dxf.radius
     if not radius > 0:
         raise ValueError(f"radius {radius:g}")
@@ -89,7 +99,7 @@ def _round_piece(entity: DXFEntity, start: float, sweep: float, chord: float) ->
     return np.column_stack((centre.x + radius * np.cos(angles), centre.y + radius * np.sin(angles), level))
 
 
-def _ellipse(entity: DXFEntity, chord: float) -> Iterator[Flat]:
+def _ellipse(entity: Ellipse, chord: float) -> Iterator[Flat]:
     fine = _bounded(chord, entity.dxf.major_axis.magnitude)
     sweep = (entity.dxf.end_param - entity.dxf.start_param) % (2 * pi)
     whole = sweep < 1e-9 or sweep > 2 * pi - 1e-9
@@ -97,16 +107,16 @@ def _ellipse(entity: DXFEntity, chord: float) -> Iterator[Flat]:
     yield (points[:-1] if whole else points), whole
 
 
-def _spline(entity: DXFEntity, chord: float) -> Iterator[Flat]:
+def _spline(entity: Spline, chord: float) -> Iterator[Flat]:
     frame = np.array(
-        [tuple(p) for p in entity.control_points] or [tuple(p) for p in entity.fit_points], dtype=float
+        [tuple(p) for p in entity.control_points] or [tuple(p) for p in entity.fit_points], dtype=np.float64
     )
     if len(frame) < 2 or not np.isfinite(frame).all():
         raise ValueError("too few control points")
     yield _array(entity.flattening(_bounded(chord, float(np.ptp(frame, axis=0).max())))), bool(entity.closed)
 
 
-def _hatch(entity: DXFEntity, chord: float) -> Iterator[Flat]:
+def _hatch(entity: DXFPolygon, chord: float) -> Iterator[Flat]:
     for path in paths.from_hatch(entity):
         size = max(
             (hypot(p.x - path.start.x, p.y - path.start.y) for p in path.control_vertices()), default=0.0
@@ -115,11 +125,11 @@ def _hatch(entity: DXFEntity, chord: float) -> Iterator[Flat]:
             yield _array(path.flattening(_bounded(chord, size))), True
 
 
-def _solid(entity: DXFEntity, _chord: float) -> Iterator[Flat]:
+def _solid(entity: Solid, _chord: float) -> Iterator[Flat]:
     yield _array(entity.wcs_vertices()), True
 
 
-def _multi_line(entity: DXFEntity, chord: float) -> Iterator[Flat]:
+def _multi_line(entity: MLine, chord: float) -> Iterator[Flat]:
     for part in entity.virtual_entities():
         yield from flattened(part, chord)
 
@@ -162,15 +172,15 @@ def _from_ocs(entity: DXFEntity, points: np.ndarray) -> np.ndarray:
     return _array(OCS(entity.dxf.extrusion).points_to_wcs(Vec3.generate(points)))
 
 
-def _array(vertices: object) -> np.ndarray:
-    return np.array([(p[0], p[1], p[2] if len(p) > 2 else 0.0) for p in vertices], dtype=float).reshape(-1, 3)  # type: ignore[attr-defined]
+def _array(vertices: Iterable[Vec2 | Vec3]) -> np.ndarray:
+    return np.array([Vec3(p).xyz for p in vertices], dtype=np.float64).reshape(-1, 3)
 
 
 def _bounded(chord: float, size: float) -> float:
     return max(chord, size * FINEST)
 
 
-FLATTENED_KINDS: dict[str, Callable[[DXFEntity, float], Iterator[Flat]]] = {
+FLATTENED_KINDS: dict[str, Callable[..., Iterator[Flat]]] = {
     "ARC": _arc,
     "CIRCLE": _circle,
     "ELLIPSE": _ellipse,

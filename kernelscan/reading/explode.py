@@ -21,7 +21,9 @@ from math import ceil, log2
 
 import numpy as np
 from ezdxf.document import Drawing
-from ezdxf.entities import DXFEntity, Insert
+from ezdxf.entities.dimension import Dimension
+from ezdxf.entities.dxfentity import DXFEntity
+from ezdxf.entities.insert import Insert
 
 from kernelscan.plan import Problem, Source
 from kernelscan.reading.annotation import dimension_of, label_of
@@ -113,13 +115,13 @@ class _Walk:
             self.hidden[layer] += 1
             return
         try:
-            if kind == "INSERT":
-                self._insert(entity, into, path, fineness)  # type: ignore[arg-type]
+            if isinstance(entity, Insert):
+                self._insert(entity, into, path, fineness)
             elif kind in FLATTENED_KINDS:
                 self._flatten(entity, into, path, fineness)
             elif kind in LABELS:
                 self._label(entity, into)
-            elif kind == "DIMENSION":
+            elif isinstance(entity, Dimension):
                 self.contents.dimensions.extend(dimension_of(entity))
             elif kind in UNREADABLE:
                 self.unread[kind, layer] += 1
@@ -153,8 +155,7 @@ class _Walk:
         for attribute in insert.attribs:
             self._take(attribute, into, path, fineness)
         name = insert.dxf.name
-        block = self.blocks.get(name)
-        if block is None or block.block.is_xref or block.block.is_xref_overlay:
+        if self._is_elsewhere(name):
             self._say(
                 "external-reference",
                 f"block {clean_text(name)!r} is not in this file; bind external references and save again",
@@ -173,6 +174,11 @@ class _Walk:
         else:
             self._place(insert, into, path, fineness)
 
+    def _is_elsewhere(self, name: str) -> bool:
+        layout = self.blocks.get(name)
+        head = layout.block if layout is not None else None
+        return head is None or head.is_xref or head.is_xref_overlay
+
     def _place(self, insert: Insert, into: _Drawn, path: tuple[str, ...], fineness: int) -> None:
         scale = max(abs(insert.dxf.get(axis, 1.0)) for axis in ("xscale", "yscale", "zscale"))
         finer = fineness + (ceil(log2(scale)) if 0 < scale < 1e12 else 0)
@@ -185,7 +191,7 @@ class _Walk:
                 f"{copies} copies of block {clean_text(insert.dxf.name)!r} make over {MOST_POINTS:,} points"
             )
         for cell in insert.multi_insert() if copies > 1 else (insert,):
-            self._carry(drawn, np.array(tuple(cell.matrix44()), dtype=float).reshape(4, 4), insert, into)
+            self._carry(drawn, np.array(tuple(cell.matrix44()), dtype=np.float64).reshape(4, 4), insert, into)
 
     def _block(self, name: str, path: tuple[str, ...], fineness: int) -> _Drawn:
         key = (name.casefold(), fineness)
@@ -245,10 +251,11 @@ class _Walk:
                 if layer.casefold() in self.off
                 else "hidden"
             )
+            noun = "entity" if count == 1 else "entities"
             self.contents.problems.append(
                 Problem(
                     "hidden-layer",
-                    f"layer {clean_text(layer)!r} is {state}: {count} {'entity' if count == 1 else 'entities'} left out",
+                    f"layer {clean_text(layer)!r} is {state}: {count} {noun} left out",
                     None,
                     Source(clean_text(layer)),
                 )

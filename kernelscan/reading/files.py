@@ -7,9 +7,9 @@ valid and empty one.
 
 from pathlib import Path
 
-import ezdxf
 from ezdxf import recover
 from ezdxf.document import Drawing
+from ezdxf.filemanagement import readfile
 
 from kernelscan.errors import InputError
 from kernelscan.plan import Problem, Source
@@ -58,7 +58,7 @@ def open_drawing(path: Path) -> tuple[Drawing, list[Problem]]:
     head = _first_bytes(path)
     _refuse_other_files(path, head)
     try:
-        return ezdxf.readfile(path), []
+        return readfile(path), []
     except Exception as fault:  # the library's faults on damaged bytes are of any kind
         if head.startswith(BINARY_SENTINEL):
             raise InputError(

@@ -32,15 +32,14 @@ class StatedSize:
     sure: bool = True
 
 
-_FEET = r"(?P<{0}f>\d+(?:\.\d+)?)\s*['’′]\s*-?\s*(?:(?P<{0}i>\d+(?:\.\d+)?)(?:\s+(?P<{0}n>\d+)/(?P<{0}d>\d+))?\s*(?:[\"”″]|'')?)?"
+_INCHES = r"(?P<{0}i>\d+(?:\.\d+)?)(?:\s+(?P<{0}n>\d+)/(?P<{0}d>\d+))?\s*(?:[\"”″]|'')?"
+_FEET = r"(?P<{0}f>\d+(?:\.\d+)?)\s*['’′]\s*-?\s*(?:" + _INCHES + ")?"
 _FEET_PAIR = re.compile(rf"^\W*{_FEET.format('a')}\s*[x×X]\s*{_FEET.format('b')}\W*$")
 _ONE_LENGTH = re.compile(rf"^\W*{_FEET.format('a')}\W*$")
 _NUMBER = r"\d+(?:[.,]\d+)?"
 _METRE_PAIR = re.compile(rf"^\W*({_NUMBER})\s*(mm|cm|m)?\s*[x×X]\s*({_NUMBER})\s*(mm|cm|m)?\W*$")
-_AREA = re.compile(
-    rf"^(?:[^\d]{{0,12}}[:=]?\s*)?({_NUMBER})\s*(m2|m²|m\^2|sq\.?\s*m|qm|mq|sqm|sq\.?\s*ft\.?|sqft|s\.?f\.?|ft2|ft²)\.?\W*$",
-    re.IGNORECASE,
-)
+_AREA_UNIT = r"m2|m²|m\^2|sq\.?\s*m|qm|mq|sqm|sq\.?\s*ft\.?|sqft|s\.?f\.?|ft2|ft²"
+_AREA = re.compile(rf"^(?:[^\d]{{0,12}}[:=]?\s*)?({_NUMBER})\s*({_AREA_UNIT})\.?\W*$", re.IGNORECASE)
 _BARE_AREA = re.compile(
     rf"^(?:a|area|fläche|nf|ngf|surface|superficie|sup)\.?\s*[:=]\s*({_NUMBER})\W*$", re.IGNORECASE
 )

@@ -12,6 +12,7 @@ import numpy as np
 
 from kernelscan.geometry.shapes import rings_around
 from kernelscan.reading.label_sizes import StatedSize, stated_size
+from kernelscan.reading.outlines import ring_areas
 from kernelscan.reading.strokes import Label
 from kernelscan.reading.texts import words
 
@@ -54,16 +55,16 @@ def labels_in_rings(rings: Sequence[np.ndarray], labels: Sequence[Label], metres
         return found
     middles = np.array([label.middle for label in labels]) * metres
     starts = np.array([label.start for label in labels]) * metres
-    boxes = np.array([np.ptp(ring, axis=0).prod() for ring in rings])
-    homes = _smallest_home(rings, boxes, starts) | _smallest_home(rings, boxes, middles)
+    sizes = np.abs(ring_areas(rings))
+    homes = _smallest_home(rings, sizes, starts) | _smallest_home(rings, sizes, middles)
     for k, i in sorted(homes.items()):
         found[i].append(labels[k])
     return found
 
 
-def _smallest_home(rings: Sequence[np.ndarray], boxes: np.ndarray, points: np.ndarray) -> dict[int, int]:
+def _smallest_home(rings: Sequence[np.ndarray], sizes: np.ndarray, points: np.ndarray) -> dict[int, int]:
     points_in, in_rings = rings_around(rings, points)
-    order = np.argsort(-boxes[in_rings], kind="stable")
+    order = np.argsort(-sizes[in_rings], kind="stable")
     return dict(zip(points_in[order].tolist(), in_rings[order].tolist(), strict=True))
 
 
@@ -79,6 +80,8 @@ def room_label(labels: Sequence[Label], centre: tuple[float, float] | None = Non
     """
     if not labels:
         return RoomLabel("")
+    if len(labels) == 1 and len(labels[0].lines) == 1 and _says_name(labels[0]):
+        return RoomLabel(labels[0].lines[0][:200], None, labels[0])
     size = next((found for label in labels for line in label.lines if (found := stated_size(line))), None)
     stacks = [stack for stack in _stacks(labels) if _name_of(stack)]
     if not stacks:

@@ -3,6 +3,7 @@
 Everything up to the rooms is in drawing units; from the outlines on, everything is in metres.
 """
 
+from collections import Counter
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from os import PathLike
@@ -11,11 +12,12 @@ from pathlib import Path
 import numpy as np
 
 from kernelscan.plan import Plan, Problem, Room
+from kernelscan.plan.room import NameSource
 from kernelscan.reading.closed_rooms import FoundRoom, chosen_outlines, with_obstacles
 from kernelscan.reading.explode import drawing_contents
 from kernelscan.reading.files import open_drawing
 from kernelscan.reading.layers import LayerPatterns, LayerRole, layer_role
-from kernelscan.reading.names import labels_in_rings, room_label
+from kernelscan.reading.names import RoomLabel, labels_in_rings, room_label
 from kernelscan.reading.outlines import closed_outlines, open_outline_problems
 from kernelscan.reading.strokes import Contents
 from kernelscan.reading.unit_rules import absurd_unit, drawing_unit, no_unit
@@ -60,8 +62,8 @@ def read_plan(
     path: str | PathLike[str],
     *,
     unit: str | None = None,
-    layers: LayerPatterns = LayerPatterns(),
-    tolerances: Tolerances = Tolerances(),
+    layers: LayerPatterns = LayerPatterns(),  # noqa: B008 - frozen
+    tolerances: Tolerances = Tolerances(),  # noqa: B008 - frozen
 ) -> Plan:
     """Read a DXF drawing.
 
@@ -121,28 +123,26 @@ def _roles(contents: Contents, patterns: LayerPatterns) -> dict[str, LayerRole]:
 def _rooms(found: Sequence[FoundRoom], contents: Contents, metres: float) -> tuple[Room, ...]:
     rings = [room.outline.ring for room in found]
     labels = labels_in_rings(rings, contents.labels, metres)
-    layers = [room.outline.stroke.layer for room in found]
+    on_layer = Counter(room.outline.stroke.layer for room in found)
     rooms = []
     for number, (room, inside) in enumerate(zip(found, labels, strict=True), 1):
-        x, y = room.outline.centre
-        label = room_label(inside, (x / metres, y / metres))
-        own_layer = layers.count(room.outline.stroke.layer) == 1 and room.outline.stroke.layer not in {
-            "",
-            "0",
-        }
-        name, name_from = (
-            (label.name, "label")
-            if label.name
-            else (room.outline.stroke.layer, "layer")
-            if own_layer
-            else (f"Room {number}", "number")
-        )
+        outline = room.outline
+        own_layer = outline.stroke.layer if on_layer[outline.stroke.layer] == 1 else ""
+        x, y = outline.centre
+        name, name_from = _name(number, room_label(inside, (x / metres, y / metres)), own_layer)
         rooms.append(
-            Room(
-                f"R{number:03d}", name, room.outline.ring, room.obstacles, (), name_from, room.outline.source
-            )
+            Room(f"R{number:03d}", name, outline.ring, room.obstacles, (), name_from, outline.source)
         )
     return tuple(rooms)
+
+
+def _name(number: int, label: RoomLabel, own_layer: str) -> tuple[str, NameSource]:
+    """Return the name by the label, by a layer that only this room lies on, or by the number."""
+    if label.name:
+        return label.name, "label"
+    if own_layer not in {"", "0"}:
+        return own_layer, "layer"
+    return f"Room {number}", "number"
 
 
 def _linework(contents: Contents, metres: float) -> tuple[np.ndarray, ...]:
