@@ -31,6 +31,7 @@ __all__ = ["nearest_edges"]
 
 Floats = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.intp]
+Headings = npt.NDArray[np.complex128]
 
 _UNIT = 2.0**-53
 
@@ -52,77 +53,80 @@ def nearest_edges(c: Floats, p: Floats, q: Floats, start: Indices, stop: Indices
     count = len(unit)
     length = (stop - start) % count
     row = np.frexp(length)[1].astype(np.intp) - 1
-    field = _Field(c, p, q, unit, _bisectors(unit), *_duals(c, p, q))
+    heading = unit[:, 0] + 1j * unit[:, 1]
+    field = _Field(c, p, q, heading, _bisectors(heading), *_duals(c, p, q))
     table = np.full((int(row.max()) + 1, count), -1, dtype=np.intp)
     edges = np.arange(len(p))
-    for first in (start, (stop - (1 << row)) % count):
-        field.paint(table, row, first, edges)
-    for k in range(len(table) - 1, 0, -1):
-        first = np.flatnonzero(table[k] >= 0)
-        field.paint(table, k - 1, first, table[k, first])
-        field.paint(table, k - 1, (first + (1 << k - 1)) % count, table[k, first])
-    return table[0]
+    with np.errstate(all="ignore"):
+        for first in (start, (stop - (1 << row)) % count):
+            field.paint(table, row, first, edges)
+        for k in range(len(table) - 1, 0, -1):
+            field.hand_down(table[k], table[k - 1], k - 1)
+    return np.asarray(table[0])
 
 
-def _bisectors(unit: Floats) -> Floats:
+def _bisectors(heading: Headings) -> Headings:
     """Return a vector along the middle of each sector, of a length between 1 and 3; sectors are narrower than pi."""
-    following = np.roll(unit, -1, axis=0)
-    across = following - unit
-    return unit + following + np.column_stack([across[:, 1], -across[:, 0]])
+    following = np.roll(heading, -1)
+    return heading + following - 1j * (following - heading)
 
 
-def _duals(c: Floats, p: Floats, q: Floats) -> tuple[Floats, Floats]:
-    """Return each edge's w, ``(n, 2)``, and a bound on the error of w . u for unit vectors with rounded ends."""
+def _duals(c: Floats, p: Floats, q: Floats) -> tuple[Headings, Floats]:
+    """Return each edge's w and a bound on the error of w . u, for any u of a length up to 3 that is rounded itself."""
     with np.errstate(all="ignore"):
         v, d = p - c, q - p
         left, right = v[:, 0] * d[:, 1], v[:, 1] * d[:, 0]
         height, error = left - right, 8 * _UNIT * (np.abs(left) + np.abs(right)) + 1e-290
-        w = np.column_stack([d[:, 1], -d[:, 0]]) / height[:, None]
+        w = (d[:, 1] - 1j * d[:, 0]) / height
         slack = np.where(height > 2 * error, error / (height - error), np.inf) + 64 * _UNIT
-        return w, 3 * np.abs(w).sum(axis=1) * slack
+        return w, 4 * np.abs(w) * slack
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class _Field:
-    """The edges around one eye, ready for comparison."""
+    """The edges around one eye, ready for comparison; directions and duals are complex numbers, x + iy."""
 
     eye: Floats
     p: Floats
     q: Floats
-    unit: Floats
-    middle: Floats
-    dual: Floats
+    heading: Headings
+    middle: Headings
+    dual: Headings
     error: Floats
 
-    def paint(self, table: Indices, row: Indices | int, first: Indices, edges: Indices) -> None:
-        """Put each edge on its block, ``table[row, first]``, unless a nearer one is there."""
-        row = np.broadcast_to(row, first.shape)
+    def hand_down(self, upper: Indices, lower: Indices, row: int) -> None:
+        """Paint what each block of a row holds on its two halves in the row below, number ``row``."""
+        first = np.flatnonzero(upper >= 0)
+        edges = upper[first]
+        inside = np.roll(self.heading, -(1 << row >> 1)) if row else self.middle
+        for half in (first, (first + (1 << row)) % len(upper)):
+            lower[half] = self._nearer(edges, lower[half], inside[half])
+
+    def paint(self, table: Indices, row: Indices, first: Indices, edges: Indices) -> None:
+        """Paint each edge on its block, ``table[row, first]``; several may fall on one."""
         while len(first):
-            held = table[row, first]
-            rivals = np.flatnonzero((held >= 0) & (held != edges))
-            edges = edges.copy()
-            edges[rivals] = self._nearer(
-                edges[rivals], held[rivals], self._inside(row[rivals], first[rivals])
-            )
+            u = np.where(row > 0, self.heading[(first + (1 << row >> 1)) % len(self.heading)], self.middle[first])
+            edges = self._nearer(edges, table[row, first], u)
             table[row, first] = edges
             lost = np.flatnonzero(table[row, first] != edges)
-            u = self._inside(row[lost], first[lost])
-            lost = lost[np.argsort((self.dual[edges[lost]] * u).sum(axis=1))]
+            # of those that fell on one block, the nearest is written last, so that two rounds are enough
+            lost = lost[np.argsort((self.dual[edges[lost]] * u[lost].conj()).real)]
             row, first, edges = row[lost], first[lost], edges[lost]
 
-    def _inside(self, row: Indices, first: Indices) -> Floats:
-        """Return a direction strictly inside each block."""
-        half = (first + ((1 << row) >> 1)) % len(self.unit)
-        return np.where((row > 0)[:, None], self.unit[half], self.middle[first])
-
-    def _nearer(self, e: Indices, f: Indices, u: Floats) -> Indices:
-        """Return whichever of the edges e and f is met first along a direction u inside both."""
-        with np.errstate(all="ignore"):
-            lead = ((self.dual[e] - self.dual[f]) * u).sum(axis=1)
-            doubtful = np.flatnonzero(~(np.abs(lead) > self.error[e] + self.error[f]))
+    def _nearer(self, edges: Indices, held: Indices, u: Headings) -> Indices:
+        """Return for each block whichever edge is met first along a direction u inside both; held may be -1."""
+        rivals = np.flatnonzero((held >= 0) & (held != edges))
+        if not len(rivals):
+            return edges
+        e, f, u = edges[rivals], held[rivals], u[rivals]
+        lead = ((self.dual[e] - self.dual[f]) * u.conj()).real
         ahead = lead > 0
-        ahead[doubtful] = self._ahead(e[doubtful], f[doubtful])
-        return np.where(ahead, e, f)
+        doubtful = np.flatnonzero(~(np.abs(lead) > self.error[e] + self.error[f]))
+        if len(doubtful):
+            ahead[doubtful] = self._ahead(e[doubtful], f[doubtful])
+        nearer = edges.copy()
+        nearer[rivals] = np.where(ahead, e, f)
+        return nearer
 
     def _ahead(self, e: Indices, f: Indices) -> npt.NDArray[np.bool_]:
         """Whether e is in front of f, both seen in some common direction and not crossing; exact."""
