@@ -1,13 +1,14 @@
 """The tolerances of one run, in one value that is passed along; no module keeps a constant of its own."""
 
 from dataclasses import dataclass
+from math import radians
 
 __all__ = ["Tolerances"]
 
 
 @dataclass(frozen=True, slots=True)
 class Tolerances:
-    """How coarse a run may be; every length in metres, areas in square metres.
+    """How coarse a run may be; lengths in metres, areas in square metres, angles in radians.
 
     Attributes
     ----------
@@ -19,9 +20,13 @@ class Tolerances:
         A closed outline under this area is not taken for a room by content.
     thickest_wall
         A strip narrower than this is the body of a wall, not a room.
+    smooth
+        Walls that meet at less than this turn run on as one, as the pieces of a curved wall do; where they turn by
+        more there is a corner.
     """
 
     chord: float = 0.001
     snap: float = 0.005
     smallest_room: float = 1.5
     thickest_wall: float = 0.6
+    smooth: float = radians(20)

@@ -5,7 +5,7 @@ from math import sqrt
 
 import numpy as np
 
-from kernelscan.coverage import CornerZone, FloorZone, RoomZones, WallZone
+from kernelscan.coverage import CornerZone, FloorZone, Mount, RoomZones, WallZone
 from kernelscan.markup.hatching import hatch_lines
 from kernelscan.markup.scene import Box, Fill, Hatch, Item, Point, Stroke
 from kernelscan.markup.style import (
@@ -72,10 +72,20 @@ def zone_items(zones: RoomZones, view: PlanView) -> Iterator[Item]:
     """Yield the zones of a room: the ceiling's first, the walls' and the corners' over it."""
     if zones.ceiling is not None:
         yield from _ceiling(zones.ceiling, view)
-    for wall in zones.walls:
-        yield from _wall(zones.room, wall, view)
-    for corner in zones.corners:
-        yield from _corner(zones.room, corner, view)
+    bands = [band for wall in zones.walls if (band := _band(wall, view)) is not None]
+    yield from _hatched("wall", bands)
+    yield from (_tick(wall, view) for wall in zones.walls if _band(wall, view) is None)
+    yield from _hatched("corner", [corner_ring(zones.room, corner, view) for corner in zones.corners])
+
+
+def _hatched(mount: Mount, rings: Sequence[tuple[Point, ...]]) -> Iterator[Item]:
+    """Yield areas with the hatch of their kind, one hatch for all, and their borders."""
+    mark = MARKS[mount]
+    lines = tuple(line for ring in rings for line in hatch_lines([np.array(ring)], mark.angle, mark.spacing))
+    if lines:
+        yield Hatch(lines, mark.hatch_pen)
+    for ring in rings:
+        yield Stroke(ring, ZONE_EDGE_PEN, closed=True)
 
 
 def _ceiling(zone: FloorZone, view: PlanView) -> Iterator[Item]:
@@ -99,23 +109,27 @@ def wall_normal(room: Room, wall: WallRef) -> np.ndarray:
     return np.array([-along[1], along[0]])
 
 
-def _wall(room: Room, zone: WallZone, view: PlanView) -> Iterator[Item]:
-    """Yield a band along the wall, on its inner side; a bare tick where only a point of it is left."""
-    inward = wall_normal(room, zone.wall) * WALL_BAND
-    start, end = view.to_paper(zone.ends)
-    if np.hypot(*(end - start)) < WALL_BAND / 2:
-        yield Stroke((_pair(start), _pair(start + inward)), ROOM_PEN)
-        return
-    band = np.array([start, end, end + inward, start + inward])
-    mark = MARKS["wall"]
-    yield Hatch(hatch_lines([band], mark.angle, mark.spacing), mark.hatch_pen)
-    yield Stroke(tuple(_pair(corner) for corner in band), ZONE_EDGE_PEN, closed=True)
+def _band(zone: WallZone, view: PlanView) -> tuple[Point, ...] | None:
+    """Return the band along a stretch of wall, on its inner side, or ``None`` where hardly a point of it is left."""
+    path = view.to_paper(zone.path)
+    if np.hypot(*np.diff(path, axis=0).T).sum() < WALL_BAND / 2:
+        return None
+    inner = path + _inward(path) * WALL_BAND
+    return tuple(_pair(point) for point in (*path, *inner[::-1]))
 
 
-def _corner(room: Room, zone: CornerZone, view: PlanView) -> Iterator[Item]:
-    mark, ring = MARKS["corner"], corner_ring(room, zone, view)
-    yield Hatch(hatch_lines([np.array(ring)], mark.angle, mark.spacing), mark.hatch_pen)
-    yield Stroke(ring, ZONE_EDGE_PEN, closed=True)
+def _tick(zone: WallZone, view: PlanView) -> Item:
+    start, inward = view.to_paper(zone.path)[0], _inward(view.to_paper(zone.path))[0]
+    return Stroke((_pair(start), _pair(start + inward * WALL_BAND)), ROOM_PEN)
+
+
+def _inward(path: np.ndarray) -> np.ndarray:
+    """Return the unit vectors to the left of a path at its points, midway between the pieces that meet there."""
+    along = np.diff(path, axis=0)
+    along /= np.hypot(*along.T)[:, None]
+    turns = np.concatenate([along[:1], along[:-1] + along[1:], along[-1:]])
+    turns /= np.hypot(*turns.T)[:, None]
+    return np.column_stack([-turns[:, 1], turns[:, 0]])
 
 
 def corner_ring(room: Room, zone: CornerZone, view: PlanView) -> tuple[Point, ...]:

@@ -62,10 +62,10 @@ class SpotEntry(TypedDict):
 
 
 class StretchEntry(TypedDict):
-    """A piece of one wall from which every wall is seen."""
+    """A stretch of wall from which every wall is seen; piece i of its path lies on wall i."""
 
-    wall: Wall
-    ends: list[Position]
+    walls: list[Wall]
+    path: list[Position]
     length: float
 
 
@@ -186,7 +186,11 @@ def _answered(zones: RoomZones) -> RoomEntry:
     entry["zones"] = {
         "ceiling": [] if zones.ceiling is None else _positions(zones.ceiling.vertices),
         "walls": [
-            {"wall": list(zone.wall), "ends": _positions(zone.ends), "length": zone.length}
+            {
+                "walls": [list(wall) for wall in zone.walls],
+                "path": _positions(zone.path),
+                "length": zone.length,
+            }
             for zone in zones.walls
         ],
         "corners": [_spot(zone.spot) for zone in zones.corners],
