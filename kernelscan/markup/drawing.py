@@ -29,6 +29,7 @@ from kernelscan.markup.view import PlanView, clipped_polyline, thinned
 from kernelscan.plan import Room, WallRef
 
 __all__ = [
+    "band_ring",
     "conflict_items",
     "conflict_walls",
     "corner_ring",
@@ -72,9 +73,16 @@ def zone_items(zones: RoomZones, view: PlanView) -> Iterator[Item]:
     """Yield the zones of a room: the ceiling's first, the walls' and the corners' over it."""
     if zones.ceiling is not None:
         yield from _ceiling(zones.ceiling, view)
-    bands = [band for wall in zones.walls if (band := _band(wall, view)) is not None]
+    width = WALL_BAND / view.scale.mm_per_metre
+    bands, ticks = [], []
+    for wall in zones.walls:
+        ring = view.ring(band_ring(zones.room, wall, width))
+        if wall.length > width / 2:
+            bands.append(ring)
+        else:
+            ticks.append(Stroke((ring[0], ring[-1]), ROOM_PEN))
     yield from _hatched("wall", bands)
-    yield from (_tick(wall, view) for wall in zones.walls if _band(wall, view) is None)
+    yield from ticks
     yield from _hatched("corner", [corner_ring(zones.room, corner, view) for corner in zones.corners])
 
 
@@ -109,27 +117,14 @@ def wall_normal(room: Room, wall: WallRef) -> np.ndarray:
     return np.array([-along[1], along[0]])
 
 
-def _band(zone: WallZone, view: PlanView) -> tuple[Point, ...] | None:
-    """Return the band along a stretch of wall, on its inner side, or ``None`` where hardly a point of it is left."""
-    path = view.to_paper(zone.path)
-    if np.hypot(*np.diff(path, axis=0).T).sum() < WALL_BAND / 2:
-        return None
-    inner = path + _inward(path) * WALL_BAND
-    return tuple(_pair(point) for point in (*path, *inner[::-1]))
+def band_ring(room: Room, zone: WallZone, width: float) -> np.ndarray:
+    """Return the band along a stretch of wall, on its inner side: ``(2 k + 2, 2)`` metres, along the wall and back.
 
-
-def _tick(zone: WallZone, view: PlanView) -> Item:
-    start, inward = view.to_paper(zone.path)[0], _inward(view.to_paper(zone.path))[0]
-    return Stroke((_pair(start), _pair(start + inward * WALL_BAND)), ROOM_PEN)
-
-
-def _inward(path: np.ndarray) -> np.ndarray:
-    """Return the unit vectors to the left of a path at its points, midway between the pieces that meet there."""
-    along = np.diff(path, axis=0)
-    along /= np.hypot(*along.T)[:, None]
-    turns = np.concatenate([along[:1], along[:-1] + along[1:], along[-1:]])
-    turns /= np.hypot(*turns.T)[:, None]
-    return np.column_stack([-turns[:, 1], turns[:, 0]])
+    Where two pieces meet, the inner side runs on the mean of their normals: they meet smoothly.
+    """
+    normals = np.array([wall_normal(room, wall) for wall in zone.walls])
+    means = np.concatenate([normals[:1], (normals[:-1] + normals[1:]) / 2, normals[-1:]])
+    return np.concatenate([zone.path, (zone.path + width * means)[::-1]])
 
 
 def corner_ring(room: Room, zone: CornerZone, view: PlanView) -> tuple[Point, ...]:

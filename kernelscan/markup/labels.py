@@ -9,7 +9,7 @@ from kernelscan.markup.scene import Box, Fill, Item, Point, Stroke, Text
 from kernelscan.markup.style import BLACK, BODY, LEADER_PEN, WHITE
 from kernelscan.markup.text import LINE_PITCH
 
-__all__ = ["Label", "Line", "boxes_around", "dot", "leader", "nearest_in"]
+__all__ = ["Label", "Line", "boxes_around", "dot", "nearest_in"]
 
 GROUND = 0.4
 """How far the white ground reaches beyond the text, in millimetres."""
@@ -70,11 +70,6 @@ def boxes_around(point: Point, label: Label, radii: tuple[float, ...], direction
 def _side(direction: float) -> float:
     """Return -1, 0 or 1: on which side of the point the label lies."""
     return 0.0 if abs(direction) < 0.3 else 1.0 if direction > 0 else -1.0
-
-
-def leader(point: Point, box: Box) -> Stroke:
-    """Return the line from a place to the nearest point of its label's box."""
-    return Stroke((point, nearest_in(point, box)), LEADER_PEN)
 
 
 def nearest_in(point: Point, box: Box) -> Point:

@@ -115,7 +115,7 @@ def _plan_groups(
     yield Group("setting-out", ())
     spots = [spot for zones in answers for spot in zones.recommended]
     yield Group("points", tuple(item for spot in spots for item in spot_symbol(spot, view.point(spot.point))))
-    yield Group("tags", tuple(tags.items))
+    yield Group("tags", tuple(item for tag in tags.placements for item in tag.items()))
     yield Group("caption", tuple(_caption(layout, view.scale, tags)))
 
 

@@ -7,7 +7,9 @@ Text stays text. Each line carries ``textLength``, the width the scene has measu
 where the reader lacks the typeface. All text goes through the XML writer's own escaping.
 """
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Iterator
+from dataclasses import dataclass
+from itertools import groupby
 from math import degrees
 from typing import TYPE_CHECKING, Any
 
@@ -38,14 +40,36 @@ def svg_text(scene: Scene) -> str:
         if group.items:
             layer = drawing.g(id=group.name, fill="none", font_family=FONT_FAMILY)
             layer["stroke-linejoin"], layer["stroke-linecap"] = "round", "butt"
-            for item in group.items:
+            for item in _joined(group.items):
                 layer.add(_element(drawing, item, scene.height))
             drawing.add(layer)
     return '<?xml version="1.0" encoding="utf-8"?>\n' + str(drawing.tostring()) + "\n"
 
 
-def _element(drawing: "svgwrite.Drawing", item: Item, height: float) -> Any:  # noqa: ANN401 - svgwrite is untyped
+@dataclass(frozen=True, slots=True)
+class _Strokes:
+    """Neighbouring strokes of one pen, written as one path."""
+
+    pieces: tuple[tuple[Point, ...], ...]
+    pen: Pen
+    closed: bool
+
+
+def _joined(items: Iterable[Item]) -> Iterator[Item | _Strokes]:
+    """Yield the items in their order, neighbouring strokes of one pen together: the same picture in less text."""
+    for style, run in groupby(
+        items, lambda item: (item.pen, item.closed) if isinstance(item, Stroke) else None
+    ):
+        if style is None:
+            yield from run
+        else:
+            yield _Strokes(tuple(item.points for item in run if isinstance(item, Stroke)), *style)
+
+
+def _element(drawing: "svgwrite.Drawing", item: Item | _Strokes, height: float) -> Any:  # noqa: ANN401 - svgwrite is untyped
     match item:
+        case _Strokes(pieces, pen, closed):
+            return drawing.path(_path(pieces, height, closed), **_pen(pen))
         case Stroke(points, pen, closed):
             return drawing.path(_path([points], height, closed), **_pen(pen))
         case Fill(rings, ink):

@@ -6,21 +6,22 @@ no place at all is returned by name, so that the sheet can say so.
 """
 
 from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
 
 import numpy as np
 
 from kernelscan.coverage import RoomZones
 from kernelscan.markup.drawing import conflict_walls, corner_ring, seeing_arrow
-from kernelscan.markup.labels import Label, Line, boxes_around, dot, leader, nearest_in
+from kernelscan.markup.labels import Label, Line, boxes_around, dot, nearest_in
 from kernelscan.markup.placing import Occupied, boxes_inside, inner_points
-from kernelscan.markup.scene import Box, Item, Point
-from kernelscan.markup.style import CONFLICT_LETTERS, HEADING, MARKS, SYMBOL_RADIUS, WALL_BAND
+from kernelscan.markup.scene import Box, Item, Point, Stroke
+from kernelscan.markup.style import CONFLICT_LETTERS, HEADING, LEADER_PEN, MARKS, SYMBOL_RADIUS, WALL_BAND
 from kernelscan.markup.symbols import box_around, spot_ring
 from kernelscan.markup.text import clean_text, wrapped
 from kernelscan.markup.view import PlanView
 from kernelscan.markup.wording import Custom, kernel_in_words
 
-__all__ = ["Tags", "placed_tags"]
+__all__ = ["Placement", "Tags", "placed_tags"]
 
 WIDEST_NAME = 36.0
 """A longer name is wrapped over two lines, in millimetres."""
@@ -31,19 +32,38 @@ BAND, EDGE = (np.array([-border, -border, border, border]) for border in (WALL_B
 OUTSIDE = (4.0, 8.0, 13.0, 19.0, 26.0, 34.0, 45.0, 60.0)
 
 
+@dataclass(frozen=True, slots=True)
+class Placement:
+    """A label, the box it stands in, and the foot of its leader if it has one."""
+
+    label: Label
+    box: Box
+    foot: Point | None = None
+
+    @property
+    def leader_end(self) -> Point:
+        """Where a leader meets the box."""
+        return nearest_in(self.foot, self.box) if self.foot is not None else self.box.centre
+
+    def items(self) -> tuple[Item, ...]:
+        """Return the label drawn, with its leader."""
+        tied = () if self.foot is None else (Stroke((self.foot, self.leader_end), LEADER_PEN), dot(self.foot))
+        return (*tied, *self.label.items(self.box))
+
+
 class Tags:
     """What has been placed so far.
 
     Attributes
     ----------
-    items
-        Labels and leaders in painting order.
+    placements
+        In painting order.
     missing
         What found no place, by room and letter.
     """
 
     def __init__(self, window: Box) -> None:
-        self.items: list[Item] = []
+        self.placements: list[Placement] = []
         self.missing: list[str] = []
         self.taken = Occupied(window)
         """What no label may touch."""
@@ -51,32 +71,48 @@ class Tags:
         """What a label keeps off if it can: the borders of zones."""
 
     def put(self, label: Label, box: Box, foot: Point | None = None) -> None:
-        """Draw a label in a box and keep the place, tied to a point by a leader where one is given."""
+        """Give a label a box and keep the place, tied to a point by a leader where one is given."""
         self.taken.add(box)
         if foot is not None:
             self.taken.add_line(foot, nearest_in(foot, box))
-            self.items += [leader(foot, box), dot(foot)]
-        self.items += label.items(box)
+        self.placements.append(Placement(label, box, foot))
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class _Place:
+    """A room on the paper: its answer, its rings in millimetres, and points for the middle of its tag."""
+
+    zones: RoomZones
+    rings: tuple[np.ndarray, ...]
+    middles: np.ndarray
 
 
 def placed_tags(answers: Sequence[RoomZones], view: PlanView, custom: Custom) -> Tags:
-    """Return every tag of the plan, none touching another, a symbol or a wall in conflict."""
+    """Return every tag of the plan, none touching another, a symbol or a wall in conflict.
+
+    A room too small for more than its number gets that first, and the letters of its points after it.
+    """
     tags = Tags(view.box)
-    rings = [tuple(view.to_paper(ring) for ring in zones.room.rings) for zones in answers]
+    places = [_place(zones, view) for zones in answers]
     for zones in answers:
         _keep_marks_clear(zones, view, tags)
-    for zones, room_rings in zip(answers, rings, strict=True):
-        for letter, at in _letters(zones, view):
-            _place_letter(letter, at, zones.room.id, room_rings, tags)
-    homeless = [
-        (zones, room_rings)
-        for zones, room_rings in zip(answers, rings, strict=True)
-        if not _place_inside(zones, room_rings, custom, tags)
-    ]
-    outlines = np.concatenate([_edges(room_rings[0]) for room_rings in rings]) if rings else np.empty((0, 4))
-    for zones, room_rings in homeless:
-        _place_outside(zones, room_rings, custom, outlines, tags)
+    waiting = []
+    for place in places:
+        cramped = not _has_room(place, custom, tags)
+        placed = cramped and _place_inside(place, custom, tags)
+        for letter, at, needed in _letters(place.zones, view):
+            _place_letter(letter, at, needed, place, tags)
+        if not placed and not _place_inside(place, custom, tags):
+            waiting.append(place)
+    outlines = np.concatenate([_edges(place.rings[0]) for place in places]) if places else np.empty((0, 4))
+    for place in waiting:
+        _place_outside(place, custom, outlines, tags)
     return tags
+
+
+def _place(zones: RoomZones, view: PlanView) -> _Place:
+    rings = tuple(view.to_paper(ring) for ring in zones.room.rings)
+    return _Place(zones, rings, inner_points(rings))
 
 
 def _keep_marks_clear(zones: RoomZones, view: PlanView, tags: Tags) -> None:
@@ -94,36 +130,39 @@ def _keep_marks_clear(zones: RoomZones, view: PlanView, tags: Tags) -> None:
         tags.shy.add_line(start_point, end_point)
 
 
-def _letters(zones: RoomZones, view: PlanView) -> Iterator[tuple[Label, Point]]:
+def _letters(zones: RoomZones, view: PlanView) -> Iterator[tuple[Label, Point, bool]]:
+    """Yield letters, their places, and whether the sheet needs them: a point's symbol says the same by its shape."""
     for spot in zones.recommended:
-        yield Label((Line(MARKS[spot.mount].letter, bold=True),)), view.point(spot.point)
+        yield Label((Line(MARKS[spot.mount].letter, bold=True),)), view.point(spot.point), False
     for letter, wall in zip(CONFLICT_LETTERS, conflict_walls(zones), strict=False):
         foot, tip = seeing_arrow(zones.room, wall, view)
         middle = (foot[0] + tip[0]) / 2, (foot[1] + tip[1]) / 2
-        yield Label((Line(letter, bold=True, height=HEADING),)), middle
+        yield Label((Line(letter, bold=True, height=HEADING),)), middle, True
 
 
-def _place_letter(letter: Label, at: Point, room: str, rings: tuple[np.ndarray, ...], tags: Tags) -> None:
+def _place_letter(letter: Label, at: Point, needed: bool, place: _Place, tags: Tags) -> None:
     """Place the letter of a point or a wall beside it, in its own room and off the zones' borders if it can."""
     near = list(boxes_around(at, letter, NEAR, directions=16))
     within, roomy = (
         [
             box
-            for box, wholly in zip(near, boxes_inside(rings, np.array(near) + border), strict=True)
+            for box, wholly in zip(near, boxes_inside(place.rings, np.array(near) + border), strict=True)
             if wholly
         ]
         for border in (0.0, BAND)
     )
     shy = [box for box in roomy if tags.shy.takes(box)]
-    for box in (*shy, *roomy, *within, *near):
+    for box in (*shy, *roomy, *within, *(near if needed else ())):
         if tags.taken.takes(box):
             tags.put(letter, box)
             return
+    if not needed:
+        return
     for box in boxes_around(at, letter, FAR, directions=16):
         if tags.taken.takes(box):
             tags.put(letter, box, at)
             return
-    tags.missing.append(f"{room} {letter.lines[0].string}")
+    tags.missing.append(f"{place.zones.room.id} {letter.lines[0].string}")
 
 
 def _variants(zones: RoomZones, custom: Custom) -> Iterator[Label]:
@@ -150,28 +189,37 @@ def _name_lines(zones: RoomZones) -> tuple[Line, ...]:
     return tuple(Line(line) for line in wrapped(name, WIDEST_NAME, 2.5, most=2))
 
 
-def _place_inside(zones: RoomZones, rings: tuple[np.ndarray, ...], custom: Custom, tags: Tags) -> bool:
+def _has_room(place: _Place, custom: Custom, tags: Tags) -> bool:
+    """Whether a room holds more than its number beside its symbols."""
+    _, label, *_ = _variants(place.zones, custom)
+    return any(tags.taken.takes(box) for box in _inner_boxes(place, label, EDGE))
+
+
+def _inner_boxes(place: _Place, label: Label, border: np.ndarray) -> Iterator[Box]:
+    """Yield boxes for a label that lie in the room with a border around them, the roomiest places first."""
+    half = np.array([label.width, label.height]) / 2
+    boxes = np.column_stack([place.middles - half, place.middles + half])
+    for sides in boxes[boxes_inside(place.rings, boxes + border)]:
+        yield Box(*(float(side) for side in sides))
+
+
+def _place_inside(place: _Place, custom: Custom, tags: Tags) -> bool:
     """Place the fullest tag that the room holds, off its walls and its zones' borders if it can."""
-    middles = inner_points(rings)
-    for label in _variants(zones, custom):
+    for label in _variants(place.zones, custom):
         for border, shy in ((BAND, True), (EDGE, False)):
-            half = np.array([label.width, label.height]) / 2
-            boxes = np.column_stack([middles - half, middles + half])
-            for sides in boxes[boxes_inside(rings, boxes + border)]:
-                box = Box(*(float(side) for side in sides))
+            for box in _inner_boxes(place, label, border):
                 if tags.taken.takes(box) and not (shy and not tags.shy.takes(box.grown(0.8))):
                     tags.put(label, box)
                     return True
     return False
 
 
-def _place_outside(
-    zones: RoomZones, rings: tuple[np.ndarray, ...], custom: Custom, outlines: np.ndarray, tags: Tags
-) -> None:
+def _place_outside(place: _Place, custom: Custom, outlines: np.ndarray, tags: Tags) -> None:
     """Place a tag at the end of a leader: clear of every room if it can, else on a room, else not at all."""
+    zones = place.zones
     lines = (Line(zones.room.id, bold=True), *_name_lines(zones), _kernel_line(zones, custom))
     label = Label(lines, framed=True)
-    foot = _pair(inner_points(rings)[0])
+    foot = _pair(place.middles[0])
     second: Box | None = None
     for box in boxes_around(foot, label, OUTSIDE, directions=24):
         if tags.taken.takes(box) and tags.taken.takes_line(foot, nearest_in(foot, box)):

@@ -23,10 +23,9 @@ def cut_to(text: str, width: float, height: float, bold: bool = False) -> str:
     """Return the text, or as much of it as fits the width before an ellipsis; what is cut is seen to be cut."""
     if text_width(text, height, bold) <= width:
         return text
-    kept = text
-    while kept and text_width(kept + ELLIPSIS, height, bold) > width:
-        kept = kept[:-1].rstrip()
-    return kept + ELLIPSIS
+    return (
+        text[: _fitting(text, width - text_width(ELLIPSIS, height, bold), height, bold)].rstrip() + ELLIPSIS
+    )
 
 
 def wrapped(
@@ -52,9 +51,17 @@ def _pieces(words: Iterable[str], width: float, height: float, bold: bool) -> It
     for word in words:
         rest = word
         while text_width(rest, height, bold) > width and len(rest) > 1:
-            kept = len(rest) - 1
-            while kept > 1 and text_width(rest[:kept], height, bold) > width:
-                kept -= 1
+            kept = max(1, _fitting(rest, width, height, bold))
             yield rest[:kept]
             rest = rest[kept:]
         yield rest
+
+
+def _fitting(text: str, width: float, height: float, bold: bool) -> int:
+    """Return how many characters of a text fit a width."""
+    used = 0.0
+    for count, character in enumerate(text):
+        used += text_width(character, height, bold)
+        if used > width:
+            return count
+    return len(text)

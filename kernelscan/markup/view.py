@@ -39,6 +39,11 @@ class PlanView:
         placed: np.ndarray = (np.asarray(points) - self.middle) * self.scale.mm_per_metre + self.box.centre
         return placed
 
+    def to_plan(self, point: Point) -> np.ndarray:
+        """Return a point of the paper as ``(2,)`` metres of the plan."""
+        placed: np.ndarray = (np.array(point) - self.box.centre) / self.scale.mm_per_metre + self.middle
+        return placed
+
     def point(self, point: np.ndarray) -> Point:
         """Return one point of the plan on the paper."""
         x, y = self.to_paper(point)

@@ -1,7 +1,7 @@
 """Rooms and their answers written down by hand, so that the sheets are tested without the solver."""
 
 from collections.abc import Sequence
-from math import acos, atan2, hypot, pi
+from math import atan2, hypot, pi
 
 import numpy as np
 
@@ -77,11 +77,11 @@ def _corners(of: Room, kernel: np.ndarray) -> list[CornerZone]:
     count = len(of.outline)
     for i, corner in enumerate(of.outline):
         if np.abs(kernel - corner).sum(axis=1).min() < 1e-9:
-            a, b = of.outline[(i + 1) % count] - corner, of.outline[i - 1] - corner
-            a, b = a / hypot(*a), b / hypot(*b)
-            middle = atan2(*(a + b)[::-1])
+            after, before = of.outline[(i + 1) % count] - corner, of.outline[i - 1] - corner
+            first = atan2(after[1], after[0])
+            field = (atan2(before[1], before[0]) - first) % (2 * pi)
             walls = (WallRef(0, (i - 1) % count), WallRef(0, i))
-            found.append(CornerZone(_spot(of, "corner", corner, acos(float(a @ b)), middle, walls)))
+            found.append(CornerZone(_spot(of, "corner", corner, field, first + field / 2, walls)))
     return found
 
 

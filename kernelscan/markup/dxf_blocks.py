@@ -1,0 +1,87 @@
+"""Layers, line type, hatches and blocks of the DXF mark-up: all by names of our own, so that nothing is overwritten.
+
+Layer names follow the form of the national CAD standard: discipline, major and minor group. The prefix stands for the
+first two and may be changed; the minor group says what lies on the layer.
+"""
+
+from dataclasses import dataclass
+from math import cos, degrees, sin
+from typing import TYPE_CHECKING
+
+from kernelscan.coverage import Mount, Spot
+from kernelscan.markup.style import BLACK, MARKS, PALE
+
+if TYPE_CHECKING:
+    from ezdxf.document import Drawing
+    from ezdxf.layouts.blocklayout import BlockLayout
+
+__all__ = ["LAYERS", "PREFIX", "Sizes", "block_of", "set_up"]
+
+PREFIX = "A-KSCN"
+
+LAYERS: dict[str, tuple[str, int, str]] = {
+    "ROOM": (BLACK, 50, "outlines of the rooms as they were read"),
+    "OBST": (PALE, 35, "obstacles in the rooms"),
+    "CEIL": (MARKS["ceiling"].ink, 25, "ceiling zones"),
+    "WALL": (MARKS["wall"].ink, 25, "wall zones"),
+    "CORN": (MARKS["corner"].ink, 25, "corner zones"),
+    "PNTS": (BLACK, 35, "recommended points"),
+    "CNFL": (BLACK, 100, "walls that exclude each other"),
+    "TEXT": (BLACK, 18, "tags"),
+}
+"""Minor group of each layer: ink, line weight in hundredths of a millimetre, description."""
+
+DASHED = "KSCN-DASHED"
+FIELDS = ("TAG", "ROOM", "NAME", "FIELD", "RANGE", "TOLERANCE")
+"""Attributes of a recommended point."""
+
+
+@dataclass(frozen=True, slots=True)
+class Sizes:
+    """Sizes in the building, in metres: those that a sheet at 1:100 has on paper."""
+
+    text: float = 0.25
+    symbol: float = 0.22
+    band: float = 0.18
+    corner: float = 0.50
+    dash: float = 0.30
+
+
+def set_up(drawing: "Drawing", prefix: str, metre: float) -> None:
+    """Make the layers and the line type; ``metre`` is how many drawing units a metre is."""
+    dash = Sizes().dash * metre
+    drawing.linetypes.add(DASHED, [1.5 * dash, dash, -0.5 * dash], description="Kernelscan dashed __ __ __")
+    for minor, (ink, weight, description) in LAYERS.items():
+        layer = drawing.layers.add(f"{prefix}-{minor}")
+        if ink != BLACK:
+            red, green, blue = (int(ink[i : i + 2], 16) for i in (1, 3, 5))
+            layer.rgb = red, green, blue
+        layer.dxf.lineweight = weight
+        layer.description = description
+    drawing.layers.get(f"{prefix}-CNFL").dxf.linetype = DASHED
+
+
+def block_of(drawing: "Drawing", spot: Spot, metre: float) -> str:
+    """Return the name of the block for a spot, made when it is first asked for: one for each field of view."""
+    field = round(degrees(spot.field_of_view))
+    name = f"KSCN-{spot.mount.upper()}" + (f"-{field:03}" if spot.mount == "corner" else "")
+    if name not in drawing.blocks:
+        _fill_block(drawing.blocks.new(name), spot.mount, spot.field_of_view, metre)
+    return name
+
+
+def _fill_block(block: "BlockLayout", mount: Mount, field: float, metre: float) -> None:
+    """Draw a symbol about the origin, its bearing along x, on layer 0, so that it takes the layer it is put on."""
+    for radius in (Sizes().symbol * metre, 0.45 * Sizes().symbol * metre):
+        if mount == "ceiling":
+            block.add_circle((0, 0), radius)
+        else:
+            half = field / 2
+            block.add_arc((0, 0), radius, -degrees(half), degrees(half))
+            block.add_line((0, 0), (radius * cos(half), -radius * sin(half)))
+            block.add_line((0, 0), (radius * cos(half), radius * sin(half)))
+    block.add_point((0, 0))
+    height = Sizes().text * metre
+    for i, field_name in enumerate(FIELDS):
+        place = (1.2 * Sizes().symbol * metre, -i * 1.7 * height)
+        block.add_attdef(field_name, place, dxfattribs={"height": height, "flags": 0 if i == 0 else 1})
