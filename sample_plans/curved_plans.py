@@ -92,7 +92,7 @@ def _furnish_library(pen: Pen) -> None:
 def pavilion() -> Drawing:
     """Metres on a survey grid: a circle, an ellipse, a spline and a hatch for outlines, 5,400 km from the origin."""
     doc = new_drawing(METRE)
-    for layer in ("SPACE", "SPACE GROTTO"):
+    for layer in ("SPACE", "Grotto Room"):
         doc.layers.add(layer, color=6)
     space = doc.modelspace()
     pen = Pen(space, text_height=0.25)
@@ -139,7 +139,7 @@ def _grotto(pen: Pen) -> None:
         (-4.5, 5.0), (-3.0, 5.0), (-0.8, 6.0), (-1.2, 10.0), (-3.8, 10.5), (-4.6, 8.6),
         (-6.2, 10.8), (-8.6, 9.0), (-8.0, 5.5), (-6.0, 5.0), (-4.5, 5.0),
     ]  # fmt: skip
-    for layer, scale in (("SPACE GROTTO", 1.0), ("A-WALL", 1.1)):
+    for layer, scale in (("Grotto Room", 1.0), ("A-WALL", 1.1)):
         points = [(-4.6 + (x + 4.6) * scale, 7.4 + (y - 7.4) * scale, 0.0) for x, y in bean]
         spline = pen.layout.add_spline(dxfattribs={"layer": layer})
         spline.set_open_uniform(points, degree=3)
