@@ -9,6 +9,7 @@ holes clockwise, without a repeated last point; they are rounded, so :func:`kern
 has the last word on whether they are rings.
 """
 
+import re
 from collections.abc import Iterable, Sequence
 from typing import NamedTuple
 
@@ -22,6 +23,7 @@ __all__ = [
     "area",
     "common_area",
     "covers_points",
+    "crossing_place",
     "difference",
     "faces_of_lines",
     "interior_point",
@@ -133,6 +135,13 @@ def _open(ring: shapely.LinearRing, *, ccw: bool) -> Floats:
 def are_simple(rings: Sequence[Floats]) -> npt.NDArray[np.bool_]:
     """Return for each ring, ``(n, 2)`` in either direction, whether it is simple: no crossing, no touching."""
     return np.asarray(shapely.is_valid(_polygons(rings)), dtype=bool)
+
+
+def crossing_place(ring: Floats) -> tuple[float, float] | None:
+    """Return where a ring crosses or touches itself, rounded; ``None`` if it does not, or has no area at all."""
+    shape = shapely.Polygon(ring)
+    place = re.search(r"elf-intersection\[(\S+) (\S+)\]", shapely.is_valid_reason(shape))
+    return (float(place[1]), float(place[2])) if place and shape.convex_hull.area > 0 else None
 
 
 def overlap_areas(first: Sequence[Floats], second: Sequence[Floats]) -> tuple[Indices, Indices, Floats]:

@@ -8,8 +8,9 @@ Method
     the block is inserted by one matrix product. Scales differ, so the flattening is kept for each power of two
     of the scale.
 Bounds
-    A block inside itself is left out; nesting deeper than ``DEEPEST`` and anything beyond ``MOST_POINTS`` points
-    altogether is left out; each is reported as a problem.
+    A block inside itself is left out, and so is nesting deeper than ``DEEPEST``, and an insertion with which blocks
+    would make more than ``MOST_COPIES`` copies of strokes, or ``MOST_POINTS`` points, in the whole run; each is
+    reported as a problem.
 Layers
     What lies on layer 0 of a block appears on the layer of the insertion. A frozen layer hides the blocks inserted
     on it with all they hold; a layer that is off hides only what lies on it.
@@ -34,6 +35,7 @@ from kernelscan.reading.texts import clean_text
 __all__ = ["drawing_contents"]
 
 DEEPEST = 40
+MOST_COPIES = 400_000
 MOST_POINTS = 4_000_000
 FARTHEST = 1e12
 """Coordinates beyond this, in drawing units, are no building."""
@@ -95,6 +97,7 @@ class _Walk:
         self.hidden: Counter[str] = Counter()
         self.unread: Counter[tuple[str, str]] = Counter()
         self.drawn: dict[tuple[str, int], _Drawn] = {}
+        self.copies_left = MOST_COPIES
         self.points_left = MOST_POINTS
         self.said: set[tuple[str, str]] = set()
         whole = _Drawn([], [])
@@ -138,8 +141,6 @@ class _Walk:
         for points, closed in flattened(entity, self.chord / 2.0**fineness):
             into.strokes.append(_Spatial(points, closed, kind, layer, handle, blocks))
             into.points += len(points)
-        if into.points > self.points_left:
-            raise ValueError(f"the drawing has more than {MOST_POINTS:,} points")
 
     def _label(self, entity: DXFEntity, into: _Drawn) -> None:
         label = label_of(entity, self._name(entity.dxf.layer))
@@ -184,14 +185,21 @@ class _Walk:
         finer = fineness + (ceil(log2(scale)) if 0 < scale < 1e12 else 0)
         drawn = self._block(insert.dxf.name, path, finer)
         copies = max(insert.mcount, 1)
-        if (len(drawn.strokes) + len(drawn.labels)) == 0:
+        self.copies_left -= self._checked(
+            copies * (len(drawn.strokes) + len(drawn.labels)), self.copies_left, insert
+        )
+        self.points_left -= self._checked(copies * drawn.points, self.points_left, insert)
+        if not (drawn.strokes or drawn.labels):
             return
-        if copies * max(drawn.points, 1) + into.points > self.points_left:
-            raise ValueError(
-                f"{copies} copies of block {clean_text(insert.dxf.name)!r} make over {MOST_POINTS:,} points"
-            )
         for cell in insert.multi_insert() if copies > 1 else (insert,):
             self._carry(drawn, np.array(tuple(cell.matrix44()), dtype=np.float64).reshape(4, 4), insert, into)
+
+    def _checked(self, needed: int, left: int, insert: Insert) -> int:
+        if needed > left:
+            raise ValueError(
+                f"{max(insert.mcount, 1)} copies of block {clean_text(insert.dxf.name)!r} are more than can be drawn"
+            )
+        return needed
 
     def _block(self, name: str, path: tuple[str, ...], fineness: int) -> _Drawn:
         key = (name.casefold(), fineness)

@@ -9,6 +9,7 @@ from pathlib import Path
 
 from ezdxf import recover
 from ezdxf.document import Drawing
+from ezdxf.entities.dxfentity import DXFEntity
 from ezdxf.filemanagement import readfile
 
 from kernelscan.errors import InputError
@@ -123,11 +124,11 @@ def _recovered(path: Path) -> tuple[Drawing, list[Problem]]:
     return drawing, problems
 
 
-def _source(entity: object) -> Source:
-    dxf = getattr(entity, "dxf", None)
-    if dxf is None:
+def _source(entity: DXFEntity | None) -> Source:
+    if entity is None or not entity.is_alive:
         return Source()
-    return Source(clean_text(str(dxf.get("layer", "") or "")), str(dxf.get("handle", "") or ""))
+    layer = entity.dxf.layer if entity.dxf.is_supported("layer") else ""
+    return Source(clean_text(str(layer)), str(entity.dxf.handle or ""))
 
 
 def _reason(fault: Exception) -> str:

@@ -24,6 +24,8 @@ Role = Literal[
 class LayerPatterns:
     """Which layers a user says are what: shell-style patterns, case-blind; none means by convention.
 
+    Patterns for a role take the place of the conventions for that role; the other roles keep theirs.
+
     Attributes
     ----------
     rooms
@@ -144,7 +146,12 @@ def layer_role(layer: str, patterns: LayerPatterns) -> LayerRole:
         hit = matches(layer, wanted)
         if hit:
             return LayerRole(layer, role, f"matches {hit!r}")
-    return _by_words(layer)
+    by_words = _by_words(layer)
+    if any(role == by_words.role and wanted for role, wanted in given[:-1]):
+        return LayerRole(
+            layer, "other", f"{by_words.reason}, but other layers are named as {by_words.role} layers"
+        )
+    return by_words
 
 
 def _by_words(layer: str) -> LayerRole:

@@ -5,9 +5,8 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from kernelscan.errors import GeometryError
-from kernelscan.geometry.rings import Ring, as_ring
-from kernelscan.geometry.shapes import are_simple
+from kernelscan.geometry.rings import Ring
+from kernelscan.geometry.shapes import are_simple, crossing_place
 from kernelscan.plan import Problem, Source
 from kernelscan.reading.strokes import Stroke
 
@@ -55,7 +54,9 @@ def closed_outlines(
         Ends nearer than this, in metres, are one point.
     """
     rings = [stroke for stroke in strokes if stroke.is_ring(snap / metres)]
-    points = _distinct_points([stroke.points * metres for stroke in rings], snap)
+    points = _distinct_points(
+        [stroke.points * metres for stroke in rings], [0.0 if stroke.closed else snap for stroke in rings]
+    )
     areas = ring_areas(points)
     thick = [k for k in range(len(rings)) if len(points[k]) > 2 and np.isfinite(areas[k])]
     simple = dict(zip(thick, are_simple([points[k] for k in thick]), strict=True))
@@ -106,8 +107,8 @@ def ring_areas(rings: Sequence[np.ndarray]) -> np.ndarray:
     return np.asarray(np.add.reduceat(cross, starts) / 2)
 
 
-def _distinct_points(rings: Sequence[np.ndarray], snap: float) -> list[np.ndarray]:
-    """Drop each point that repeats the one before it, and last ones that come back to within ``snap`` of the first."""
+def _distinct_points(rings: Sequence[np.ndarray], snaps: Sequence[float]) -> list[np.ndarray]:
+    """Drop each point that repeats the one before it, and last ones that come back to the first, to within a snap."""
     if not rings:
         return []
     counts = np.array([len(ring) for ring in rings])
@@ -117,7 +118,7 @@ def _distinct_points(rings: Sequence[np.ndarray], snap: float) -> list[np.ndarra
     keep[1:] = (points[1:] != points[:-1]).any(axis=1)
     keep[starts] = True
     ends = starts + counts - 1
-    back = np.hypot(*(points[ends] - points[starts]).T) <= snap
+    back = np.hypot(*(points[ends] - points[starts]).T) <= np.array(snaps)
     keep[ends[back & (counts > 3)]] = False
     return [points[s : s + n][keep[s : s + n]] for s, n in zip(starts.tolist(), counts.tolist(), strict=True)]
 
@@ -130,11 +131,9 @@ def _read_only(points: np.ndarray, area: float) -> Ring:
 
 def _fault(stroke: Stroke, points: np.ndarray) -> Problem:
     source = Source(stroke.layer, stroke.handle)
-    try:
-        as_ring(points)
-    except GeometryError as fault:
-        crossing = "crosses" in str(fault)
-        code = "crossing-outline" if crossing else "degenerate-outline"
-        at = (float(points[0, 0]), float(points[0, 1]))
-        return Problem(code, f"{stroke.kind} is no room outline: {fault}", at, source)
-    return Problem("degenerate-outline", f"{stroke.kind} has no area to speak of", None, source)
+    place = crossing_place(points) if len(points) > 2 else None
+    if place is None:
+        at = (float(points[0, 0]), float(points[0, 1])) if len(points) else None
+        return Problem("degenerate-outline", f"{stroke.kind} encloses no area; it is no room", at, source)
+    text = f"{stroke.kind} crosses or touches itself at ({place[0]:.3f}, {place[1]:.3f}); mend it"
+    return Problem("crossing-outline", text, place, source)

@@ -62,8 +62,8 @@ def read_plan(
     path: str | PathLike[str],
     *,
     unit: str | None = None,
-    layers: LayerPatterns = LayerPatterns(),  # noqa: B008 - frozen
-    tolerances: Tolerances = Tolerances(),  # noqa: B008 - frozen
+    layers: LayerPatterns = LayerPatterns(),
+    tolerances: Tolerances = Tolerances(),
 ) -> Plan:
     """Read a DXF drawing.
 

@@ -1,0 +1,78 @@
+"""The drawing's unit: header, option, neither, absurd."""
+
+from pathlib import Path
+
+import pytest
+from reading.drawings import new_drawing, saved, square_on
+
+from kernelscan.errors import InputError
+from kernelscan.reading import read_plan
+from kernelscan.units import HEADER_UNITS, OPTION_UNITS
+
+
+@pytest.mark.parametrize("code", sorted(HEADER_UNITS))
+def test_every_code_of_the_header(tmp_path: Path, code: int) -> None:
+    """A square drawn as 4 x 3 m in each unit of the table; millimetre chords do not matter to straight lines."""
+    size = 1 / HEADER_UNITS[code].metres
+    plan_file = saved(tmp_path / "plan.dxf", square_on("ROOM", size), unit=code)
+    if size * 4 >= 1e12:
+        assert read_plan(plan_file).rooms == ()
+        return
+    plan = read_plan(plan_file)
+    assert plan.rooms[0].area == pytest.approx(12)
+    assert (plan.unit, plan.unit_from) == (HEADER_UNITS[code], "header")
+    assert not plan.problems
+
+
+@pytest.mark.parametrize("name", OPTION_UNITS)
+def test_the_option_beats_the_header(tmp_path: Path, name: str) -> None:
+    plan = read_plan(saved(tmp_path / "plan.dxf", square_on("ROOM"), unit=4), unit=name)
+    assert plan.rooms[0].area == pytest.approx(12 * plan.unit.metres**2)
+    assert (plan.unit.name, plan.unit_from) == (name, "option")
+    assert not plan.problems, "what a person says is not questioned"
+
+
+def test_coordinates_are_the_drawings_own_times_its_unit(tmp_path: Path) -> None:
+    plan = read_plan(saved(tmp_path / "plan.dxf", square_on("ROOM", 0.1, (1234.567, 0.3)), unit=2))
+    xs = {1234.567 * 0.3048, (1234.567 + 4 * 0.1) * 0.3048}
+    assert set(plan.rooms[0].outline[:, 0].tolist()) == xs
+
+
+@pytest.mark.parametrize("code", [0, 25, -3, None])
+def test_no_unit_is_refused_with_what_the_rooms_would_measure(tmp_path: Path, code: int | None) -> None:
+    drawing = new_drawing(0)
+    if code is None:
+        del drawing.header["$INSUNITS"]
+    else:
+        drawing.header["$INSUNITS"] = code
+    square_on("ROOM", 100)(drawing.modelspace())
+    path = tmp_path / "plan.dxf"
+    drawing.saveas(path)
+    with pytest.raises(InputError) as refused:
+        read_plan(path)
+    text = str(refused.value)
+    assert "\n" not in text
+    assert text.startswith("plan.dxf: ")
+    assert "--unit" in text
+    for part in (
+        "0.12 m2 in mm",
+        "12.00 m2 in cm",
+        "120,000.00 m2 in m",
+        "77.42 m2 in in",
+        "11,148.36 m2 in ft",
+    ):
+        assert part in text
+
+
+def test_an_unknown_option_is_refused(tmp_path: Path) -> None:
+    with pytest.raises(InputError, match="--unit: got 'cubit'"):
+        read_plan(saved(tmp_path / "plan.dxf", square_on("ROOM")), unit="cubit")
+
+
+@pytest.mark.parametrize(("size", "absurd"), [(0.2, True), (0.21, False), (20, False), (20.5, True)])
+def test_an_absurd_header_is_a_problem(tmp_path: Path, size: float, absurd: bool) -> None:
+    """The median room is 12 x size^2 m2; the bounds are 0.5 and 5,000 m2."""
+    plan = read_plan(saved(tmp_path / "plan.dxf", square_on("ROOM", size), unit=6))
+    assert [p.code for p in plan.problems] == (["absurd-unit"] if absurd else [])
+    assert not absurd or "mm" in plan.problems[0].message
+    assert len(plan.rooms) == 1
