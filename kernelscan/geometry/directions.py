@@ -73,7 +73,10 @@ def directions_around(c: Floats, points: Floats) -> Directions:
 
 def _sort_clusters(order: Indices, close: Indices, c: Floats, points: Floats) -> None:
     """Sort anew, in place and exactly, each stretch of the order whose neighbours are close."""
-    clockwise = cmp_to_key(lambda a, b: -int(orientations(c, points[a], points[b])[()]))
+
+    def clockwise(a: int, b: int) -> int:
+        return -int(orientations(c, points[a : a + 1], points[b : b + 1])[0])
+
     for stretch in np.split(close, np.flatnonzero(np.diff(close) > 1) + 1):
         span = slice(int(stretch[0]), int(stretch[-1]) + 2)
-        order[span] = sorted(order[span].tolist(), key=clockwise)
+        order[span] = sorted(order[span].tolist(), key=cmp_to_key(clockwise))

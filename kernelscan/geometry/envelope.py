@@ -77,7 +77,7 @@ def _duals(c: Floats, p: Floats, q: Floats) -> tuple[Headings, Floats]:
         v, d = p - c, q - p
         left, right = v[:, 0] * d[:, 1], v[:, 1] * d[:, 0]
         height, error = left - right, 8 * _UNIT * (np.abs(left) + np.abs(right)) + 1e-290
-        w = (d[:, 1] - 1j * d[:, 0]) / height
+        w: Headings = (d[:, 1] - 1j * d[:, 0]) / height
         slack = np.where(height > 2 * error, error / (height - error), np.inf) + 64 * _UNIT
         return w, 4 * np.abs(w) * slack
 
@@ -105,7 +105,9 @@ class _Field:
     def paint(self, table: Indices, row: Indices, first: Indices, edges: Indices) -> None:
         """Paint each edge on its block, ``table[row, first]``; several may fall on one."""
         while len(first):
-            u = np.where(row > 0, self.heading[(first + (1 << row >> 1)) % len(self.heading)], self.middle[first])
+            u = np.where(
+                row > 0, self.heading[(first + (1 << row >> 1)) % len(self.heading)], self.middle[first]
+            )
             edges = self._nearer(edges, table[row, first], u)
             table[row, first] = edges
             lost = np.flatnonzero(table[row, first] != edges)
