@@ -3,6 +3,7 @@
 import os
 import sys
 from collections.abc import Sequence
+from io import TextIOWrapper
 from typing import Annotated
 
 import typer
@@ -20,7 +21,6 @@ app = typer.Typer(
     name="kernelscan",
     help="Where does one camera or line-of-sight sensor see every wall of a room?",
     epilog="The answer is a plan view. Local codes, the device's listing and the authority govern.",
-    no_args_is_help=True,
     add_completion=False,
     pretty_exceptions_enable=False,
     rich_markup_mode=None,
@@ -52,7 +52,10 @@ def run(arguments: Sequence[str]) -> int:
     """Run one command line and return its exit code; errors are printed, never raised."""
     command = typer.main.get_command(app)
     try:
-        code = command.main(list(arguments), prog_name="kernelscan", standalone_mode=False)
+        with command.make_context("kernelscan", list(arguments) or ["--help"]) as context:
+            command.invoke(context)
+    except typer.Exit as end:
+        return end.exit_code
     except TyperException as error:
         return _complain(f"{error.format_message()} See kernelscan --help.", WRONG_INPUT)
     except CertificateError as error:
@@ -71,11 +74,14 @@ def run(arguments: Sequence[str]) -> int:
         if "KERNELSCAN_DEBUG" in os.environ:
             raise
         return _complain(f"a fault of the program, please report it: {_brief(error)}", PROGRAM_FAULT)
-    return code if isinstance(code, int) else DONE
+    return DONE
 
 
 def main() -> None:
-    """Run the command line of this process."""
+    """Run the command line of this process; signs that the terminal cannot show are replaced, not fatal."""
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, TextIOWrapper):
+            stream.reconfigure(errors="replace")
     sys.exit(run(sys.argv[1:]))
 
 

@@ -3,11 +3,14 @@
 from collections.abc import Sequence
 from dataclasses import replace
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from kernelscan.cli.options import DrawingUnit
 from kernelscan.errors import InputError
 from kernelscan.plain_text import plain_text
-from kernelscan.plan import Plan, Room
+
+if TYPE_CHECKING:
+    from kernelscan.plan import Plan, Room
 
 __all__ = ["read_drawing"]
 
@@ -18,7 +21,7 @@ def read_drawing(
     rooms: Sequence[str],
     room_layers: Sequence[str],
     obstacle_layers: Sequence[str],
-) -> Plan:
+) -> "Plan":
     """Return the plan of a drawing, with only the rooms named (by name or number, case-blind) if any are."""
     from kernelscan.reading import read_plan
     from kernelscan.reading.layers import LayerPatterns
@@ -28,7 +31,7 @@ def read_drawing(
     return replace(plan, rooms=_chosen(plan, rooms)) if rooms else plan
 
 
-def _chosen(plan: Plan, names: Sequence[str]) -> tuple[Room, ...]:
+def _chosen(plan: "Plan", names: Sequence[str]) -> tuple["Room", ...]:
     wanted = {name.casefold() for name in names}
     known = {name.casefold() for room in plan.rooms for name in (room.id, room.name)}
     missing = [name for name in names if name.casefold() not in known]

@@ -80,7 +80,7 @@ def side_signs(points: npt.NDArray[np.float64], lines: Lines) -> npt.NDArray[np.
         signs = np.sign(value)
         doubtful = ~(np.abs(value) > bound)
     for point, line in np.argwhere(doubtful).tolist():
-        exact = _cross(*lines[line], points[point])
+        exact = _cross(lines[line, 0], lines[line, 1], points[point])
         signs[point, line] = (exact > 0) - (exact < 0)
     return signs.astype(np.int8)
 

@@ -43,10 +43,10 @@ def print_zones(plan: Plan, answers: Sequence[RoomZones], out: TextIO) -> None:
     )
     for zones in answers:
         room = zones.room
-        head = [room.id, _cell(room.name), f"{room.area:.2f} m2", kernel_in_words(zones)]
+        head: list[str | Text] = [room.id, _cell(room.name), f"{room.area:.2f} m2", kernel_in_words(zones)]
         for spot in zones.recommended or (None,):
             table.add_row(*head, *(["–"] * 6 if spot is None else _spot_cells(plan, spot)))
-            head = [""] * 4
+            head = ["", "", "", ""]
     _print(out, _heading(plan), table)
 
 
@@ -109,7 +109,14 @@ def _cell(text: str) -> Text:
     return Text(plain_text(text, 40))
 
 
+class _Console(Console):
+    """A console that leaves it to the caller what to do when the reader of the output has gone."""
+
+    def on_broken_pipe(self) -> None:
+        raise BrokenPipeError
+
+
 def _print(out: TextIO, *parts: str | Table) -> None:
-    console = Console(file=out, highlight=False, width=None if out.isatty() else PIPE_WIDTH)
+    console = _Console(file=out, highlight=False, width=None if out.isatty() else PIPE_WIDTH)
     for part in parts:
         console.print(Text(part) if isinstance(part, str) else part, soft_wrap=isinstance(part, str))
