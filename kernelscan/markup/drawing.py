@@ -1,13 +1,14 @@
 """The plan on the sheet: pale linework, rooms, zones by kind, and the walls that leave a room without a point."""
 
 from collections.abc import Iterable, Iterator, Sequence
-from math import sqrt
+from math import dist, sqrt
 
 import numpy as np
 
 from kernelscan.coverage import CornerZone, FloorZone, Mount, RoomZones, WallZone
+from kernelscan.geometry import shapes
 from kernelscan.markup.hatching import hatch_lines
-from kernelscan.markup.scene import Box, Fill, Hatch, Item, Point, Stroke
+from kernelscan.markup.scene import Box, Fill, Hatch, Item, Pen, Point, Stroke, points_of
 from kernelscan.markup.style import (
     ARROW_PEN,
     BLACK,
@@ -32,7 +33,7 @@ __all__ = [
     "band_ring",
     "conflict_items",
     "conflict_walls",
-    "corner_ring",
+    "corner_rings",
     "linework_items",
     "obstacle_items",
     "outline_items",
@@ -43,6 +44,8 @@ __all__ = [
 
 FINEST = 0.1
 """Points of the background nearer than this on paper are one, in millimetres."""
+SHORT_WALL = 6.0
+"""A wall in conflict that is shorter than this is heavy and solid: a dash or two would not show."""
 SEEING_ARROW = 4.0
 """Length of the arrow to the side from which a wall is seen, in millimetres."""
 
@@ -59,9 +62,7 @@ def linework_items(lines: Iterable[np.ndarray], view: PlanView, window: Box) -> 
 def obstacle_items(room: Room, view: PlanView) -> Iterator[Item]:
     """Yield the obstacles of a room, filled in pale grey."""
     for hole in room.holes:
-        ring = view.ring(hole)
-        yield Fill((ring,), OBSTACLE_INK)
-        yield Stroke(ring, OBSTACLE_PEN, closed=True)
+        yield Fill((view.ring(hole),), OBSTACLE_INK, OBSTACLE_PEN)
 
 
 def outline_items(room: Room, view: PlanView) -> Iterator[Item]:
@@ -83,7 +84,9 @@ def zone_items(zones: RoomZones, view: PlanView) -> Iterator[Item]:
             ticks.append(Stroke((ring[0], ring[-1]), ROOM_PEN))
     yield from _hatched("wall", bands)
     yield from ticks
-    yield from _hatched("corner", [corner_ring(zones.room, corner, view) for corner in zones.corners])
+    yield from _hatched(
+        "corner", [ring for corner in zones.corners for ring in corner_rings(zones.room, corner, view)]
+    )
 
 
 def _hatched(mount: Mount, rings: Sequence[tuple[Point, ...]]) -> Iterator[Item]:
@@ -127,11 +130,15 @@ def band_ring(room: Room, zone: WallZone, width: float) -> np.ndarray:
     return np.concatenate([zone.path, (zone.path + width * means)[::-1]])
 
 
-def corner_ring(room: Room, zone: CornerZone, view: PlanView) -> tuple[Point, ...]:
-    """Return the sector that shows a corner zone, smaller in a room that is small on paper."""
+def corner_rings(room: Room, zone: CornerZone, view: PlanView) -> Iterator[tuple[Point, ...]]:
+    """Yield the sector that shows a corner zone, smaller in a room that is small on paper, as far as it is inside."""
     across = sqrt(room.area) * view.scale.mm_per_metre
     radius = min(CORNER_RADIUS, max(SYMBOL_RADIUS + 0.8, across / 7))
-    return sector(view.point(zone.spot.point), radius, zone.spot.bearing, zone.spot.field_of_view)
+    spot = zone.spot
+    ring = sector(view.point(spot.point), radius, spot.bearing, spot.field_of_view)
+    outline, *holes = (view.to_paper(each) for each in room.rings)
+    for piece in shapes.intersection(shapes.Patch(np.array(ring), ()), shapes.Patch(outline, tuple(holes))):
+        yield points_of(np.asarray(piece.outline))
 
 
 def conflict_walls(zones: RoomZones) -> tuple[WallRef, ...]:
@@ -146,7 +153,8 @@ def conflict_items(zones: RoomZones, view: PlanView) -> Iterator[Item]:
     for wall in conflict_walls(zones):
         start, end = zones.room.wall_ends(wall)
         ends = view.ring(np.array([start, end]))
-        yield Stroke(ends, CONFLICT_PEN)
+        short = dist(*ends) < SHORT_WALL
+        yield Stroke(ends, Pen(CONFLICT_PEN.width) if short else CONFLICT_PEN)
         yield from _arrow(*seeing_arrow(zones.room, wall, view))
 
 

@@ -81,7 +81,11 @@ def _fill_block(block: "BlockLayout", mount: Mount, field: float, metre: float) 
             block.add_line((0, 0), (radius * cos(half), -radius * sin(half)))
             block.add_line((0, 0), (radius * cos(half), radius * sin(half)))
     block.add_point((0, 0))
-    height = Sizes().text * metre
-    for i, field_name in enumerate(FIELDS):
-        place = (1.2 * Sizes().symbol * metre, -i * 1.7 * height)
-        block.add_attdef(field_name, place, dxfattribs={"height": height, "flags": 0 if i == 0 else 1})
+    from ezdxf.enums import TextEntityAlignment
+
+    for i, name in enumerate(FIELDS):
+        height = Sizes().text * metre
+        place = (Sizes().symbol * metre + height, -i * 1.7 * height)
+        hidden = {} if i == 0 else {"flags": 1}
+        definition = block.add_attdef(name, dxfattribs={"height": height, **hidden})
+        definition.set_placement(place, align=TextEntityAlignment.MIDDLE_CENTER)

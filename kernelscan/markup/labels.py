@@ -5,7 +5,7 @@ from dataclasses import dataclass
 from math import cos, pi, sin
 
 from kernelscan.markup.metrics import ASCENT, DESCENT, font_size, text_width
-from kernelscan.markup.scene import Box, Fill, Item, Point, Stroke, Text
+from kernelscan.markup.scene import Box, Fill, Item, Point, Text
 from kernelscan.markup.style import BLACK, BODY, LEADER_PEN, WHITE
 from kernelscan.markup.text import LINE_PITCH
 
@@ -45,9 +45,7 @@ class Label:
 
     def items(self, box: Box) -> tuple[Item, ...]:
         """Return the label drawn in a box of its own size."""
-        items: list[Item] = [Fill((box.corners,), WHITE)]
-        if self.framed:
-            items.append(Stroke(box.corners, LEADER_PEN, closed=True))
+        items: list[Item] = [Fill((box.corners,), WHITE, LEADER_PEN if self.framed else None)]
         x, baseline = box.centre[0], box.top - GROUND - ASCENT * font_size(self.lines[0].height)
         for i, line in enumerate(self.lines):
             baseline -= line.height * LINE_PITCH if i else 0.0

@@ -6,8 +6,8 @@ The rule by which paper, orientation and scale are chosen, where they are not gi
    the largest usual scale is found at which all rooms fit with a margin for leaders; among the ways that give the
    same scale, one that holds the whole schedule goes first, then the one with the largest space for the plan.
 2. Of the two smallest papers (A4 and A3, or letter and ANSI B: what an office printer takes) the first wins that
-   is legible and holds the whole schedule. Legible is a scale at which the median room, by the root of its area, is
-   at least 30 mm across.
+   is legible and holds the whole schedule. Legible is a scale at which a square room of the rooms' mean area is at
+   least 30 mm across.
 3. Else the first paper of all wins that is legible; else the one with the largest scale, and of several the smallest.
 
 The title block is always at the lower right (ISO 7200). In the arrangement "column" the blocks stand above it, at the
@@ -17,6 +17,7 @@ under the plan, side by side where the width allows.
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
+from math import inf
 
 import numpy as np
 
@@ -46,7 +47,7 @@ MARGIN = 14.0
 CAPTION = 6.0
 """Strip under the plan for its caption."""
 LEGIBLE = 30.0
-"""How wide the median room shall at least be on paper."""
+"""How wide a room of the mean area shall at least be on paper, in millimetres."""
 NARROWEST = 60.0
 """A plan gets at least this width and height."""
 
@@ -103,7 +104,7 @@ def chosen_layout(
             f"{options.paper or 'any usual paper'}; give a smaller scale or a larger paper"
         )
     legible = [
-        each for each in found if options.scale or _median_width(rooms) * each[1].mm_per_metre >= LEGIBLE
+        each for each in found if options.scale or _usual_width(rooms) * each[1].mm_per_metre >= LEGIBLE
     ]
     handy = [each for each in found[:2] if each in legible and _holds_all(each[0], schedule)]
     return (handy or legible or [min(found, key=lambda each: each[1].denominator)])[0]
@@ -119,8 +120,9 @@ def _papers(options: SheetOptions, imperial: bool) -> tuple[Paper, ...]:
     return ANSI_PAPERS if imperial else ISO_PAPERS
 
 
-def _median_width(rooms: Sequence[Room]) -> float:
-    return float(np.sqrt(np.median([room.area for room in rooms]))) if rooms else 1e9
+def _usual_width(rooms: Sequence[Room]) -> float:
+    """Return the side of a square of the rooms' mean area, in metres; without rooms any scale will do."""
+    return float(np.sqrt(np.mean([room.area for room in rooms]))) if rooms else inf
 
 
 def _best_on(

@@ -96,8 +96,7 @@ def _other_swatch(i: int, box: Box) -> Iterator[Item]:
     elif i == 4:
         yield Stroke(box.corners, ROOM_PEN, closed=True)
         obstacle = Box(box.centre[0] - 1.5, middle - 1.2, box.centre[0] + 1.5, middle + 1.2).corners
-        yield Fill((obstacle,), OBSTACLE_INK)
-        yield Stroke(obstacle, OBSTACLE_PEN, closed=True)
+        yield Fill((obstacle,), OBSTACLE_INK, OBSTACLE_PEN)
     else:
         yield Stroke(line, LINEWORK_PEN)
 
@@ -113,8 +112,7 @@ def scale_bar(at: tuple[float, float], scale: Scale, imperial: bool, longest: fl
     count = max(1, min(5, int(longest / step)))
     for k in range(count):
         cell = Box(x + k * step, y, x + (k + 1) * step, y + 1.6).corners
-        yield Fill((cell,), BLACK if k % 2 == 0 else WHITE)
-        yield Stroke(cell, ZONE_EDGE_PEN, closed=True)
+        yield Fill((cell,), BLACK if k % 2 == 0 else WHITE, ZONE_EDGE_PEN)
     for k in range(count + 1):
         yield Text((x + k * step, y - 3.3), f"{k * part:g}", anchor="middle")
     yield Text((x + count * step + 4, y - 3.3), unit)

@@ -74,7 +74,7 @@ def _cells(box: Box) -> Iterator[tuple[int, int]]:
             yield column, row
 
 
-def inner_points(rings: tuple[np.ndarray, ...], count: int = 12) -> np.ndarray:
+def inner_points(rings: tuple[np.ndarray, ...], count: int = 16) -> np.ndarray:
     """Return points inside an area, ``(m, 2)``, the one farthest from its border first.
 
     A lattice of ``count`` by ``count`` points over the area's box, kept where the even-odd rule says inside. For an

@@ -109,10 +109,11 @@ class Stroke:
 
 @dataclass(frozen=True, slots=True)
 class Fill:
-    """An area of one ink: rings by the even-odd rule."""
+    """An area of one ink: rings by the even-odd rule, drawn round with a pen where there is one."""
 
     rings: tuple[tuple[Point, ...], ...]
     ink: str
+    pen: Pen | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -227,8 +228,8 @@ def _line(item: Item) -> str:
     match item:
         case Stroke(points, pen, closed):
             return f"{'loop' if closed else 'line'} {_pen(pen)} {_points(points)}"
-        case Fill(rings, ink):
-            return f"fill {ink} " + " | ".join(_points(ring) for ring in rings)
+        case Fill(rings, ink, pen):
+            return f"fill {ink} {_pen(pen) if pen else 'bare'} " + " | ".join(_points(ring) for ring in rings)
         case Hatch(lines, pen):
             return f"hatch {_pen(pen)} " + " | ".join(_points(line) for line in lines)
         case Text(at, string, height, anchor, bold, ink, angle):

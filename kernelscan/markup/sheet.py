@@ -28,6 +28,7 @@ from kernelscan.markup.text import clean_text, cut_to
 from kernelscan.markup.titleblock import SheetNumber, title_block
 from kernelscan.markup.view import PlanView, plan_extent
 from kernelscan.markup.wording import Custom
+from kernelscan.plain_text import plain_text
 from kernelscan.plan import Plan
 
 __all__ = ["SheetOptions", "compose_zone_sheets"]
@@ -86,7 +87,7 @@ def compose_zone_sheets(
 
 def _about_the_drawing(plan: Plan, answers: Sequence[RoomZones]) -> tuple[str, ...]:
     """Return what must be said of this drawing in particular."""
-    lines = [f"How rooms were found: {clean_text(plan.room_rule)}"] if plan.room_rule else []
+    lines = [f"How rooms were found: {plain_text(plan.room_rule, 400)}"] if plan.room_rule else []
     if not answers:
         lines.append("No closed room was found in this drawing: nothing is marked.")
     met = Counter(clean_text(problem.code) for problem in plan.problems)

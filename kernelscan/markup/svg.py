@@ -72,8 +72,10 @@ def _element(drawing: "svgwrite.Drawing", item: Item | _Strokes, height: float) 
             return drawing.path(_path(pieces, height, closed), **_pen(pen))
         case Stroke(points, pen, closed):
             return drawing.path(_path([points], height, closed), **_pen(pen))
-        case Fill(rings, ink):
-            return drawing.path(_path(rings, height, True), fill=ink, fill_rule="evenodd")
+        case Fill(rings, ink, border):
+            rule = {"fill_rule": "evenodd"} if len(rings) > 1 else {}
+            line = _pen(border) if border else {}
+            return drawing.path(_path(rings, height, True), fill=ink, **rule, **line)
         case Hatch(lines, pen):
             return drawing.path(_path(lines, height, False), **_pen(pen))
         case Text():

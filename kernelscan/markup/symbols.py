@@ -38,14 +38,14 @@ def spot_ring(spot: Spot, at: Point) -> tuple[Point, ...]:
 def spot_symbol(spot: Spot, at: Point) -> tuple[Item, ...]:
     """Return the symbol of a recommended point, drawn at its place on the paper."""
     ring = spot_ring(spot, at)
-    items: list[Item] = [Fill((ring,), WHITE), Stroke(ring, SYMBOL_PEN, closed=True)]
+    items: list[Item] = [Fill((ring,), WHITE, SYMBOL_PEN)]
     if spot.bearing is None:
         items += [
             Stroke(((at[0] - SYMBOL_RADIUS, at[1]), (at[0] + SYMBOL_RADIUS, at[1])), SYMBOL_PEN),
             Stroke(((at[0], at[1] - SYMBOL_RADIUS), (at[0], at[1] + SYMBOL_RADIUS)), SYMBOL_PEN),
         ]
     core = sector(at, 0.45 * SYMBOL_RADIUS, spot.bearing, spot.field_of_view)
-    items += [Fill((core,), MARKS[spot.mount].ink), Stroke(core, SYMBOL_PEN, closed=True)]
+    items.append(Fill((core,), MARKS[spot.mount].ink, SYMBOL_PEN))
     return tuple(items)
 
 

@@ -11,7 +11,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from kernelscan.coverage import RoomZones
-from kernelscan.markup.drawing import conflict_walls, corner_ring, seeing_arrow
+from kernelscan.markup.drawing import conflict_walls, corner_rings, seeing_arrow
 from kernelscan.markup.labels import Label, Line, boxes_around, dot, nearest_in
 from kernelscan.markup.placing import Occupied, boxes_inside, inner_points
 from kernelscan.markup.scene import Box, Item, Point, Stroke
@@ -119,7 +119,8 @@ def _keep_marks_clear(zones: RoomZones, view: PlanView, tags: Tags) -> None:
     for spot in zones.recommended:
         tags.taken.add(box_around(spot_ring(spot, view.point(spot.point))))
     for corner in zones.corners:
-        tags.shy.add(box_around(corner_ring(zones.room, corner, view)))
+        for ring in corner_rings(zones.room, corner, view):
+            tags.shy.add(box_around(ring))
     for wall in conflict_walls(zones):
         start, end = zones.room.wall_ends(wall)
         foot, tip = seeing_arrow(zones.room, wall, view)
@@ -174,7 +175,8 @@ def _variants(zones: RoomZones, custom: Custom) -> Iterator[Label]:
     yield Label((number, *name, area, kernel))
     yield Label((number, *name, kernel))
     yield Label((number, kernel))
-    yield Label((number,))
+    if zones.kernel.kind != "empty":
+        yield Label((number,))
 
 
 def _kernel_line(zones: RoomZones, custom: Custom) -> Line:
@@ -183,9 +185,9 @@ def _kernel_line(zones: RoomZones, custom: Custom) -> Line:
 
 
 def _name_lines(zones: RoomZones) -> tuple[Line, ...]:
-    name = clean_text(zones.room.name)
-    if name == zones.room.id:
+    if zones.room.name_from == "number":
         return ()
+    name = clean_text(zones.room.name)
     return tuple(Line(line) for line in wrapped(name, WIDEST_NAME, 2.5, most=2))
 
 
@@ -215,22 +217,29 @@ def _place_inside(place: _Place, custom: Custom, tags: Tags) -> bool:
 
 
 def _place_outside(place: _Place, custom: Custom, outlines: np.ndarray, tags: Tags) -> None:
-    """Place a tag at the end of a leader: clear of every room if it can, else on a room, else not at all."""
+    """Place a tag at the end of a leader: clear of every room if it can, else on a room, else note it as missing."""
     zones = place.zones
     lines = (Line(zones.room.id, bold=True), *_name_lines(zones), _kernel_line(zones, custom))
     label = Label(lines, framed=True)
-    foot = _pair(place.middles[0])
-    second: Box | None = None
-    for box in boxes_around(foot, label, OUTSIDE, directions=24):
-        if tags.taken.takes(box) and tags.taken.takes_line(foot, nearest_in(foot, box)):
-            if not _crosses(box, outlines):
-                tags.put(label, box, foot)
-                return
-            second = second or box
+    second: tuple[Box, Point] | None = None
+    for foot in _feet(place, tags):
+        for box in boxes_around(foot, label, OUTSIDE, directions=24):
+            if tags.taken.takes(box) and tags.taken.takes_line(foot, nearest_in(foot, box)):
+                if not _crosses(box, outlines):
+                    tags.put(label, box, foot)
+                    return
+                second = second or (box, foot)
     if second is not None:
-        tags.put(label, second, foot)
+        tags.put(label, *second)
         return
     tags.missing.append(zones.room.id)
+
+
+def _feet(place: _Place, tags: Tags) -> list[Point]:
+    """Return a few points of a room where the foot of a leader touches nothing."""
+    points = [_pair(middle) for middle in place.middles]
+    free = [point for point in points if tags.taken.takes(Box(*point, *point).grown(0.6))]
+    return (free or points)[:: max(1, len(free or points) // 8)]
 
 
 def _edges(ring: np.ndarray) -> np.ndarray:

@@ -44,12 +44,12 @@ def title_block(box: Box, plan: Plan, options: SheetOptions, sheet: SheetNumber)
 
 def _rows(plan: Plan, options: SheetOptions, sheet: SheetNumber) -> tuple[tuple[Cell, ...], ...]:
     chord = f"{options.tolerances.chord * 1000:g} mm"
-    unit = f"{plan.unit.name} (by {plan.unit_from})"
+    unit = f"{plan.unit.name} (from {'the header' if plan.unit_from == 'header' else 'an option'})"
     return (
         ((0.4, "Legal owner", options.owner), (0.6, "Title", options.title)),
         ((0.3, "Created by", options.creator), (0.3, "Approved by", options.approver),
          (0.4, "Document type", options.document_type)),
-        ((0.5, "Drawing file", plan.file), (0.26, "Drawing unit", unit),
+        ((0.46, "Drawing file", plan.file), (0.3, "Drawing unit", unit),
          (0.24, "Curves drawn within", chord)),
         ((0.28, "Document number", options.number), (0.2, "Date of issue", options.date),
          (0.24, "Scale", sheet.scale), (0.14, "Paper", sheet.paper),

@@ -85,7 +85,7 @@ def _corners(of: Room, kernel: np.ndarray) -> list[CornerZone]:
     return found
 
 
-def _spot(of: Room, mount, point, field, bearing, walls) -> Spot:  # noqa: ANN001
+def _spot(of: Room, mount, point, field, bearing, walls) -> Spot:
     farthest = max(float(hypot(*(corner - point))) for corner in of.outline)
     return Spot(mount, np.asarray(point, dtype=float), field, bearing, farthest, 0.35, walls)
 
