@@ -1,0 +1,50 @@
+"""Runs the commands that getting-started.md shows, and writes what they print under them.
+
+``python docs/refresh_outputs.py`` does so in place, or into the folder given as only argument. A block that begins
+with ``$ kernelscan`` holds a command and its output; each runs in an empty folder that has a copy of the sample plans,
+and of one of them without its unit.
+"""
+
+import re
+import shlex
+import shutil
+import subprocess
+import sys
+from pathlib import Path
+from tempfile import TemporaryDirectory
+
+__all__ = ["main", "with_fresh_outputs"]
+
+HERE = Path(__file__).resolve().parent
+BLOCK = re.compile(r"```console\n\$ (kernelscan [^\n]+)\n.*?```", re.DOTALL)
+UNIT = re.compile(rb"(\$INSUNITS\s+70\s+)4")
+
+
+def with_fresh_outputs(text: str, folder: Path) -> str:
+    """Return a page with the output of each command in it as it is now."""
+    return BLOCK.sub(lambda block: f"```console\n$ {block[1]}\n{_output(block[1], folder)}```", text)
+
+
+def _output(command: str, folder: Path) -> str:
+    arguments = [sys.executable, "-m", *shlex.split(command)]
+    run = subprocess.run(arguments, cwd=folder, capture_output=True, encoding="utf-8", check=False)
+    lines = [line.rstrip() for line in (run.stdout + run.stderr).splitlines()]
+    return "".join(f"{line}\n" for line in lines)
+
+
+def main(target: Path) -> None:
+    """Write the page anew into a folder."""
+    with TemporaryDirectory() as folder:
+        plans = Path(folder, "sample_plans")
+        shutil.copytree(
+            HERE.parent / "sample_plans", plans, ignore=shutil.ignore_patterns("*.py", "__pycache__")
+        )
+        drawing = (plans / "workshop-ground-floor.dxf").read_bytes()
+        Path(folder, "no-unit.dxf").write_bytes(UNIT.sub(rb"\g<1>0", drawing))
+        page = (HERE / "getting-started.md").read_text(encoding="utf-8")
+        fresh = with_fresh_outputs(page, Path(folder))
+    (target / "getting-started.md").write_text(fresh, encoding="utf-8", newline="\n")
+
+
+if __name__ == "__main__":
+    main(Path(sys.argv[1]) if len(sys.argv) > 1 else HERE)
