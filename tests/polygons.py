@@ -153,7 +153,9 @@ def is_simple(ring: list[list[float]]) -> bool:
     n = len(ring)
     for i in range(n):
         a, b, c = ring[i - 1], ring[i], ring[(i + 1) % n]
-        if b == c or (exact_side(a, b, c) == 0 and (b[0] - a[0]) * (c[0] - b[0]) + (b[1] - a[1]) * (c[1] - b[1]) <= 0):
+        if b == c or (
+            exact_side(a, b, c) == 0 and (b[0] - a[0]) * (c[0] - b[0]) + (b[1] - a[1]) * (c[1] - b[1]) <= 0
+        ):
             return False
     return not any(meet(ring, i, j) for i, j in pairs(n))
 
@@ -185,7 +187,9 @@ def rectangle_with_niches(rng: Rng, n: int) -> Points:
     count = max(0, (n - 4) // 4)
     x = np.sort(rng.uniform(0.2, 7.8, 4 * count)).reshape(-1, 4)
     depth = rng.uniform(0.05, 0.4, count)
-    niches = [[(a, 0), (b, -d), (c, -d), (e, 0)] for (a, b, c, e), d in zip(x.tolist(), depth.tolist(), strict=True)]
+    niches = [
+        [(a, 0), (b, -d), (c, -d), (e, 0)] for (a, b, c, e), d in zip(x.tolist(), depth.tolist(), strict=True)
+    ]
     lower = [point for niche in niches for point in niche]
     return np.array([(0, 0), *lower, (8, 0), (8, 5), (0, 5)], dtype=float)
 
@@ -244,9 +248,10 @@ def narrow_star(rng: Rng, w: float) -> Points:
 
 
 def cross(rng: Rng, w: float) -> Points:
-    """Four arms; opposite walls of the arms are off by w, so that the middle is a rectangle of side 2 or an odd one."""
+    """Four arms; opposite walls of the arms are off by w, so that the middle is no rectangle."""
     return np.array([
-        (4, 0), (6, 0), (6, 4), (10, 4), (10, 6), (6 + w, 6), (6 + w, 10), (4 + w, 10), (4 + w, 6), (0, 6), (0, 4), (4, 4)
+        (4, 0), (6, 0), (6, 4), (10, 4), (10, 6), (6 + w, 6),
+        (6 + w, 10), (4 + w, 10), (4 + w, 6), (0, 6), (0, 4), (4, 4),
     ])  # fmt: skip
 
 
@@ -264,11 +269,12 @@ def nearly_degenerate(rng: Rng, large: bool = False) -> Points:
     """
     width = 0.0 if rng.integers(5) == 0 else float(rng.choice([-1, 1])) * 10 ** rng.uniform(-15, -5)
     points = NEARLY_DEGENERATE[rng.integers(len(NEARLY_DEGENERATE))](rng, width)
-    points = with_splits(rng, points, 4100 if large else int(rng.integers(0, 4)))
+    points = with_splits(rng, points, 4400 if large else int(rng.integers(0, 4)))
     points = turned(points, [0.0, pi / 2, rng.uniform(0, 2 * pi)][rng.integers(3)])
     if rng.integers(2):
         points = mirrored(points)
-    points = points + [0.0, 0.0] if rng.integers(2) else points + rng.uniform(-5e6, 5e6, 2)
+    if rng.integers(2):
+        points = points + rng.uniform(-5e6, 5e6, 2)
     if not large and rng.integers(20) == 0:
         points = spoiled(rng, points)
     return np.roll(points, int(rng.integers(len(points))), axis=0)

@@ -42,6 +42,7 @@ from kernelscan.geometry.predicates import (
     exact_line,
     first_conflict,
     meet,
+    quotient,
     sign,
     turn,
     value,
@@ -139,18 +140,14 @@ class ConvexRegion:
         return [self.exact_corner(name) for name in self.corner_names()] if self.shape != "empty" else []
 
     def area(self) -> float:
-        """Return the area of a bounded region, within a few units in the last place."""
+        """Return the area of a bounded region, within a few units in the last place; infinity beyond the doubles."""
         if self.shape != "area":
             return 0.0
         corners = [(Fraction(x, w), Fraction(y, w)) for x, y, w in self.exact_corners()]
         (ox, oy), *others = corners
-        return (
-            sum(
-                float((px - ox) * (qy - oy) - (py - oy) * (qx - ox))
-                for (px, py), (qx, qy) in pairwise(others)
-            )
-            / 2
-        )
+        arms = [(x - ox, y - oy) for x, y in others]
+        twice = sum((px * qy - py * qx for (px, py), (qx, qy) in pairwise(arms)), Fraction(0))
+        return quotient(twice.numerator, 2 * twice.denominator)
 
     def exact_corner(self, name: tuple[int, int]) -> Triple:
         """Return where two lines meet."""
@@ -216,8 +213,8 @@ class ConvexRegion:
 
     def _opponents(self, i: int) -> tuple[int, ...]:
         """The lines of the region among which are those that exclude i: the ones at the corner nearest to it."""
-        back = tuple(-c for c in self.exact_line(i)[:2])
-        opposite = (*back, 0)
+        u, v, _ = self.exact_line(i)
+        opposite = (-u, -v, 0)
         for g, h in self.corner_names():
             if INFINITE in (g, h):
                 continue

@@ -10,7 +10,8 @@ Method
     nothing is rounded. A moved wall keeps its way, and so stays parallel to others; only p is rounded. A wall
     turned by the angle g gives two half-planes: about a, counter-clockwise by g, and about b, clockwise by g; the
     points that lie in both see every point of the wall at an angle of at least g to the wall. There p is the wall's
-    end, exact, and the way is rounded. With both, the turned half-planes are moved. Everything after this module is exact for the six doubles as they are stored.
+    end, exact, and the way is rounded. With both, the turned half-planes are moved. Everything after this module is
+    exact for the six doubles as they are stored.
 Degenerate cases
     Distances are taken from 0 up and angles from 0 to below a right angle, at which no point is left.
 Letters
@@ -26,6 +27,7 @@ import numpy as np
 import numpy.typing as npt
 
 from kernelscan.errors import GeometryError
+from kernelscan.geometry.predicates import Row
 from kernelscan.geometry.rings import Ring
 
 __all__ = ["HalfPlanes", "half_planes", "wall_half_planes", "wall_numbers", "wall_rows"]
@@ -124,9 +126,9 @@ def wall_numbers(rings: Sequence[Ring], places: npt.NDArray[np.intp]) -> npt.NDA
     return np.column_stack([ring, places - starts[ring]]).astype(np.int64)
 
 
-def wall_rows(rings: Sequence[Ring]) -> list[tuple[float, ...]]:
+def wall_rows(rings: Sequence[Ring]) -> list[Row]:
     """Return the half-planes of a small room's walls as plain rows."""
-    rows: list[tuple[float, ...]] = []
+    rows: list[Row] = []
     for ring in rings:
         points = ring.tolist()
         points.append(points[0])

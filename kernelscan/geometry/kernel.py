@@ -39,7 +39,7 @@ class Kernel:
         ``(k, 2)`` its corners, each coordinate the double nearest to the exact one: three or more,
         counter-clockwise, of an area; the two ends of a segment; one point; none.
     area
-        Its area, in square units of the rings.
+        Its area, in square units of the rings; infinity where it is beyond the doubles.
     walls
         ``(k, 2)`` walls as [ring, edge], ring 0 the outline, edge i from vertex i to the next. Of an area, wall i
         carries the side from vertex i to vertex i + 1. Of a segment or a point, three to four walls (two that run

@@ -31,6 +31,7 @@ __all__ = [
     "excludes",
     "first_conflict",
     "meet",
+    "quotient",
     "rounded",
     "same_way",
     "sign",
@@ -93,10 +94,11 @@ def sign(number: float) -> int:
 
 def rounded(q: Triple) -> tuple[float, float]:
     """Return the doubles nearest to the coordinates of a point, W != 0; beyond the largest double, infinity."""
-    return _quotient(q[0], q[2]), _quotient(q[1], q[2])
+    return quotient(q[0], q[2]), quotient(q[1], q[2])
 
 
-def _quotient(numerator: int, denominator: int) -> float:
+def quotient(numerator: int, denominator: int) -> float:
+    """Return the double nearest to a quotient; beyond the largest double, infinity."""
     try:
         return numerator / denominator  # correctly rounded for integers of any size
     except OverflowError:
