@@ -25,15 +25,13 @@ from dataclasses import dataclass
 import numpy as np
 import numpy.typing as npt
 
-from kernelscan.geometry.signs import orientations
+from kernelscan.geometry.signs import ROUNDOFF, SMALLEST, orientations
 
 __all__ = ["nearest_edges"]
 
 Floats = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.intp]
 Headings = npt.NDArray[np.complex128]
-
-_UNIT = 2.0**-53
 
 
 def nearest_edges(c: Floats, p: Floats, q: Floats, start: Indices, stop: Indices, unit: Floats) -> Indices:
@@ -76,9 +74,9 @@ def _duals(c: Floats, p: Floats, q: Floats) -> tuple[Headings, Floats]:
     with np.errstate(all="ignore"):
         v, d = p - c, q - p
         left, right = v[:, 0] * d[:, 1], v[:, 1] * d[:, 0]
-        height, error = left - right, 8 * _UNIT * (np.abs(left) + np.abs(right)) + 1e-290
-        w: Headings = (d[:, 1] - 1j * d[:, 0]) / height
-        slack = np.where(height > 2 * error, error / (height - error), np.inf) + 64 * _UNIT
+        height, error = left - right, 8 * ROUNDOFF * (np.abs(left) + np.abs(right)) + SMALLEST
+        w = (d @ np.array([-1j, 1])) / height
+        slack = np.where(height > 2 * error, error / (height - error), np.inf) + 64 * ROUNDOFF
         return w, 4 * np.abs(w) * slack
 
 

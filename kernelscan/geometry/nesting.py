@@ -23,14 +23,13 @@ from itertools import pairwise
 import numpy as np
 import numpy.typing as npt
 
-from kernelscan.geometry.contacts import edge_ends, meeting_edges, orientation
+from kernelscan.geometry.contacts import edge_ends, meeting_edges
+from kernelscan.geometry.signs import orientation, orientations
 
 __all__ = ["first_fault_between", "side_of_ring"]
 
 Floats = npt.NDArray[np.float64]
 Place = tuple[Fraction, Fraction]
-
-_UNIT = 2.0**-53
 
 
 def side_of_ring(ring: Floats, point: Sequence[float]) -> int:
@@ -39,26 +38,13 @@ def side_of_ring(ring: Floats, point: Sequence[float]) -> int:
     p, q = edge_ends([ring])
     at_height = np.flatnonzero((np.minimum(p[:, 1], q[:, 1]) <= y) & (np.maximum(p[:, 1], q[:, 1]) >= y))
     p, q = p[at_height], q[at_height]
-    sides = _sides(p, q, (x, y))
+    sides = orientations(p, q, np.array([x, y]))
     within_x = (np.minimum(p[:, 0], q[:, 0]) <= x) & (np.maximum(p[:, 0], q[:, 0]) >= x)
     if ((sides == 0) & within_x).any():
         return 0
     up = (p[:, 1] <= y) & (q[:, 1] > y) & (sides > 0)
     down = (q[:, 1] <= y) & (p[:, 1] > y) & (sides < 0)
     return 1 if (np.count_nonzero(up) + np.count_nonzero(down)) % 2 else -1
-
-
-def _sides(p: Floats, q: Floats, c: tuple[float, float]) -> npt.NDArray[np.int8]:
-    """Return +1 where c lies left of p -> q, -1 right, 0 on the line; exact."""
-    with np.errstate(over="ignore", invalid="ignore", under="ignore"):
-        left = (q[:, 0] - p[:, 0]) * (c[1] - p[:, 1])
-        right = (q[:, 1] - p[:, 1]) * (c[0] - p[:, 0])
-        value, bound = left - right, 8 * _UNIT * (np.abs(left) + np.abs(right)) + 1e-290
-        signs = (value > bound).astype(np.int8) - (value < -bound).astype(np.int8)
-        doubtful = ~(np.abs(value) > bound)
-    for k in np.flatnonzero(doubtful).tolist():
-        signs[k] = orientation(p[k].tolist(), q[k].tolist(), c)
-    return signs
 
 
 def first_fault_between(rings: Sequence[Floats]) -> str | None:

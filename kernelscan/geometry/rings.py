@@ -24,8 +24,9 @@ import numpy as np
 import numpy.typing as npt
 
 from kernelscan.errors import GeometryError
-from kernelscan.geometry.contacts import contact_of_ring, orientation
+from kernelscan.geometry.contacts import contact_of_ring
 from kernelscan.geometry.nesting import first_fault_between
+from kernelscan.geometry.signs import orientation
 
 __all__ = ["Ring", "as_ring", "as_rings", "signed_area"]
 

@@ -38,7 +38,7 @@ from kernelscan.errors import GeometryError
 from kernelscan.geometry.directions import Directions, directions_around
 from kernelscan.geometry.envelope import nearest_edges
 from kernelscan.geometry.rings import Ring
-from kernelscan.geometry.signs import orientations
+from kernelscan.geometry.signs import ROUNDOFF, SMALLEST, orientations
 
 __all__ = ["Sight", "Walls"]
 
@@ -71,6 +71,7 @@ class Walls:
 
     @classmethod
     def of(cls, rings: Sequence[Ring]) -> "Walls":
+        """Put the walls of all rings in one row, ring after ring."""
         sizes = [len(ring) for ring in rings]
         p = np.concatenate(rings)
         ring = np.repeat(np.arange(len(rings)), sizes)
@@ -202,11 +203,11 @@ class Sight:
             v, d, ray = p - self.eye, q - p, past - self.eye
             height, height_error = _cross(v, d)
             slope, slope_error = _cross(ray, d)
-            feet: Floats = self.eye + (height / slope)[:, None] * ray
+            feet = self.eye + (height / slope)[:, None] * ray
             loose = ~(height_error / np.abs(height) + slope_error / np.abs(slope) < _FOOT_ERROR)
         for k in np.flatnonzero(loose).tolist():
             feet[k] = _exact_foot(self.eye, p[k], q[k], past[k])
-        return feet
+        return np.asarray(feet)
 
     def _along(self, wall: Indices, points: Floats) -> Floats:
         """Return where along their walls points lie, 0 to 1."""
@@ -231,7 +232,7 @@ class Sight:
 def _cross(a: Floats, b: Floats) -> tuple[Floats, Floats]:
     """Return the cross products of differences of doubles, and bounds on their errors."""
     left, right = a[:, 0] * b[:, 1], a[:, 1] * b[:, 0]
-    return left - right, 2.0**-50 * (np.abs(left) + np.abs(right)) + 1e-290
+    return left - right, 8 * ROUNDOFF * (np.abs(left) + np.abs(right)) + SMALLEST
 
 
 def _exact_foot(c: Floats, p: Floats, q: Floats, past: Floats) -> tuple[float, float]:

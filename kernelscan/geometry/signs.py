@@ -1,23 +1,38 @@
-"""On which side of a line points lie, for whole arrays at once and exactly.
+"""On which side of a line a point lies, for one point or for whole arrays, exactly.
 
 Problem
-    The sign of (b - a) x (c - a) for many triples of points given as doubles.
+    The sign of (b - a) x (c - a) for points given as doubles.
 Method
     A float with a proven bound; where that says nothing, rational arithmetic for the single triple.
 Source
     The bound: Shewchuk, "Adaptive precision floating-point arithmetic and fast robust geometric predicates", 1997.
 """
 
+from collections.abc import Sequence
 from fractions import Fraction
 
 import numpy as np
 import numpy.typing as npt
 
-__all__ = ["orientations"]
+__all__ = ["ROUNDOFF", "SMALLEST", "Point", "orientation", "orientations"]
 
 Floats = npt.NDArray[np.float64]
+Point = Sequence[float] | Sequence[Fraction]
 
-_UNIT = 2.0**-53
+ROUNDOFF = 2.0**-53
+"""The relative error of one operation on doubles."""
+
+SMALLEST = 1e-290
+"""Above the absolute error of a cross product whose factors or products underflow."""
+
+
+def orientation(a: Point, b: Point, c: Point) -> int:
+    """Return +1 if c lies left of a -> b, -1 if right of it, 0 if on the line; exact, for doubles or rationals."""
+    if (a[0] == b[0] or a[1] == c[1]) and (a[1] == b[1] or a[0] == c[0]):
+        return 0
+    (ax, ay), (bx, by), (cx, cy) = ((Fraction(x), Fraction(y)) for x, y in (a, b, c))
+    value = (bx - ax) * (cy - ay) - (by - ay) * (cx - ax)
+    return (value > 0) - (value < 0)
 
 
 def orientations(a: Floats, b: Floats, c: Floats) -> npt.NDArray[np.int8]:
@@ -31,21 +46,10 @@ def orientations(a: Floats, b: Floats, c: Floats) -> npt.NDArray[np.int8]:
     with np.errstate(over="ignore", invalid="ignore", under="ignore"):
         d, e = b - a, c - a
         left, right = d[..., 0] * e[..., 1], d[..., 1] * e[..., 0]
-        value, bound = left - right, 8 * _UNIT * (np.abs(left) + np.abs(right)) + 1e-290
+        value, bound = left - right, 8 * ROUNDOFF * (np.abs(left) + np.abs(right)) + SMALLEST
         signs = np.asarray((value > bound).astype(np.int8) - (value < -bound))
-        doubtful = np.abs(signs) == 0
+    doubtful = signs == 0
     if doubtful.any():
-        a, b, c = np.broadcast_arrays(a, b, c)
-        signs[doubtful] = [
-            _sign(*t)
-            for t in zip(a[doubtful].tolist(), b[doubtful].tolist(), c[doubtful].tolist(), strict=True)
-        ]
+        triples = (x[doubtful].tolist() for x in np.broadcast_arrays(a, b, c))
+        signs[doubtful] = [orientation(*triple) for triple in zip(*triples, strict=True)]
     return signs
-
-
-def _sign(a: list[float], b: list[float], c: list[float]) -> int:
-    if (a[0] == b[0] or a[1] == c[1]) and (a[1] == b[1] or a[0] == c[0]):
-        return 0
-    (ax, ay), (bx, by), (cx, cy) = (map(Fraction, point) for point in (a, b, c))
-    value = (bx - ax) * (cy - ay) - (by - ay) * (cx - ax)
-    return (value > 0) - (value < 0)

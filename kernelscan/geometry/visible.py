@@ -1,7 +1,7 @@
 """What one eye sees of a room: the visible region, the walls in it, and how much of either.
 
-The method, what is exact in it and what is rounded, and what happens to an eye on a wall or in line with one, are told in
-:mod:`kernelscan.geometry.sight`; here are the questions and the answers.
+The method, what is exact in it and what is rounded, and what happens to an eye on a wall or in line with one, are
+told in :mod:`kernelscan.geometry.sight`; here are the questions and the answers.
 """
 
 from collections.abc import Iterable, Sequence
