@@ -5,6 +5,7 @@ with ``$ kernelscan`` holds a command and its output; each runs in an empty fold
 and of one of them without its unit.
 """
 
+import os
 import re
 import shlex
 import shutil
@@ -27,7 +28,8 @@ def with_fresh_outputs(text: str, folder: Path) -> str:
 
 def _output(command: str, folder: Path) -> str:
     arguments = [sys.executable, "-m", *shlex.split(command)]
-    run = subprocess.run(arguments, cwd=folder, capture_output=True, encoding="utf-8", check=False)
+    plain = {name: value for name, value in os.environ.items() if name != "FORCE_COLOR"} | {"PYTHONUTF8": "1"}
+    run = subprocess.run(arguments, cwd=folder, env=plain, capture_output=True, encoding="utf-8", check=False)
     lines = [line.rstrip() for line in (run.stdout + run.stderr).splitlines()]
     return "".join(f"{line}\n" for line in lines)
 

@@ -5,12 +5,13 @@ import subprocess
 import sys
 from collections.abc import Iterator
 from itertools import pairwise
-from math import atan, pi, sin, tan
+from math import atan, pi, sin, sqrt, tan
 from pathlib import Path
 
 import pytest
 
 from kernelscan import Plan, Room, read_plan, verify_kernel, visibility_kernel
+from kernelscan.coverage import room_zones
 
 NAMES = (
     "annex-feet-and-inches",
@@ -269,6 +270,21 @@ def test_columns_stand_in_their_rooms(
 ) -> None:
     (column,) = room_named(plans[sample], name).holes
     assert corners is None or len(column) == corners
+
+
+def test_one_corner_camera_covers_the_plant_room_from_each_corner(plans: dict[str, Plan]) -> None:
+    zones = room_zones(room_named(plans["workshop-ground-floor"], "Plant room"))
+    assert [zone.spot.field_of_view for zone in zones.corners] == pytest.approx([pi / 2] * 4)
+    assert zones.recommended[-1].mount == "corner"
+    assert zones.recommended[-1].farthest == pytest.approx(2.8 * sqrt(2))
+
+
+@pytest.mark.parametrize(
+    ("sample", "name"), [("library-wing", "Gallery"), ("workshop-ground-floor", "Materials store")]
+)
+def test_nothing_covers_the_rooms_without_a_kernel(sample: str, name: str, plans: dict[str, Plan]) -> None:
+    zones = room_zones(room_named(plans[sample], name))
+    assert (zones.ceiling, zones.walls, zones.corners, zones.recommended) == (None, (), (), ())
 
 
 def test_a_column_in_the_corner_is_no_obstacle_inside_the_room(plans: dict[str, Plan]) -> None:
