@@ -7,10 +7,12 @@ import sys
 from collections.abc import Iterator
 from pathlib import Path
 from typing import Any
+from xml.etree import ElementTree
 
 import pytest
+from typer.main import get_command
 
-from kernelscan.cli.app import DONE, PROGRAM_FAULT, WRONG_INPUT
+from kernelscan.cli.app import DONE, PROGRAM_FAULT, WRONG_INPUT, app
 from kernelscan.coverage.cautions import CAUTIONS
 from kernelscan.markup.dxf_blocks import LAYERS, PREFIX
 from kernelscan.report.document import report_schema
@@ -77,6 +79,20 @@ def test_committed_figures_are_what_the_program_draws(name: str, drawn_figures: 
 def test_every_figure_is_drawn_and_shown(drawn_figures: Path) -> None:
     assert sorted(path.stem for path in drawn_figures.iterdir()) == list(FIGURES)
     assert sorted(re.findall(r"\(figures/([a-z-]+)\.svg\)", page("what-a-kernel-is.md"))) == list(FIGURES)
+
+
+@pytest.mark.parametrize("name", FIGURES)
+def test_figures_are_well_formed_and_titled(name: str) -> None:
+    root = ElementTree.parse(DOCS / "figures" / f"{name}.svg").getroot()
+    assert root.findtext("{http://www.w3.org/2000/svg}title")
+
+
+def test_pages_name_only_options_that_the_program_takes() -> None:
+    commands = get_command(app).commands.values()
+    known = {word for command in commands for parameter in command.params for word in parameter.opts}
+    pages = [path for path in DOCS.rglob("*.md") if path.name != "benchmarks.md"]
+    named = {word for path in pages for word in re.findall(r"(?<![\w-])--[a-z-]+", path.read_text("utf-8"))}
+    assert {"--unit", "--out"} <= named <= known | {"--help"}
 
 
 def test_report_page_names_every_key_of_the_schema_and_no_other() -> None:
