@@ -8,15 +8,16 @@ Method
     one side of the other's line. Floats decide wherever the cross product exceeds its proven bound; the few
     pairs left over are settled in rational arithmetic.
 Cost
-    Up to a hundred edges all pairs at once, in some twenty array operations; beyond that only the pairs that
-    :mod:`kernelscan.geometry.neighbourhood` cannot keep apart.
+    A dozen edges are compared pair by pair, without the overhead of arrays; up to a hundred all pairs at once, in some
+    twenty array operations; beyond that only the pairs that :mod:`kernelscan.geometry.neighbourhood` cannot
+    keep apart.
 Degenerate cases
     Collinear edges that lie apart do not meet. A touch is a meeting.
 Letters
     p, q the ends of an edge; d = q - p; i, j edges.
 """
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 from fractions import Fraction
 
 import numpy as np
@@ -30,15 +31,15 @@ __all__ = ["contact_of_ring", "edge_ends", "meeting_edges"]
 Floats = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.intp]
 
+_PLAIN = 12
 _DENSE = 100
 
 
 def contact_of_ring(ring: Floats) -> Floats | None:
     """Return a vertex next to which a ring crosses, touches or folds back on itself, or ``None`` for a simple ring."""
-    _, ends = edge_ends([ring])
-    for i in _doubtful_turns(ring, ends).tolist():
-        if _folds_back(ring[i].tolist(), ends[i].tolist(), ends[(i + 1) % len(ring)].tolist()):
-            return np.asarray(ends[i])
+    for i in _doubtful_turns(ring):
+        if _folds_back(*(ring[k].tolist() for k in (i - 1, i, (i + 1) % len(ring)))):
+            return np.asarray(ring[i])
     first = next(meeting_edges([ring]), None)
     return None if first is None else np.asarray(ring[first[0]])
 
@@ -47,11 +48,24 @@ def meeting_edges(rings: Sequence[Floats]) -> Iterator[tuple[int, int]]:
     """Yield the pairs i < j of edges that share a point and are not neighbours in a ring, counted through the rings."""
     p, q = edge_ends(rings)
     following = _following([len(ring) for ring in rings])
-    for i, j in _pairs_to_settle(p, q):
+    if len(p) <= _PLAIN:
+        yield from _meeting_among_few(p.tolist(), q.tolist(), following.tolist())
+        return
+    for i, j in _pairs_to_settle(p, q, following):
         strangers = (following[i] != j) & (following[j] != i)
         for first, second in zip(i[strangers].tolist(), j[strangers].tolist(), strict=True):
-            if _share_a_point(p[first], q[first], p[second], q[second]):
+            if _share_a_point(*(end[k].tolist() for k in (first, second) for end in (p, q))):
                 yield first, second
+
+
+def _meeting_among_few(
+    p: list[list[float]], q: list[list[float]], following: list[int]
+) -> Iterator[tuple[int, int]]:
+    """Yield what :func:`meeting_edges` does, without the overhead of arrays."""
+    for j in range(len(p)):
+        for i in range(j):
+            if following[i] != j and following[j] != i and _share_a_point(p[i], q[i], p[j], q[j]):
+                yield i, j
 
 
 def edge_ends(rings: Sequence[Floats]) -> tuple[Floats, Floats]:
@@ -62,19 +76,24 @@ def edge_ends(rings: Sequence[Floats]) -> tuple[Floats, Floats]:
 def _following(sizes: Sequence[int]) -> Indices:
     """Return for each edge the next one in its ring."""
     following = np.arange(1, sum(sizes) + 1)
-    last = np.cumsum(sizes) - 1
-    following[last] -= sizes
+    start = 0
+    for size in sizes:
+        following[start + size - 1] = start
+        start += size
     return following
 
 
-def _doubtful_turns(p: Floats, q: Floats) -> Indices:
-    """Return the edges after which floats do not prove a turn to the left or to the right."""
+def _doubtful_turns(ring: Floats) -> Iterable[int]:
+    """Return the vertices at which floats do not prove a turn to the left or to the right."""
+    if len(ring) <= _PLAIN:
+        return range(len(ring))
     with np.errstate(over="ignore", invalid="ignore", under="ignore"):
-        d = q - p
+        d = ring - np.concatenate([ring[-1:], ring[:-1]])
         e = np.concatenate([d[1:], d[:1]])
         left, right = d[:, 0] * e[:, 1], d[:, 1] * e[:, 0]
         bound = 8 * ROUNDOFF * (np.abs(left) + np.abs(right)) + SMALLEST
-        return np.flatnonzero(~(np.abs(left - right) > bound))
+        doubtful = np.flatnonzero(~(np.abs(left - right) > bound))
+    return [int(k) for k in doubtful]
 
 
 def _folds_back(a: list[float], b: list[float], c: list[float]) -> bool:
@@ -84,10 +103,10 @@ def _folds_back(a: list[float], b: list[float], c: list[float]) -> bool:
     return (bx - ax) * (cx - bx) + (by - ay) * (cy - by) < 0
 
 
-def _pairs_to_settle(p: Floats, q: Floats) -> Iterator[tuple[Indices, Indices]]:
+def _pairs_to_settle(p: Floats, q: Floats, following: Indices) -> Iterator[tuple[Indices, Indices]]:
     """Yield the pairs of edges i < j that floats do not prove to be apart; neighbours in a ring are among them."""
     if len(p) <= _DENSE:
-        yield _dense_pairs(p, q)
+        yield _dense_pairs(p, following)
         return
     for i, j in nearby_edges(p, q):
         with np.errstate(over="ignore", invalid="ignore", under="ignore"):
@@ -106,32 +125,27 @@ def _on_one_side(p: Floats, q: Floats, r: Floats, s: Floats) -> npt.NDArray[np.b
     return np.asarray((np.minimum(at_r, at_s) > bound) | (np.maximum(at_r, at_s) < -bound))
 
 
-def _dense_pairs(p: Floats, q: Floats) -> tuple[Indices, Indices]:
+def _dense_pairs(p: Floats, following: Indices) -> tuple[Indices, Indices]:
     """Return the pairs to settle among few edges: all of them at once, with one bound for the whole."""
-    (px, py), (qx, qy) = p.T, q.T
-    x, y, dx, dy = px[:, None], py[:, None], (qx - px)[:, None], (qy - py)[:, None]
+    x, y = p.T
     with np.errstate(over="ignore", invalid="ignore", under="ignore"):
-        at_p = dx * (py - y) - dy * (px - x)
-        at_q = dx * (qy - y) - dy * (qx - x)
-        bound = 16 * ROUNDOFF * float(np.ptp(px)) * float(np.ptp(py)) + SMALLEST
-    low_x, high_x, low_y, high_y = (
-        np.minimum(px, qx),
-        np.maximum(px, qx),
-        np.minimum(py, qy),
-        np.maximum(py, qy),
-    )
-    apart = (np.minimum(at_p, at_q) > bound) | (np.maximum(at_p, at_q) < -bound)
-    apart |= low_x[:, None] > high_x
-    apart |= low_y[:, None] > high_y
+        from_x, from_y = x - x[:, None], y - y[:, None]
+        d = p[following] - p
+        side = d[:, :1] * from_y - d[:, 1:] * from_x
+        bound = 16 * ROUNDOFF * np.abs(from_x).max() * np.abs(from_y).max() + SMALLEST
+    left, right = side > bound, side < -bound
+    apart = (left & left[:, following]) | (right & right[:, following])
     i, j = np.nonzero(~(apart | apart.T))
     upper = i < j
     return i[upper], j[upper]
 
 
-def _share_a_point(p: Floats, q: Floats, r: Floats, s: Floats) -> bool:
-    if not (np.maximum(p, q) >= np.minimum(r, s)).all() or not (np.maximum(r, s) >= np.minimum(p, q)).all():
-        return False
-    a, b, c, d = p.tolist(), q.tolist(), r.tolist(), s.tolist()
+def _share_a_point(a: list[float], b: list[float], c: list[float], d: list[float]) -> bool:
+    """Whether the closed edges a -> b and c -> d meet; exact."""
+    for k in (0, 1):
+        u, v, w, z = a[k], b[k], c[k], d[k]
+        if (u < w and u < z and v < w and v < z) or (u > w and u > z and v > w and v > z):
+            return False
     if orientation(a, b, c) * orientation(a, b, d) > 0:
         return False
     return orientation(c, d, a) * orientation(c, d, b) <= 0

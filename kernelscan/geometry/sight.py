@@ -171,7 +171,7 @@ class Sight:
         wanted = np.ones((len(wall), 3), dtype=bool)
         wanted[:, 2] = stop != np.roll(first, -1)
         ring = corners[wanted]
-        region = ring[(ring != np.roll(ring, 1, axis=0)).any(axis=1)]
+        region: Ring = ring[(ring != np.roll(ring, 1, axis=0)).any(axis=1)]
         region.flags.writeable = False
         return region
 

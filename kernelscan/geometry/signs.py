@@ -28,11 +28,23 @@ SMALLEST = 1e-290
 
 def orientation(a: Point, b: Point, c: Point) -> int:
     """Return +1 if c lies left of a -> b, -1 if right of it, 0 if on the line; exact, for doubles or rationals."""
+    left, right = (b[0] - a[0]) * (c[1] - a[1]), (b[1] - a[1]) * (c[0] - a[0])
+    value = left - right
+    if isinstance(value, float):
+        bound = 8 * ROUNDOFF * (abs(left) + abs(right)) + SMALLEST
+        if value > bound:
+            return 1
+        if value < -bound:
+            return -1
+        return _exact_orientation(a, b, c)
+    return (value > 0) - (value < 0)
+
+
+def _exact_orientation(a: Point, b: Point, c: Point) -> int:
     if (a[0] == b[0] or a[1] == c[1]) and (a[1] == b[1] or a[0] == c[0]):
         return 0
-    (ax, ay), (bx, by), (cx, cy) = ((Fraction(x), Fraction(y)) for x, y in (a, b, c))
-    value = (bx - ax) * (cy - ay) - (by - ay) * (cx - ax)
-    return (value > 0) - (value < 0)
+    rational = [(Fraction(x), Fraction(y)) for x, y in (a, b, c)]
+    return orientation(*rational)
 
 
 def orientations(a: Floats, b: Floats, c: Floats) -> npt.NDArray[np.int8]:
@@ -51,5 +63,5 @@ def orientations(a: Floats, b: Floats, c: Floats) -> npt.NDArray[np.int8]:
     doubtful = signs == 0
     if doubtful.any():
         triples = (x[doubtful].tolist() for x in np.broadcast_arrays(a, b, c))
-        signs[doubtful] = [orientation(*triple) for triple in zip(*triples, strict=True)]
+        signs[doubtful] = [_exact_orientation(*triple) for triple in zip(*triples, strict=True)]
     return signs
