@@ -26,7 +26,7 @@ import numpy.typing as npt
 from kernelscan.geometry.neighbourhood import nearby_edges
 from kernelscan.geometry.signs import ROUNDOFF, SMALLEST, orientation
 
-__all__ = ["contact_of_ring", "edge_ends", "meeting_edges"]
+__all__ = ["contact_of_ring", "edge_ends", "meeting_edges", "meeting_place"]
 
 Floats = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.intp]
@@ -35,13 +35,25 @@ _PLAIN = 12
 _DENSE = 100
 
 
-def contact_of_ring(ring: Floats) -> Floats | None:
-    """Return a vertex next to which a ring crosses, touches or folds back on itself, or ``None`` for a simple ring."""
+def contact_of_ring(ring: Floats) -> tuple[float, float] | None:
+    """Return a place where a ring crosses, touches or folds back on itself, rounded, or ``None`` for a simple ring."""
     for i in _doubtful_turns(ring):
         if _folds_back(*(ring[k].tolist() for k in (i - 1, i, (i + 1) % len(ring)))):
-            return np.asarray(ring[i])
-    first = next(meeting_edges([ring]), None)
-    return None if first is None else np.asarray(ring[first[0]])
+            return float(ring[i, 0]), float(ring[i, 1])
+    for i, j in meeting_edges([ring]):
+        return meeting_place(*(ring[k % len(ring)].tolist() for k in (i, i + 1, j, j + 1)))
+    return None
+
+
+def meeting_place(a: list[float], b: list[float], c: list[float], d: list[float]) -> tuple[float, float]:
+    """Return a common point of the edges a -> b and c -> d, which meet; rounded."""
+    (ax, ay), (bx, by), (cx, cy), (dx, dy) = ([Fraction(x) for x in point] for point in (a, b, c, d))
+    slope = (bx - ax) * (dy - cy) - (by - ay) * (dx - cx)
+    if slope == 0:  # on one line: the second of the four ends along it is common
+        x, y = sorted([(ax, ay), (bx, by), (cx, cy), (dx, dy)])[1]
+        return float(x), float(y)
+    t = ((cx - ax) * (dy - cy) - (cy - ay) * (dx - cx)) / slope
+    return float(ax + t * (bx - ax)), float(ay + t * (by - ay))
 
 
 def meeting_edges(rings: Sequence[Floats]) -> Iterator[tuple[int, int]]:

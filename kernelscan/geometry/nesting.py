@@ -23,7 +23,7 @@ from itertools import pairwise
 import numpy as np
 import numpy.typing as npt
 
-from kernelscan.geometry.contacts import edge_ends, meeting_edges
+from kernelscan.geometry.contacts import edge_ends, meeting_edges, meeting_place
 from kernelscan.geometry.signs import orientation, orientations
 
 __all__ = ["first_fault_between", "side_of_ring"]
@@ -79,7 +79,8 @@ def _fault_of_meetings(rings: Sequence[Floats], touches: dict[int, set[Place]]) 
         places = _meeting(*(_rational(point) for point in (p[i], q[i], p[j], q[j])))
         if len(places) != 1:
             what = "run along each other" if places else "cross"
-            return f"{_name(owner[i])} and {_name(owner[j])} {what} near ({p[i][0]:.9g}, {p[i][1]:.9g})"
+            x, y = meeting_place(*(point.tolist() for point in (p[i], q[i], p[j], q[j])))
+            return f"{_name(owner[i])} and {_name(owner[j])} {what} near ({x:.9g}, {y:.9g})"
         touches.setdefault(i, set()).update(places)
         touches.setdefault(j, set()).update(places)
     return None

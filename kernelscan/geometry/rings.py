@@ -26,7 +26,7 @@ import numpy.typing as npt
 from kernelscan.errors import GeometryError
 from kernelscan.geometry.contacts import contact_of_ring
 from kernelscan.geometry.nesting import first_fault_between
-from kernelscan.geometry.signs import orientation
+from kernelscan.geometry.signs import orientation, orientations
 
 __all__ = ["Ring", "as_ring", "as_rings", "signed_area"]
 
@@ -135,7 +135,7 @@ def _turn_at_extreme(ring: npt.NDArray[np.float64]) -> int:
     return orientation(before, at, after)
 
 
-def _self_contact(ring: npt.NDArray[np.float64], place: npt.NDArray[np.float64]) -> str:
-    if all(orientation(ring[0].tolist(), ring[1].tolist(), point) == 0 for point in ring[:1000].tolist()):
+def _self_contact(ring: npt.NDArray[np.float64], place: tuple[float, float]) -> str:
+    if not orientations(ring[0], ring[1], ring).any():
         return f"the ring has no area: its points lie on one line, the first at ({ring[0, 0]:.9g}, {ring[0, 1]:.9g})"
     return f"the ring crosses or touches itself near ({place[0]:.9g}, {place[1]:.9g})"

@@ -17,7 +17,7 @@ import numpy.typing as npt
 __all__ = ["ROUNDOFF", "SMALLEST", "Point", "orientation", "orientations"]
 
 Floats = npt.NDArray[np.float64]
-Point = Sequence[float] | Sequence[Fraction]
+Point = Sequence[float | Fraction]
 
 ROUNDOFF = 2.0**-53
 """The relative error of one operation on doubles."""
@@ -30,7 +30,7 @@ def orientation(a: Point, b: Point, c: Point) -> int:
     """Return +1 if c lies left of a -> b, -1 if right of it, 0 if on the line; exact, for doubles or rationals."""
     left, right = (b[0] - a[0]) * (c[1] - a[1]), (b[1] - a[1]) * (c[0] - a[0])
     value = left - right
-    if isinstance(value, float):
+    if isinstance(left, float) and isinstance(right, float):
         bound = 8 * ROUNDOFF * (abs(left) + abs(right)) + SMALLEST
         if value > bound:
             return 1
