@@ -7,6 +7,10 @@ import pytest
 ROOT = Path(__file__).resolve().parent.parent
 
 
+def pytest_addoption(parser: pytest.Parser) -> None:
+    parser.addoption("--refresh-golden", action="store_true", help="write the golden files anew")
+
+
 def _outside(folder: str) -> Path:
     path = ROOT.parent / "shared" / folder
     if not path.is_dir():

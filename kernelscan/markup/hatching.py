@@ -58,7 +58,7 @@ def _pieces(levels: np.ndarray, starts: np.ndarray, ends: np.ndarray) -> Iterato
     """Yield level, left and right end of each piece of the lines at some levels."""
     # A line through a vertex counts it once: an edge owns its lower end and not its upper one.
     met = (starts[:, 1] <= levels[:, None]) != (ends[:, 1] <= levels[:, None])
-    with np.errstate(divide="ignore", invalid="ignore"):
+    with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
         share = (levels[:, None] - starts[:, 1]) / (ends[:, 1] - starts[:, 1])
         u = np.where(met, starts[:, 0] + share * (ends[:, 0] - starts[:, 0]), np.inf)
     u.sort(axis=1)

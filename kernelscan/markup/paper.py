@@ -148,7 +148,7 @@ def scale_by_text(text: str) -> Scale:
                 return Scale(value, f"1:{value:g}")
         for scale in customary_scales():
             written = scale.text.replace(" ", "")
-            if bare in (written, written.partition('"')[0]):
+            if bare == written or bare.removesuffix('"') == written.partition('"')[0]:
                 return scale
             if scale.denominator > 120_000:
                 break

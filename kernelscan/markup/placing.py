@@ -35,7 +35,7 @@ class Occupied:
 
     def add_line(self, start: Point, end: Point) -> None:
         """Enter a line."""
-        for cell in _cells(_around(start, end)):
+        for cell in _cells_along(start, end):
             self._lines[cell].append((start, end))
 
     def takes(self, box: Box) -> bool:
@@ -56,16 +56,25 @@ class Occupied:
         return True
 
     def takes_line(self, start: Point, end: Point) -> bool:
-        """Whether a line touches no box that was entered."""
+        """Whether a line crosses no box that was entered, but for those in which it starts."""
         return not any(
-            clipped_segment(start, end, box)
-            for cell in _cells(_around(start, end))
+            clipped_segment(start, end, box) and not _holds(box, start)
+            for cell in _cells_along(start, end)
             for box in self._boxes[cell]
         )
 
 
-def _around(start: Point, end: Point) -> Box:
-    return Box(min(start[0], end[0]), min(start[1], end[1]), max(start[0], end[0]), max(start[1], end[1]))
+def _holds(box: Box, point: Point) -> bool:
+    return box.left <= point[0] <= box.right and box.bottom <= point[1] <= box.top
+
+
+def _cells_along(start: Point, end: Point) -> Iterator[tuple[int, int]]:
+    """Yield the cells that a line comes through or near to."""
+    around = Box(min(start[0], end[0]), min(start[1], end[1]), max(start[0], end[0]), max(start[1], end[1]))
+    for column, row in _cells(around):
+        cell = Box(column * CELL, row * CELL, (column + 1) * CELL, (row + 1) * CELL).grown(0.1)
+        if start == end or clipped_segment(start, end, cell):
+            yield column, row
 
 
 def _cells(box: Box) -> Iterator[tuple[int, int]]:

@@ -124,9 +124,7 @@ def _caption(layout: Layout, scale: Scale, tags: Tags) -> Iterator[Item]:
     plan = layout.plan
     words = f"Plan, {scale.text} on {layout.paper.name}"
     if tags.missing:
-        words += (
-            f".  {len(tags.missing)} tags found no place here, see the schedule: {', '.join(tags.missing)}"
-        )
+        words += f". Without a place here, see the schedule: {', '.join(tags.missing)}"
     yield Text((plan.left + 2, plan.bottom + 1.8), cut_to(words, plan.width - 4, 2.5, bold=True), bold=True)
 
 

@@ -1,7 +1,8 @@
 """SVG: the scene written so that one user unit is one millimetre of paper.
 
 ``width`` and ``height`` are in millimetres and the ``viewBox`` counts in them, so 10 m at 1:100 is 100 units and, in
-print at 100 %, 100 mm. The same scene gives the same bytes: no random names, no clock, a fixed order.
+print at 100 %, 100 mm. A page rule asks for the sheet's own size without margins, so that a browser prints it true to
+scale when it is simply told to print. The same scene gives the same bytes: no random names, no clock, a fixed order.
 
 Text stays text. Each line carries ``textLength``, the width the scene has measured, so that it keeps its box even
 where the reader lacks the typeface. All text goes through the XML writer's own escaping.
@@ -35,6 +36,7 @@ def svg_text(scene: Scene) -> str:
     drawing.viewbox(0, 0, _number(scene.width), _number(scene.height))
     drawing["role"] = "img"
     drawing.set_desc(clean_text(scene.title), clean_text(scene.description))
+    drawing.defs.add(drawing.style(f"@page{{size:{size[0]} {size[1]};margin:0}}"))
     drawing.add(drawing.rect((0, 0), (_number(scene.width), _number(scene.height)), fill="#ffffff"))
     for group in scene.groups:
         if group.items:

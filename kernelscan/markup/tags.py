@@ -239,7 +239,7 @@ def _feet(place: _Place, tags: Tags) -> list[Point]:
     """Return a few points of a room where the foot of a leader touches nothing."""
     points = [_pair(middle) for middle in place.middles]
     free = [point for point in points if tags.taken.takes(Box(*point, *point).grown(0.6))]
-    return (free or points)[:: max(1, len(free or points) // 8)]
+    return (free or points)[:: max(1, len(free or points) // 4)]
 
 
 def _edges(ring: np.ndarray) -> np.ndarray:

@@ -96,7 +96,7 @@ def clipped_polyline(points: np.ndarray, box: Box) -> Iterator[tuple[Point, ...]
 
 
 def clipped_segment(start: Point, end: Point, box: Box) -> tuple[Point, Point] | None:
-    """Return the part of a segment that lies in a box, or ``None`` (method: Liang and Barsky 1984)."""
+    """Return the part of a segment that lies in a box, or ``None`` where it only touches (Liang and Barsky 1984)."""
     first, last = 0.0, 1.0
     for axis, (low, high) in enumerate(((box.left, box.right), (box.bottom, box.top))):
         step = end[axis] - start[axis]
@@ -106,7 +106,7 @@ def clipped_segment(start: Point, end: Point, box: Box) -> tuple[Point, Point] |
             continue
         enter, leave = sorted(((low - start[axis]) / step, (high - start[axis]) / step))
         first, last = max(first, enter), min(last, leave)
-    if first > last:
+    if first >= last:
         return None
     return _along(start, end, first), _along(start, end, last)
 
