@@ -116,7 +116,7 @@ def scale_bar(at: tuple[float, float], scale: Scale, imperial: bool, longest: fl
     for k in range(count + 1):
         yield Text((x + k * step, y - 3.3), f"{k * part:g}", anchor="middle")
     yield Text((x + count * step + 4, y - 3.3), unit)
-    yield Text((x + count * step + 4, y + 0.2), scale.text, bold=True)
+    yield Text((x + count * step + 4, y + 0.9), scale.text, bold=True)
 
 
 def _bar_part(scale: Scale, imperial: bool, longest: float) -> tuple[float, str, float]:
