@@ -86,16 +86,17 @@ def view_from(rings: Sequence[Ring], eye: npt.ArrayLike) -> View:
     sight = Sight(walls, _as_eye(eye))
     region = sight.region()
     edges, spans = sight.pieces()
-    lengths = np.hypot(*(walls.q - walls.p).T)
+    size = float(np.ptp(rings[0], axis=0).max())
+    lengths = np.hypot(*((walls.q - walls.p) / size).T)
     seen = float((lengths[edges] * (spans[:, 1] - spans[:, 0])).sum())
-    floor = sum(signed_area(ring) for ring in rings)
+    areas = [signed_area((ring - rings[0][0]) / size) for ring in (region, *rings)]
     return View(
         sight.eye,
         region,
         np.column_stack([walls.ring[edges], edges - walls.start[edges]]),
         spans,
         min(1.0, seen / float(lengths.sum())),
-        min(1.0, signed_area(region) / floor),
+        min(1.0, areas[0] / sum(areas[1:])),
     )
 
 
