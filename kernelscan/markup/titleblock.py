@@ -13,8 +13,9 @@ __all__ = ["TITLE_HEIGHT", "TITLE_WIDTH", "SheetNumber", "title_block"]
 
 TITLE_WIDTH = 180.0
 """Widest title block of ISO 7200, and the writing width of an upright A4 sheet."""
-ROW = 9.2
-TITLE_HEIGHT = 4 * ROW
+ROWS = (10.4, 9.2, 9.2, 9.2)
+"""Heights of the rows; the first is higher for the title."""
+TITLE_HEIGHT = sum(ROWS)
 
 
 @dataclass(frozen=True, slots=True)
@@ -34,11 +35,12 @@ Cell = tuple[float, str, str]
 def title_block(box: Box, plan: Plan, options: SheetOptions, sheet: SheetNumber) -> tuple[Item, ...]:
     """Return the title block drawn in a box."""
     items: list[Item] = [Stroke(box.corners, RULE_PEN, closed=True)]
-    for i, row in enumerate(_rows(plan, options, sheet)):
-        top = box.top - i * ROW
-        if i:
+    top = box.top
+    for height, row in zip(ROWS, _rows(plan, options, sheet), strict=True):
+        if top < box.top:
             items.append(Stroke(((box.left, top), (box.right, top)), TABLE_PEN))
-        items += _cells(row, Box(box.left, top - ROW, box.right, top))
+        items += _cells(row, Box(box.left, top - height, box.right, top))
+        top -= height
     return tuple(items)
 
 
@@ -63,7 +65,7 @@ def _cells(row: tuple[Cell, ...], box: Box) -> Iterator[Item]:
         width = share * box.width
         if i:
             yield Stroke(((left, box.bottom), (left, box.top)), TABLE_PEN)
-        yield Text((left + 1, box.top - 3.7), cut_to(label, width - 2, BODY), BODY, ink=QUIET)
+        yield Text((left + 1, box.top - 3.5), cut_to(label, width - 2, BODY), BODY, ink=QUIET)
         height = HEADING if label == "Title" and len(value) < 40 else BODY
         text = cut_to(clean_text(value), width - 2, height, bold=True)
         if text:
