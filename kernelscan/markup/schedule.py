@@ -78,7 +78,7 @@ class Schedule:
 
     def fitting(self, first: int, height: float) -> int:
         """Return how many entries from the first on fit a height."""
-        left, count = height - self.head_height - 0.5, 0
+        left, count = height - self.head_height - 0.5 + 1e-6, 0
         for entry in self.entries[first:]:
             left -= entry.height
             if left < 0:
