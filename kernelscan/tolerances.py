@@ -20,6 +20,10 @@ class Tolerances:
         A closed outline under this area is not taken for a room by content.
     thickest_wall
         A strip narrower than this is the body of a wall, not a room.
+    door_gap
+        A bare gap between two wall ends that face each other is closed up to this width.
+    widest_opening
+        A gap is closed up to this width where a door or window is drawn in it.
     smooth
         Walls that meet at less than this turn run on as one, as the pieces of a curved wall do; where they turn by
         more there is a corner.
@@ -29,4 +33,6 @@ class Tolerances:
     snap: float = 0.005
     smallest_room: float = 1.5
     thickest_wall: float = 0.6
+    door_gap: float = 1.3
+    widest_opening: float = 6.0
     smooth: float = radians(20)

@@ -24,10 +24,16 @@ __all__ = [
     "common_area",
     "covers_points",
     "crossing_place",
+    "deepest_point",
     "difference",
+    "faces_between",
     "faces_of_lines",
+    "inner_points",
     "interior_point",
     "intersection",
+    "lines_near",
+    "meeting_lines",
+    "nearest_point",
     "noded_lines",
     "overlap_areas",
     "overlapping_boxes",
@@ -81,11 +87,20 @@ def difference(a: Patch, others: Iterable[Patch]) -> list[Patch]:
 
 def interior_point(outline: npt.ArrayLike, holes: Sequence[npt.ArrayLike] = ()) -> tuple[float, float]:
     """Return a point well inside, for a label: the centre of the largest disc that fits, to a hundredth of the size."""
-    polygon = _polygon(Patch(outline, holes))
-    low_x, low_y, high_x, high_y = polygon.bounds
-    tolerance = max(high_x - low_x, high_y - low_y) / 100
-    x, y = shapely.maximum_inscribed_circle(polygon, tolerance).coords[0]
+    low_x, low_y, high_x, high_y = _polygon(Patch(outline, holes)).bounds
+    return deepest_point(Patch(outline, holes), max(high_x - low_x, high_y - low_y) / 100)
+
+
+def deepest_point(patch: Patch, error: float) -> tuple[float, float]:
+    """Return the centre of a disc inside a patch whose radius is less than the largest by no more than the error."""
+    x, y = shapely.maximum_inscribed_circle(_polygon(patch), error).coords[0]
     return float(x), float(y)
+
+
+def nearest_point(patch: Patch, point: Floats) -> Floats:
+    """Return the point of a patch, ``(2,)``, that is nearest to a given one."""
+    line = shapely.shortest_line(_polygon(patch), shapely.Point(point))
+    return np.asarray(shapely.get_coordinates(line)[0])
 
 
 def noded_lines(lines: Iterable[npt.ArrayLike]) -> list[Floats]:
@@ -168,3 +183,42 @@ def _polygons(rings: Sequence[Floats]) -> npt.NDArray[np.object_]:
     counts = [len(ring) for ring in rings]
     lines = shapely.linearrings(np.concatenate(rings), indices=np.repeat(np.arange(len(rings)), counts))
     return np.asarray(shapely.polygons(lines), dtype=object)
+
+
+def faces_between(starts: Floats, ends: Floats, grid: float) -> list[Patch]:
+    """Return the bounded faces between straight lines, which may cross, touch and overlap in any way.
+
+    Parameters
+    ----------
+    starts, ends
+        ``(n, 2)``, the lines' two ends.
+    grid
+        Points of the result lie on a grid of this pitch: what is nearer to each other becomes one.
+    """
+    noded = shapely.union_all(_lines(starts, ends), grid_size=grid)
+    return [
+        Patch(shapely.get_coordinates(face.exterior)[:-1], tuple(shapely.get_coordinates(h)[:-1] for h in face.interiors))
+        for face in shapely.get_parts(shapely.polygonize([noded]))
+    ]
+
+
+def lines_near(points: Floats, starts: Floats, ends: Floats, distance: float) -> tuple[Indices, Indices]:
+    """Return the pairs (k of a point, i of a line) that are no farther apart than ``distance``."""
+    spots = shapely.points(points)
+    k, i = shapely.STRtree(_lines(starts, ends)).query(spots, predicate="dwithin", distance=distance)
+    return k, i
+
+
+def meeting_lines(starts: Floats, ends: Floats, others: tuple[Floats, Floats]) -> tuple[Indices, Indices]:
+    """Return the pairs (k of the lines, i of the other lines, given by starts and ends) that meet."""
+    k, i = shapely.STRtree(_lines(*others)).query(_lines(starts, ends), predicate="intersects")
+    return k, i
+
+
+def _lines(starts: Floats, ends: Floats) -> npt.NDArray[np.object_]:
+    return np.asarray(shapely.linestrings(np.stack((starts, ends), axis=1)), dtype=object)
+
+
+def inner_points(rings: Sequence[Floats]) -> Floats:
+    """Return a point inside each simple ring, ``(n, 2)``."""
+    return np.asarray(shapely.get_coordinates(shapely.point_on_surface(_polygons(rings))))

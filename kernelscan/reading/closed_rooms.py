@@ -14,6 +14,7 @@ Obstacles
 from collections import defaultdict
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
+from typing import Literal
 
 import numpy as np
 
@@ -21,12 +22,13 @@ from kernelscan.errors import GeometryError
 from kernelscan.geometry.rings import as_rings
 from kernelscan.geometry.shapes import Patch, area, difference, overlap_areas
 from kernelscan.plan import Obstacle, Problem
+from kernelscan.plan.room import OpeningKind
 from kernelscan.reading.layers import LayerRole, Role
 from kernelscan.reading.outlines import Outline
 from kernelscan.reading.texts import words
 from kernelscan.tolerances import Tolerances
 
-__all__ = ["FoundRoom", "chosen_outlines", "with_obstacles"]
+__all__ = ["FoundRoom", "RoomEdge", "chosen_outlines", "with_obstacles"]
 
 SAME = 0.995
 """Two outlines that share this part of the larger are one outline drawn twice."""
@@ -48,11 +50,21 @@ SYMBOL_ROLES: frozenset[Role] = frozenset({"furniture", "annotation", "opening",
 
 
 @dataclass(frozen=True, slots=True, eq=False)
+class RoomEdge:
+    """An edge of a room that is an opening: its two ends, ``(2, 2)``, and what it is."""
+
+    ends: np.ndarray
+    kind: OpeningKind
+
+
+@dataclass(frozen=True, slots=True, eq=False)
 class FoundRoom:
-    """An outline taken for a room, and what stands in it."""
+    """An outline taken for a room, what stands in it and opens in it, and whether it was drawn or made from walls."""
 
     outline: Outline
     obstacles: tuple[Obstacle, ...] = ()
+    edges: tuple[RoomEdge, ...] = ()
+    closed_by: Literal["outline", "walls"] = "outline"
 
 
 def chosen_outlines(

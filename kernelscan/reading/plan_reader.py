@@ -5,25 +5,34 @@ Everything up to the rooms is in drawing units; from the outlines on, everything
 
 from collections import Counter
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from os import PathLike
 from pathlib import Path
 
 import numpy as np
 
-from kernelscan.plan import Plan, Problem, Room
+from kernelscan.plan import Opening, Plan, Problem, Room, WallRef
 from kernelscan.plan.room import NameSource
-from kernelscan.reading.closed_rooms import FoundRoom, chosen_outlines, with_obstacles
+from kernelscan.reading.closed_rooms import FoundRoom, RoomEdge, chosen_outlines, with_obstacles
 from kernelscan.reading.explode import drawing_contents
 from kernelscan.reading.files import open_drawing
 from kernelscan.reading.layers import LayerPatterns, LayerRole, layer_role
+from kernelscan.reading.loose_rooms import barriers_by_content, barriers_by_name, loose_rooms
 from kernelscan.reading.names import RoomLabel, labels_in_rings, room_label
 from kernelscan.reading.outlines import closed_outlines, open_outline_problems
 from kernelscan.reading.strokes import Contents
 from kernelscan.reading.unit_rules import absurd_unit, drawing_unit, no_unit
+from kernelscan.reading.wall_layers import double_layers
 from kernelscan.tolerances import Tolerances
 
 __all__ = ["read_plan"]
+
+
+BY_NAMED_WALLS = "No room is outlined; rooms are what the lines on wall, door and window layers enclose."
+BY_DOUBLE_LINES = "No room is outlined and no layer is named for walls, so by content: rooms are what the double lines on {} enclose."
+BY_LINES = (
+    "No room is outlined and no layer is named for walls, so by content: rooms are what all lines enclose."
+)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -39,11 +48,7 @@ class _Reading:
         """Return the rooms, the rule by which they were taken, and the problems, for a unit of so many metres."""
         strokes = self.contents.strokes
         outlines, faults = closed_outlines(strokes, metres, self.tolerances.snap)
-        chosen, rule, problems = chosen_outlines(
-            outlines, self.roles, bool(self.patterns.rooms), self.tolerances
-        )
         obstacles = [outline for outline in outlines if self.roles[outline.stroke.layer].role == "obstacle"]
-        found, more = with_obstacles(chosen, obstacles, self.tolerances.snap)
         parts = [stroke for stroke in strokes if self.roles[stroke.layer].role == "room"]
         gaps = open_outline_problems(parts, metres, self.tolerances.snap)
         faults = [
@@ -51,7 +56,33 @@ class _Reading:
             for fault in faults
             if self.roles[fault.source.layer].role in {"room", "obstacle", "unknown"}
         ]
+        by_option = bool(self.patterns.rooms)
+        chosen, rule, problems = chosen_outlines(outlines, self.roles, by_option, self.tolerances)
+        if not by_option and not any(self.roles[o.stroke.layer].role == "room" for o in chosen):
+            loose = self._loose(metres, bool(chosen))
+            if loose is not None:
+                return [*loose[0]], loose[1], [*gaps, *loose[2]]
+        found, more = with_obstacles(chosen, obstacles, self.tolerances.snap)
         return found, rule, [*faults, *gaps, *problems, *more]
+
+    def _loose(self, metres: float, has_outlines: bool) -> tuple[list[FoundRoom], str, list[Problem]] | None:
+        """Return the rooms that loose lines enclose, by names, else by content; ``None`` to keep to outlines."""
+        strokes = self.contents.strokes
+        named = barriers_by_name(strokes, self.roles)
+        found, problems = loose_rooms(named, self.contents.labels, metres, self.tolerances)
+        if found:
+            return found, BY_NAMED_WALLS, problems
+        every = barriers_by_content(strokes, self.roles)
+        layers = double_layers(every.walls, metres, self.tolerances)
+        if layers:
+            walls = replace(every, walls=[stroke for stroke in every.walls if stroke.layer in layers])
+            found, problems = loose_rooms(walls, self.contents.labels, metres, self.tolerances)
+            if found:
+                return found, BY_DOUBLE_LINES.format(", ".join(sorted(layers))), problems
+        if has_outlines:
+            return None
+        found, problems = loose_rooms(every, self.contents.labels, metres, self.tolerances)
+        return found, BY_LINES, problems
 
     def areas(self, metres: float) -> Sequence[float]:
         """Return the areas of the rooms under a unit."""
@@ -127,13 +158,34 @@ def _rooms(found: Sequence[FoundRoom], contents: Contents, metres: float) -> tup
     rooms = []
     for number, (room, inside) in enumerate(zip(found, labels, strict=True), 1):
         outline = room.outline
-        own_layer = outline.stroke.layer if on_layer[outline.stroke.layer] == 1 else ""
+        alone = on_layer[outline.stroke.layer] == 1 and room.closed_by == "outline"
+        own_layer = outline.stroke.layer if alone else ""
         x, y = outline.centre
+        openings = _openings(outline.ring, room.edges)
         name, name_from = _name(number, room_label(inside, (x / metres, y / metres)), own_layer)
         rooms.append(
-            Room(f"R{number:03d}", name, outline.ring, room.obstacles, (), name_from, outline.source)
+            Room(f"R{number:03d}", name, outline.ring, room.obstacles, openings, name_from, outline.source)
         )
     return tuple(rooms)
+
+
+def _openings(ring: np.ndarray, edges: Sequence[RoomEdge]) -> tuple[Opening, ...]:
+    """Return which walls of a ring are openings: those whose middle lies on an opening edge."""
+    found = []
+    for k in range(len(ring)) if edges else ():
+        a, b = ring[k], ring[(k + 1) % len(ring)]
+        kind = next((edge.kind for edge in edges if _covers(edge.ends, (a + b) / 2)), None)
+        if kind is not None:
+            found.append(Opening(WallRef(0, k), kind, float(np.hypot(*(b - a)))))
+    return tuple(found)
+
+
+def _covers(ends: np.ndarray, point: np.ndarray) -> bool:
+    along = ends[1] - ends[0]
+    to = point - ends[0]
+    long = float(np.hypot(*along))
+    share = float(to @ along) / (long * long)
+    return bool(abs(along[0] * to[1] - along[1] * to[0]) <= 1e-6 * long and 0 < share < 1)
 
 
 def _name(number: int, label: RoomLabel, own_layer: str) -> tuple[str, NameSource]:

@@ -1,0 +1,228 @@
+"""Rooms from loose linework: the faces between walls that are rooms, and what stands in them.
+
+Problem
+    Most drawings outline no room. They draw walls, as single lines or as two faces, that stop at doors, overshoot at
+    corners, and stand among much else.
+Method
+    Near misses are joined, gaps closed (:mod:`kernelscan.reading.gaps`), and all lines noded into faces
+    (:mod:`kernelscan.reading.faces`). A face is a room by its area and by its width, the short side of the rectangle
+    of the same area and perimeter; what is narrower is the body of a wall, a jamb or a door's place. A face with a
+    name in it may be smaller.
+Not rooms
+    A face around everything else, which opens to nothing, is a frame or a plot. What stands free inside a room, has no
+    opening and no name, is an obstacle of that room.
+"""
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from kernelscan.errors import GeometryError
+from kernelscan.geometry.rings import as_ring
+from kernelscan.geometry.shapes import inner_points, rings_around
+from kernelscan.plan import Obstacle, Problem, Source
+from kernelscan.plan.room import OpeningKind
+from kernelscan.reading.closed_rooms import FoundRoom, RoomEdge
+from kernelscan.reading.corners import clean_ring
+from kernelscan.reading.faces import DRAWN_OPENING, OUTSIDE, Face, SmallFace, faces_of
+from kernelscan.reading.gaps import connectors, wall_gaps
+from kernelscan.reading.layers import LayerRole
+from kernelscan.reading.names import labels_in_rings, room_label
+from kernelscan.reading.outlines import Outline
+from kernelscan.reading.segments import (
+    DOOR,
+    GAP,
+    WALL,
+    WINDOW,
+    Segments,
+    opening_code,
+    segments_of,
+    swings_of,
+)
+from kernelscan.reading.strokes import Label, Stroke
+from kernelscan.tolerances import Tolerances
+
+__all__ = ["Barriers", "barriers_by_content", "barriers_by_name", "loose_rooms"]
+
+GRID = 1e-5
+STRAIGHT = 1e-3
+LABELLED_AREA, LABELLED_WIDTH = 0.5, 0.5
+FILLED_KINDS = frozenset({"HATCH", "MPOLYGON", "SOLID", "TRACE"})
+KINDS: dict[int, OpeningKind] = {DOOR: "door", WINDOW: "window", GAP: "gap"}
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Barriers:
+    """The strokes that bound rooms and those that are doors and windows."""
+
+    walls: Sequence[Stroke]
+    openings: Sequence[Stroke]
+
+
+def barriers_by_name(strokes: Sequence[Stroke], roles: Mapping[str, LayerRole]) -> Barriers:
+    """Return what lies on layers named for walls, or, for doors and windows, on layers named so."""
+    walls = [s for s in strokes if roles[s.layer].role in {"wall", "room"}]
+    return Barriers(walls, [s for s in strokes if roles[s.layer].role == "opening"])
+
+
+def barriers_by_content(strokes: Sequence[Stroke], roles: Mapping[str, LayerRole]) -> Barriers:
+    """Return all that may be a wall where names say nothing: no fillings, and nothing that is named as something else."""
+    walls, openings = [], []
+    for stroke in strokes:
+        part = roles[stroke.layer].role
+        block = roles[stroke.blocks].role if stroke.blocks else "unknown"
+        if stroke.kind in FILLED_KINDS or block in {"furniture", "annotation", "stairs", "other"}:
+            continue
+        if part == "opening" or (part == "unknown" and block == "opening"):
+            openings.append(stroke)
+        elif part in {"unknown", "wall", "room", "obstacle"}:
+            walls.append(stroke)
+    return Barriers(walls, openings)
+
+
+def loose_rooms(
+    barriers: Barriers, labels: Sequence[Label], metres: float, tolerances: Tolerances
+) -> tuple[list[FoundRoom], list[Problem]]:
+    """Return the rooms that the barriers bound, top to bottom and left to right, and the problems met.
+
+    Parameters
+    ----------
+    barriers
+        In drawing units.
+    labels
+        In drawing units.
+    metres
+        How many metres a drawing unit is.
+    tolerances
+        Snap, door gap, widest opening, thickest wall, smallest room.
+    """
+    strokes = [*barriers.walls, *barriers.openings]
+    if not strokes:
+        return [], []
+    origin = np.rint(np.median(np.concatenate([s.points[:1] for s in strokes]), axis=0) * metres)
+    lines = _closed_lines(barriers, metres, origin, tolerances)
+    faces = faces_of(lines, GRID, SmallFace(tolerances.smallest_room, tolerances.thickest_wall))
+    named = _named(faces, labels, metres, origin)
+    rooms = _room_faces(faces, named, tolerances)
+    found = [_found(faces[f], origin, strokes, lines, tolerances) for f in rooms]
+    return sorted((room for room in found if room is not None), key=_reading_order), []
+
+
+def _closed_lines(barriers: Barriers, metres: float, origin: np.ndarray, tolerances: Tolerances) -> Segments:
+    """Return the walls, the openings' lines and the thresholds that together close the rooms."""
+    swinging = swings_of([*barriers.walls, *barriers.openings], metres, origin)
+    arcs = {k for k, _ in swinging}
+    strokes = [*barriers.walls, *barriers.openings]
+    first = len(barriers.walls)
+    codes = [WALL if k < first else opening_code(s.layer, s.blocks) for k, s in enumerate(strokes)]
+    whole = segments_of(strokes, codes, metres, origin)
+    whole = whole.where(~np.isin(whole.stroke, list(arcs)))
+    walls, openings = whole.where(whole.code == WALL), whole.where(whole.code != WALL)
+    gaps = wall_gaps(walls, openings, [swing for _, swing in swinging], tolerances)
+    drawn = Segments(
+        whole.a, whole.b, np.where(whole.code == WALL, WALL, whole.code + DRAWN_OPENING), whole.stroke
+    )
+    starts, ends = connectors(whole, tolerances.snap)
+    joined = drawn.plus(starts, ends, np.full(len(starts), WALL))
+    return joined.plus(gaps.a, gaps.b, gaps.code)
+
+
+def _named(faces: Sequence[Face], labels: Sequence[Label], metres: float, origin: np.ndarray) -> set[int]:
+    """Return the faces in which a label that is a name stands."""
+    inside = labels_in_rings([face.rings[0] + origin for face in faces], labels, metres)
+    return {f for f, texts in enumerate(inside) if texts and room_label(texts).name}
+
+
+def _room_faces(faces: Sequence[Face], named: set[int], tolerances: Tolerances) -> list[int]:
+    rooms = [
+        f
+        for f, face in enumerate(faces)
+        if (face.area >= tolerances.smallest_room and face.width >= tolerances.thickest_wall)
+        or (f in named and face.area >= LABELLED_AREA and face.width >= LABELLED_WIDTH)
+    ]
+    holes = [(f, hole) for f in rooms for hole in faces[f].rings[1:]]
+    if not holes:
+        return rooms
+    points = inner_points([faces[f].rings[0] for f in rooms])
+    inner, of_hole = rings_around([hole for _, hole in holes], points)
+    free = {rooms[k] for k in inner.tolist() if not _is_entered(faces[rooms[k]]) and rooms[k] not in named}
+    held: dict[int, float] = {}
+    for k, h in zip(inner.tolist(), of_hole.tolist(), strict=True):
+        if rooms[k] not in free:
+            held[holes[h][0]] = held.get(holes[h][0], 0.0) + faces[rooms[k]].area
+    frames = {f for f in held if _is_frame(faces[f]) and f not in named}
+    return [
+        f
+        for f in rooms
+        if f not in frames and (f not in free or _in_frames(f, rooms, inner, of_hole, holes, frames))
+    ]
+
+
+def _in_frames(
+    f: int,
+    rooms: list[int],
+    inner: np.ndarray,
+    of_hole: np.ndarray,
+    holes: list[tuple[int, np.ndarray]],
+    frames: set[int],
+) -> bool:
+    """Whether a face stands free only in frames, which are no rooms, so that it is no obstacle of one."""
+    around = {holes[h][0] for k, h in zip(inner.tolist(), of_hole.tolist(), strict=True) if rooms[k] == f}
+    return around <= frames
+
+
+def _is_entered(face: Face) -> bool:
+    return any((codes != WALL).any() for codes in face.codes)
+
+
+def _is_frame(face: Face) -> bool:
+    return bool((face.beyond[0] == OUTSIDE).all() and (face.codes[0] == WALL).all())
+
+
+def _found(
+    face: Face, origin: np.ndarray, strokes: Sequence[Stroke], lines: Segments, tolerances: Tolerances
+) -> FoundRoom | None:
+    """Return a face as a room: its corners cleaned, its holes obstacles, its openings kept."""
+    ring, codes = clean_ring(face.rings[0], face.codes[0], tolerances.snap, STRAIGHT)
+    try:
+        outline = as_ring(ring + origin)
+    except GeometryError:
+        ring, codes = face.rings[0], face.codes[0]
+        outline = as_ring(ring + origin)
+    stroke = _bounding_stroke(face, strokes, lines)
+    source = Source(stroke.layer, stroke.handle)
+    obstacles = []
+    for hole, kinds in zip(face.rings[1:], face.codes[1:], strict=True):
+        cleaned, _ = clean_ring(hole, kinds, tolerances.snap, STRAIGHT)
+        if (kinds == WALL).any() and len(cleaned) > 2:
+            obstacles.append(Obstacle(as_ring(cleaned + origin, hole=True), source))
+    edges = tuple(
+        RoomEdge(np.array((ring[k], ring[(k + 1) % len(ring)])) + origin, KINDS[code % DRAWN_OPENING])
+        for k, code in enumerate(codes.tolist())
+        if code != WALL
+    )
+    area = _area(outline)
+    return FoundRoom(Outline(outline, area, stroke), tuple(obstacles), edges, "walls")
+
+
+def _bounding_stroke(face: Face, strokes: Sequence[Stroke], lines: Segments) -> Stroke:
+    from kernelscan.geometry.shapes import lines_near
+
+    ring = face.rings[0]
+    long = int(np.argmax(np.hypot(*np.diff(ring, axis=0, append=ring[:1]).T)))
+    middle = (ring[long] + ring[(long + 1) % len(ring)]) / 2
+    drawn = np.flatnonzero(lines.stroke >= 0)
+    _, i = lines_near(middle[None], lines.a[drawn], lines.b[drawn], 10 * GRID)
+    return strokes[int(lines.stroke[drawn[i[0]]])] if len(i) else strokes[0]
+
+
+def _area(ring: np.ndarray) -> float:
+    from kernelscan.geometry.rings import signed_area
+
+    return signed_area(ring)
+
+
+def _reading_order(room: FoundRoom) -> tuple[float, float]:
+    x, y = room.outline.centre
+    return (-round(y, 1), x)

@@ -1,0 +1,121 @@
+"""Loose linework as arrays: straight pieces in metres, each with what it is part of and where it came from.
+
+Door leaves that stand open and the arcs they swing on are no walls: arcs of a door's size on opening layers, or with
+a leaf drawn from their hinge, are kept apart as swings, from which the width of the closed door is known.
+"""
+
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+from typing import Literal
+
+import numpy as np
+
+from kernelscan.reading.strokes import Stroke
+from kernelscan.reading.texts import words
+
+__all__ = ["DOOR", "GAP", "WALL", "WINDOW", "Segments", "Swing", "opening_code", "segments_of", "swings_of"]
+
+WALL, DOOR, WINDOW, GAP = 0, 1, 2, 3
+"""What a piece is part of, as a number, for arrays; a gap is a piece that nobody drew."""
+
+SMALLEST_LEAF, LARGEST_LEAF = 0.4, 1.6
+WINDOW_WORDS = frozenset(
+    ["window", "windows", "glaz", "glazing", "glass", "fenster", "fenetre", "fenetres", "finestra", "finestre", "ventana", "ventanas", "janela", "janelas", "raam", "ramen", "okno", "okna", "fonster", "vindu", "ikkuna", "pencere"]
+)
+SwingSide = Literal["start", "end"]
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Segments:
+    """Straight pieces: ``a`` and ``b`` are ``(n, 2)`` ends in metres, ``code`` and ``stroke`` are ``(n,)``."""
+
+    a: np.ndarray
+    b: np.ndarray
+    code: np.ndarray
+    stroke: np.ndarray
+
+    def __len__(self) -> int:
+        return len(self.a)
+
+    @property
+    def length(self) -> np.ndarray:
+        """Their lengths."""
+        return np.asarray(np.hypot(*(self.b - self.a).T))
+
+    def where(self, chosen: np.ndarray) -> "Segments":
+        """Return only the chosen ones."""
+        return Segments(self.a[chosen], self.b[chosen], self.code[chosen], self.stroke[chosen])
+
+    def plus(self, a: np.ndarray, b: np.ndarray, code: np.ndarray) -> "Segments":
+        """Return these and more, which no stroke drew."""
+        none = np.full(len(a), -1)
+        return Segments(
+            np.concatenate((self.a, a)),
+            np.concatenate((self.b, b)),
+            np.concatenate((self.code, code)),
+            np.concatenate((self.stroke, none)),
+        )
+
+
+@dataclass(frozen=True, slots=True)
+class Swing:
+    """The arc that a door leaf swings on, in metres: its hinge, its two ends, its radius."""
+
+    hinge: tuple[float, float]
+    ends: tuple[tuple[float, float], tuple[float, float]]
+    radius: float
+
+
+def opening_code(layer: str, blocks: str) -> int:
+    """Return whether the words of an opening's layer or block say window; door otherwise."""
+    return WINDOW if WINDOW_WORDS & {*words(layer), *words(blocks)} else DOOR
+
+
+def segments_of(
+    strokes: Sequence[Stroke], codes: Sequence[int], metres: float, origin: np.ndarray
+) -> Segments:
+    """Return the straight pieces of strokes, as coordinates from an origin in metres."""
+    starts, ends, code, index = [], [], [], []
+    for k, (stroke, its) in enumerate(zip(strokes, codes, strict=True)):
+        points = stroke.points
+        if stroke.closed:
+            points = np.concatenate((points, points[:1]))
+        starts.append(points[:-1])
+        ends.append(points[1:])
+        code.append(its)
+        index.append(len(points) - 1)
+    if not starts:
+        return Segments(np.empty((0, 2)), np.empty((0, 2)), np.empty(0, dtype=int), np.empty(0, dtype=int))
+    a, b = (np.concatenate(part) * metres - origin for part in (starts, ends))
+    whole = Segments(a, b, np.repeat(code, index), np.repeat(np.arange(len(strokes)), index))
+    return whole.where(whole.length > 1e-6)
+
+
+def swings_of(strokes: Iterable[Stroke], metres: float, origin: np.ndarray) -> list[tuple[int, Swing]]:
+    """Return which of the strokes are arcs of a door's size, and their swings."""
+    found = []
+    for k, stroke in enumerate(strokes):
+        if stroke.kind != "ARC" or len(stroke.points) < 3:
+            continue
+        a, b = (stroke.points[i] * metres - origin for i in (0, -1))
+        middle = stroke.points[len(stroke.points) // 2] * metres - origin
+        circle = _circle_through(a, middle, b)
+        if circle is None:
+            continue
+        hinge, radius = circle
+        chord = float(np.hypot(*(b - a)))
+        if SMALLEST_LEAF <= radius <= LARGEST_LEAF and 0.7 * radius <= chord <= 1.75 * radius:
+            ends = (float(a[0]), float(a[1])), (float(b[0]), float(b[1]))
+            found.append((k, Swing((float(hinge[0]), float(hinge[1])), ends, radius)))
+    return found
+
+
+def _circle_through(a: np.ndarray, b: np.ndarray, c: np.ndarray) -> tuple[np.ndarray, float] | None:
+    """Return the centre and radius of the circle through three points; ``None`` if they lie on a line."""
+    u, v = b - a, c - a
+    cross = 2 * float(u[0] * v[1] - u[1] * v[0])
+    if abs(cross) < 1e-12:
+        return None
+    x = (v[1] * (u @ u) - u[1] * (v @ v)) / cross
+    y = (u[0] * (v @ v) - v[0] * (u @ u)) / cross
+    return a + (x, y), float(np.hypot(x, y))
