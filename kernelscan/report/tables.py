@@ -4,56 +4,52 @@ from collections.abc import Sequence
 from math import ceil, degrees, log10
 from typing import TextIO
 
-from rich.console import Console
-from rich.table import Table
 from rich.text import Text
 
 from kernelscan.coverage import RoomZones, Spot
 from kernelscan.plain_text import plain_text
 from kernelscan.plan import Plan, Problem
 from kernelscan.report.schedule import kernel_in_words
+from kernelscan.report.terminal import cell, print_parts, table_of
 from kernelscan.units import feet_and_inches
 
 __all__ = ["print_problems", "print_rooms", "print_zones"]
 
-PIPE_WIDTH = 160
-"""Columns when the output is not a terminal, so that a redirected table is not folded to 80."""
-
 
 def print_rooms(plan: Plan, out: TextIO) -> None:
     """Print a row for each room: what it is, how large, and what stands or opens in it."""
-    table = _table("room", "name", "area", "corners", "openings", "obstacles", "layer")
+    table = table_of("room", "name", "area", "corners", "openings", "obstacles", "layer")
     for room in plan.rooms:
         table.add_row(
             room.id,
-            _cell(room.name),
+            cell(room.name),
             f"{room.area:.2f} m2",
             str(room.corner_count),
             str(len(room.openings)),
             str(len(room.obstacles)),
-            _cell(room.source.layer),
+            cell(room.source.layer),
         )
-    _print(out, _heading(plan), table)
+    print_parts(out, _heading(plan), table)
 
 
 def print_zones(plan: Plan, answers: Sequence[RoomZones], out: TextIO) -> None:
     """Print for each room the kernel and the recommended spot of each mount, or why there is none."""
-    table = _table(
+    table = table_of(
         "room", "name", "area", "sees every wall", "mount", "x", "y", "field", "range", "may be off by"
     )
     for zones in answers:
         room = zones.room
-        head: list[str | Text] = [room.id, _cell(room.name), f"{room.area:.2f} m2", kernel_in_words(zones)]
+        head: list[str | Text] = [room.id, cell(room.name), f"{room.area:.2f} m2", kernel_in_words(zones)]
         for spot in zones.recommended or (None,):
             table.add_row(*head, *(["–"] * 6 if spot is None else _spot_cells(plan, spot)))
             head = ["", "", "", ""]
-    _print(out, _heading(plan), table)
+    print_parts(out, _heading(plan), table)
 
 
 def print_problems(plan: Plan, out: TextIO) -> None:
     """Print each problem of the drawing with its place, layer and handle."""
     if plan.problems:
-        _print(out, "Notes on the drawing:", *(_problem(plan, each) for each in plan.problems))
+        print_parts(out, "Notes on the drawing:", *(_problem(plan, each) for each in plan.problems))
 
 
 def _heading(plan: Plan) -> str:
@@ -96,27 +92,3 @@ def _problem(plan: Plan, problem: Problem) -> str:
     ]
     where = ", ".join(part for part in place if part)
     return f"  {problem.code}: {plain_text(problem.message, 400)}" + (f" ({where})" if where else "")
-
-
-def _table(*columns: str) -> Table:
-    table = Table(box=None, pad_edge=False, header_style="bold")
-    for column in columns:
-        table.add_column(column, overflow="fold")
-    return table
-
-
-def _cell(text: str) -> Text:
-    return Text(plain_text(text, 40))
-
-
-class _Console(Console):
-    """A console that leaves it to the caller what to do when the reader of the output has gone."""
-
-    def on_broken_pipe(self) -> None:
-        raise BrokenPipeError
-
-
-def _print(out: TextIO, *parts: str | Table) -> None:
-    console = _Console(file=out, highlight=False, width=None if out.isatty() else PIPE_WIDTH)
-    for part in parts:
-        console.print(Text(part) if isinstance(part, str) else part, soft_wrap=isinstance(part, str))
