@@ -76,7 +76,10 @@ def new_drawing(insunits: int, *, metric: bool = True) -> Drawing:
     """Return an empty drawing in that $INSUNITS with the layers above, and without dates and random ids."""
     options.write_fixed_meta_data_for_testing = True
     doc = new("R2010", units=insunits)
-    for name in ("ACDBPLACEHOLDER", "LAYOUT"):  # else written in the order of a set, which differs from run to run
+    for name in (
+        "ACDBPLACEHOLDER",
+        "LAYOUT",
+    ):  # else written in the order of a set, which differs from run to run
         doc.classes.add_class(name)
     doc.header["$MEASUREMENT"] = int(metric)
     doc.header["$LUNITS"] = 2 if metric else 4

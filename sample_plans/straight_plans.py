@@ -205,9 +205,8 @@ def _place_studio(
 
 
 def mezzanine() -> Drawing:
-    """Metres, outlines on a layer that says nothing: a line, a point, and a plain room that nobody named."""
+    """Metres, walls alone and no outlines: a line, a point, and a plain room that nobody named."""
     doc = new_drawing(METRE)
-    doc.layers.add("OUTLINE", color=6)
     pen = Pen(doc.modelspace(), text_height=0.25)
     crossing = [
         (4, 0), (6, 0), (6, 4), (8, 4), (8, 6), (4, 6), (4, 8), (2, 8), (2, 4), (0, 4), (0, 2), (4, 2),
@@ -220,11 +219,8 @@ def mezzanine() -> Drawing:
         (4, 0), (6, 0), (6, 4), (8.25, 4), (8.25, 2), (12.5, 2), (12.5, 0), (16.25, 0), (16.25, 8), (12.25, 8),
         (12.25, 6), (4, 6), (4, 8), (2, 8), (2, 4), (0, 4), (0, 2), (4, 2),
     ]  # fmt: skip
-    pen.closed("OUTLINE", crossing)
-    pen.tag("Crossing", (4, 4.5), layer="A-ANNO-NOTE")
-    pen.old_polyline("OUTLINE", landing)
-    pen.tag("Landing", (10.2, 3.0), layer="A-ANNO-NOTE")
-    pen.closed("OUTLINE", store)
+    pen.tag("Crossing", (4, 4.5))
+    pen.tag("Landing", (10.2, 3.0))
     doors = [
         Door((8, 4.4), (8, 5.3), (0.25, 0)),
         Door((14.3, 4), (13.4, 4), (0, -0.25), away=True),
