@@ -24,6 +24,7 @@ __all__ = [
     "metric_scales",
     "paper_by_name",
     "scale_by_text",
+    "usual_scales",
 ]
 
 INCH = 25.4
@@ -122,6 +123,11 @@ def customary_scales() -> Iterator[Scale]:
             yield Scale(12 * feet, f"1\" = {feet}'")
 
 
+def usual_scales(imperial: bool) -> Iterator[Scale]:
+    """Yield the scales of the one custom or the other, large ones first, without end."""
+    return customary_scales() if imperial else metric_scales()
+
+
 def _inches(text: str) -> float:
     """Return the value of an inch length written with a fraction, such as ``1 1/2``."""
     total = 0.0
@@ -162,7 +168,7 @@ def largest_scale(size: tuple[float, float], space: tuple[float, float], imperia
 
     The series has no end, so there always is one as long as the space is not empty.
     """
-    for scale in customary_scales() if imperial else metric_scales():
+    for scale in usual_scales(imperial):
         if all(each * scale.mm_per_metre <= room for each, room in zip(size, space, strict=True)):
             return scale
     raise AssertionError("the series of scales has no end")

@@ -1,32 +1,27 @@
 """Composition: from the answers to sheets of paper.
 
-The first sheet shows the plan; the schedule stands beside or under it, and what does not fit goes on over further
-sheets, none of it cut. Every sheet carries the cautions and the title block.
+The first sheet shows the plan, or an overview of its parts, each of which then has a sheet. The schedule stands
+beside or under the plan, and what does not fit there goes on over further sheets, none of it cut. Every sheet carries
+the cautions and the title block.
 """
 
 from collections import Counter
 from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
 
 from kernelscan.coverage import RoomZones
-from kernelscan.markup.drawing import (
-    conflict_items,
-    linework_items,
-    obstacle_items,
-    outline_items,
-    zone_items,
-)
-from kernelscan.markup.layout import CAPTION, Layout, chosen_layout, schedule_layout
+from kernelscan.markup.choice import Choice, chosen
+from kernelscan.markup.layout import Layout, schedule_layout
 from kernelscan.markup.legend import caution_items, legend_items
 from kernelscan.markup.options import SheetOptions
 from kernelscan.markup.paper import Paper, Scale
-from kernelscan.markup.scene import Box, Group, Item, Scene, Stroke, Text
+from kernelscan.markup.plan_block import overview_groups, part_groups, parts_of, plan_groups
+from kernelscan.markup.scene import Box, Group, Item, Scene, Stroke
 from kernelscan.markup.schedule import Entry, Schedule, schedule_of
 from kernelscan.markup.style import FRAME_PEN, RULE_PEN
-from kernelscan.markup.symbols import spot_symbol
-from kernelscan.markup.tags import Tags, placed_tags
-from kernelscan.markup.text import clean_text, cut_to
+from kernelscan.markup.text import clean_text
 from kernelscan.markup.titleblock import SheetNumber, title_block
-from kernelscan.markup.view import PlanView, plan_extent
+from kernelscan.markup.view import plan_extent
 from kernelscan.markup.wording import Custom
 from kernelscan.plain_text import plain_text
 from kernelscan.plan import Plan
@@ -55,34 +50,60 @@ def compose_zone_sheets(
     Raises
     ------
     InputError
-        When paper or scale are unknown, or the plan does not fit the two that were given.
+        When a paper or a scale is unknown, or the parts of the plan would be more than 200 sheets.
     """
     custom = Custom(plan.unit.imperial)
     rooms = [zones.room for zones in answers]
     schedule, extent = schedule_of(answers, custom), plan_extent(plan, rooms)
     extra = _about_the_drawing(plan, answers)
-    layout, scale = chosen_layout(extent, rooms, schedule, extra, options, custom.imperial)
-    here = schedule.fitting(0, layout.schedule.height)
-    rest = _pages(schedule, here, schedule_layout(layout.paper, extra))
-    count = 1 + len(rest)
-    view = _view(layout, scale, extent)
-    groups = [
-        *_plan_groups(plan, answers, view, layout, custom),
-        _schedule_group(schedule, layout.schedule, [schedule.entries[:here]] if here else []),
-        Group("legend", tuple(legend_items(layout.legend, scale, custom.imperial))),
-    ]
-    sheets = [
-        _sheet(plan, options, layout, groups, extra, SheetNumber(1, count, layout.paper.name, scale.text))
-    ]
-    for number, columns in enumerate(rest, 2):
-        further = schedule_layout(layout.paper, extra)
-        group = _schedule_group(schedule, further.schedule, columns)
-        sheets.append(
-            _sheet(
-                plan, options, further, [group], extra, SheetNumber(number, count, layout.paper.name, "none")
-            )
+    choice = chosen(extent, rooms, schedule, extra, options, custom.imperial)
+    pages = [*_plan_pages(plan, answers, choice, schedule, extent, custom)]
+    pages += _schedule_pages(schedule, choice.layout, extra)
+    return tuple(
+        _sheet(
+            plan, options, page, extra, SheetNumber(number, len(pages), page.layout.paper.name, page.scale)
         )
-    return tuple(sheets)
+        for number, page in enumerate(pages, 1)
+    )
+
+
+@dataclass(frozen=True, slots=True)
+class _Page:
+    """What is particular to one sheet: its layout, its scale in words and its own groups."""
+
+    layout: Layout
+    scale: str
+    groups: tuple[Group, ...]
+
+
+def _plan_pages(
+    plan: Plan, answers: Sequence[RoomZones], choice: Choice, schedule: Schedule, extent: Box, custom: Custom
+) -> Iterator[_Page]:
+    """Yield the sheet of the plan with as much of the schedule as it holds, and the sheets of its parts."""
+    layout, scale, parts = choice.layout, choice.scale, choice.parts
+    if parts is None:
+        groups = plan_groups(plan, answers, layout, scale, extent, custom)
+    else:
+        groups = overview_groups(plan, answers, layout, scale, extent, parts)
+    first = schedule.entries[: schedule.fitting(0, layout.schedule.height)]
+    table = _schedule_group(schedule, layout.schedule, [first] if first else [])
+    yield _Page(layout, scale.text, (*groups, table, _legend(layout, scale, custom)))
+    if parts is None:
+        return
+    for part in parts_of(parts, extent):
+        groups = part_groups(plan, answers, parts, part, custom)
+        yield _Page(parts.layout, parts.scale.text, (*groups, _legend(parts.layout, parts.scale, custom)))
+
+
+def _legend(layout: Layout, scale: Scale, custom: Custom) -> Group:
+    return Group("legend", tuple(legend_items(layout.legend, scale, custom.imperial)))
+
+
+def _schedule_pages(schedule: Schedule, first: Layout, extra: Sequence[str]) -> Iterator[_Page]:
+    """Yield the sheets that carry what of the schedule the first sheet does not hold."""
+    layout = schedule_layout(first.paper, extra)
+    for columns in _pages(schedule, schedule.fitting(0, first.schedule.height), layout):
+        yield _Page(layout, "none", (_schedule_group(schedule, layout.schedule, columns),))
 
 
 def _about_the_drawing(plan: Plan, answers: Sequence[RoomZones]) -> tuple[str, ...]:
@@ -95,37 +116,6 @@ def _about_the_drawing(plan: Plan, answers: Sequence[RoomZones]) -> tuple[str, .
         kinds = ", ".join(f"{code} ({count})" for code, count in sorted(met.items()))
         lines.append(f"Met in the drawing, and told in the report: {kinds}.")
     return tuple(lines)
-
-
-def _view(layout: Layout, scale: Scale, extent: Box) -> PlanView:
-    plan = layout.plan
-    return PlanView(Box(plan.left, plan.bottom + CAPTION, plan.right, plan.top), scale, extent.centre)
-
-
-def _plan_groups(
-    plan: Plan, answers: Sequence[RoomZones], view: PlanView, layout: Layout, custom: Custom
-) -> Iterator[Group]:
-    """Yield the plan from back to front; the group of setting-out dimensions has its place under the points."""
-    tags = placed_tags(answers, view, custom)
-    rooms = [zones.room for zones in answers]
-    yield Group("linework", tuple(linework_items(plan.linework, view, view.box)))
-    yield Group("zones", tuple(item for zones in answers for item in zone_items(zones, view)))
-    yield Group("obstacles", tuple(item for room in rooms for item in obstacle_items(room, view)))
-    yield Group("rooms", tuple(item for room in rooms for item in outline_items(room, view)))
-    yield Group("conflicts", tuple(item for zones in answers for item in conflict_items(zones, view)))
-    yield Group("setting-out", ())
-    spots = [spot for zones in answers for spot in zones.recommended]
-    yield Group("points", tuple(item for spot in spots for item in spot_symbol(spot, view.point(spot.point))))
-    yield Group("tags", tuple(item for tag in tags.placements for item in tag.items()))
-    yield Group("caption", tuple(_caption(layout, view.scale, tags)))
-
-
-def _caption(layout: Layout, scale: Scale, tags: Tags) -> Iterator[Item]:
-    plan = layout.plan
-    words = f"Plan, {scale.text} on {layout.paper.name}"
-    if tags.missing:
-        words += f". Without a place here, see the schedule: {', '.join(tags.missing)}"
-    yield Text((plan.left + 2, plan.bottom + 1.8), cut_to(words, plan.width - 4, 2.5, bold=True), bold=True)
 
 
 def _pages(schedule: Schedule, first: int, layout: Layout) -> list[list[Sequence[Entry]]]:
@@ -149,22 +139,15 @@ def _schedule_group(schedule: Schedule, space: Box, columns: Sequence[Sequence[E
     return Group("schedule", tuple(items))
 
 
-def _sheet(
-    plan: Plan,
-    options: SheetOptions,
-    layout: Layout,
-    groups: Sequence[Group],
-    extra: Sequence[str],
-    sheet: SheetNumber,
-) -> Scene:
-    file = clean_text(plan.file)
+def _sheet(plan: Plan, options: SheetOptions, page: _Page, extra: Sequence[str], sheet: SheetNumber) -> Scene:
+    file, layout = clean_text(plan.file), page.layout
     return Scene(
         layout.paper.width,
         layout.paper.height,
         f"{file}: where one device sees every wall, sheet {sheet.number} of {sheet.count}",
         f"Plan view with mount zones, schedule of rooms and cautions; {sheet.paper}, scale {sheet.scale}.",
         (
-            *groups,
+            *page.groups,
             Group("cautions", tuple(caution_items(layout.cautions, extra))),
             Group("title-block", title_block(layout.title, plan, options, sheet)),
             Group("frame", tuple(_frame(layout.paper, layout.plan))),

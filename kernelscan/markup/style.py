@@ -25,6 +25,7 @@ __all__ = [
     "LEADER_PEN",
     "LINEWORK_PEN",
     "MARKS",
+    "MATCH_PEN",
     "OBSTACLE_INK",
     "OBSTACLE_PEN",
     "PALE",
@@ -98,6 +99,7 @@ CONFLICT_PEN = Pen(1.0, BLACK, (3.0, 1.5))
 ARROW_PEN = Pen(0.35)
 SYMBOL_PEN = Pen(0.35)
 LEADER_PEN = Pen(0.25)
+MATCH_PEN = Pen(0.7, BLACK, (12.0, 2.0, 2.0, 2.0))
 FRAME_PEN = Pen(0.7)
 TABLE_PEN = Pen(0.18)
 RULE_PEN = Pen(0.35)

@@ -21,7 +21,7 @@ from kernelscan.markup.text import clean_text, wrapped
 from kernelscan.markup.view import PlanView
 from kernelscan.markup.wording import Custom, kernel_in_words
 
-__all__ = ["Placement", "Tags", "placed_tags"]
+__all__ = ["Placement", "Tags", "number_tags", "placed_tags"]
 
 WIDEST_NAME = 36.0
 """A longer name is wrapped over two lines, in millimetres."""
@@ -107,6 +107,22 @@ def placed_tags(answers: Sequence[RoomZones], view: PlanView, custom: Custom) ->
     outlines = np.concatenate([_edges(place.rings[0]) for place in places]) if places else np.empty((0, 4))
     for place in waiting:
         _place_outside(place, custom, outlines, tags)
+    return tags
+
+
+def number_tags(answers: Sequence[RoomZones], view: PlanView, corners: Sequence[tuple[Label, Box]]) -> Tags:
+    """Return labels in the upper left corners of boxes, and the numbers of the rooms as far as there is room."""
+    tags = Tags(view.box)
+    for label, box in corners:
+        tags.put(
+            label, Box(box.left + 1, box.top - 1 - label.height, box.left + 1 + label.width, box.top - 1)
+        )
+    for zones in answers:
+        label = Label((Line(zones.room.id, bold=True),))
+        for box in _inner_boxes(_place(zones, view), label, EDGE):
+            if tags.taken.takes(box):
+                tags.put(label, box)
+                break
     return tags
 
 

@@ -39,6 +39,11 @@ class PlanView:
         placed: np.ndarray = (np.asarray(points) - self.middle) * self.scale.mm_per_metre + self.box.centre
         return placed
 
+    def box_on_paper(self, box: Box) -> Box:
+        """Return a box of the plan, in metres, on the paper."""
+        (left, bottom), (right, top) = self.to_paper(np.array([box[:2], box[2:]]))
+        return Box(float(left), float(bottom), float(right), float(top))
+
     def to_plan(self, point: Point) -> np.ndarray:
         """Return a point of the paper as ``(2,)`` metres of the plan."""
         placed: np.ndarray = (np.array(point) - self.box.centre) / self.scale.mm_per_metre + self.middle

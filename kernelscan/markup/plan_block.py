@@ -1,0 +1,189 @@
+"""The plan's block of a sheet: the whole plan, an overview with the key of its parts, or one part."""
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+from itertools import product
+from math import pi
+
+import numpy as np
+
+from kernelscan.coverage import RoomZones
+from kernelscan.markup.choice import Parts
+from kernelscan.markup.clipping import clipped
+from kernelscan.markup.drawing import (
+    conflict_items,
+    linework_items,
+    obstacle_items,
+    outline_items,
+    zone_items,
+)
+from kernelscan.markup.labels import Label, Line
+from kernelscan.markup.layout import CAPTION, Layout
+from kernelscan.markup.paper import Scale
+from kernelscan.markup.scene import Box, Group, Item, Stroke, Text
+from kernelscan.markup.style import BODY, HEADING, MATCH_PEN
+from kernelscan.markup.symbols import spot_symbol
+from kernelscan.markup.tags import Tags, number_tags, placed_tags
+from kernelscan.markup.text import cut_to
+from kernelscan.markup.view import PlanView
+from kernelscan.markup.wording import Custom
+from kernelscan.plan import Plan
+
+__all__ = ["Part", "overview_groups", "part_groups", "parts_of", "plan_groups"]
+
+OVERLAP = 8.0
+"""How far a part goes on beyond a match line, in millimetres."""
+
+
+@dataclass(frozen=True, slots=True)
+class Part:
+    """One part of a plan: its name, its cell in metres, and the names of the parts at its sides."""
+
+    name: str
+    cell: Box
+    left: str
+    right: str
+    below: str
+    above: str
+
+
+def parts_of(parts: Parts, extent: Box) -> list[Part]:
+    """Return the parts of a plan, row by row from the top: A1, B1 and on, then A2, B2 and on."""
+    width, height = extent.width / parts.columns, extent.height / parts.rows
+
+    def name(column: int, row: int) -> str:
+        inside = 0 <= column < parts.columns and 0 <= row < parts.rows
+        return f"{_letters(column)}{row + 1}" if inside else ""
+
+    found = []
+    for row, column in product(range(parts.rows), range(parts.columns)):
+        left, top = extent.left + column * width, extent.top - row * height
+        found.append(
+            Part(
+                name(column, row),
+                Box(left, top - height, left + width, top),
+                name(column - 1, row),
+                name(column + 1, row),
+                name(column, row + 1),
+                name(column, row - 1),
+            )
+        )
+    return found
+
+
+def _letters(number: int) -> str:
+    """Return A to Z, then AA, AB and on."""
+    return (_letters(number // 26 - 1) if number >= 26 else "") + chr(ord("A") + number % 26)
+
+
+def _view(layout: Layout, scale: Scale, shown: Box) -> PlanView:
+    plan = layout.plan
+    return PlanView(Box(plan.left, plan.bottom + CAPTION, plan.right, plan.top), scale, shown.centre)
+
+
+def plan_groups(
+    plan: Plan, answers: Sequence[RoomZones], layout: Layout, scale: Scale, extent: Box, custom: Custom
+) -> Iterator[Group]:
+    """Yield the whole plan from back to front; setting-out dimensions have their place under the points."""
+    view = _view(layout, scale, extent)
+    tags = placed_tags(answers, view, custom)
+    yield Group("linework", tuple(linework_items(plan.linework, view, view.box)))
+    yield from _room_groups(answers, view, tags)
+    words = f"Plan, {scale.text} on {layout.paper.name}"
+    yield Group("caption", (_caption(layout, words, tags),))
+
+
+def _room_groups(answers: Sequence[RoomZones], view: PlanView, tags: Tags) -> Iterator[Group]:
+    rooms = [zones.room for zones in answers]
+    yield Group("zones", tuple(item for zones in answers for item in zone_items(zones, view)))
+    yield Group("obstacles", tuple(item for room in rooms for item in obstacle_items(room, view)))
+    yield Group("rooms", tuple(item for room in rooms for item in outline_items(room, view)))
+    yield Group("conflicts", tuple(item for zones in answers for item in conflict_items(zones, view)))
+    yield Group("setting-out", ())
+    spots = [spot for zones in answers for spot in zones.recommended]
+    yield Group("points", tuple(item for spot in spots for item in spot_symbol(spot, view.point(spot.point))))
+    yield Group("tags", tuple(item for tag in tags.placements for item in tag.items()))
+
+
+def _caption(layout: Layout, words: str, tags: Tags) -> Text:
+    if tags.missing:
+        words += f". Without a place here, see the schedule: {', '.join(tags.missing)}"
+    plan = layout.plan
+    return Text((plan.left + 2, plan.bottom + 1.8), cut_to(words, plan.width - 4, BODY, bold=True), bold=True)
+
+
+def overview_groups(
+    plan: Plan, answers: Sequence[RoomZones], layout: Layout, scale: Scale, extent: Box, parts: Parts
+) -> Iterator[Group]:
+    """Yield the plan with nothing but outlines and numbers, and the key of the parts over it."""
+    view = _view(layout, scale, extent)
+    divided = parts_of(parts, extent)
+    names = [(Label((Line(part.name, bold=True, height=HEADING),), framed=True), part) for part in divided]
+    tags = number_tags(answers, view, [(label, view.box_on_paper(part.cell)) for label, part in names])
+    yield Group("linework", tuple(linework_items(plan.linework, view, view.box)))
+    yield Group("rooms", tuple(item for zones in answers for item in outline_items(zones.room, view)))
+    cells = [view.box_on_paper(part.cell).corners for part in divided]
+    yield Group("parts", tuple(Stroke(corners, MATCH_PEN, closed=True) for corners in cells))
+    yield Group("tags", tuple(item for tag in tags.placements for item in tag.items()))
+    words = (
+        f"Overview, {scale.text} on {layout.paper.name}; the parts {divided[0].name} to {divided[-1].name}"
+    )
+    caption = f"{words} follow at {parts.scale.text}, with their zones and points"
+    plan_box = layout.plan
+    shown = cut_to(caption, plan_box.width - 4, BODY, bold=True)
+    yield Group("caption", (Text((plan_box.left + 2, plan_box.bottom + 1.8), shown, bold=True),))
+
+
+def part_groups(
+    plan: Plan, answers: Sequence[RoomZones], parts: Parts, part: Part, custom: Custom
+) -> Iterator[Group]:
+    """Yield one part of a plan, cut a little beyond its match lines."""
+    layout = parts.layout
+    view = _view(layout, parts.scale, part.cell)
+    cell, window = view.box_on_paper(part.cell), _window(view, part)
+    shown = [zones for zones in answers if _box_of(view.to_paper(zones.room.outline)).overlaps(window)]
+    tags = placed_tags(shown, PlanView(window, view.scale, tuple(view.to_plan(window.centre))), custom)
+    yield Group("linework", tuple(linework_items(plan.linework, view, window)))
+    for group in _room_groups(shown, view, tags):
+        yield Group(group.name, tuple(clipped(group.items, window)))
+    yield Group("parts", tuple(_match_lines(part, cell, window)))
+    words = f"Part {part.name}, {parts.scale.text} on {layout.paper.name}"
+    yield Group("caption", (_caption(layout, words, tags),))
+
+
+def _window(view: PlanView, part: Part) -> Box:
+    """Return what a part shows: to the edge of the block where the plan ends, a little over each match line."""
+    cell, block = view.box_on_paper(part.cell), view.box
+    return Box(
+        cell.left - OVERLAP if part.left else block.left,
+        cell.bottom - OVERLAP if part.below else block.bottom,
+        cell.right + OVERLAP if part.right else block.right,
+        cell.top + OVERLAP if part.above else block.top,
+    )
+
+
+def _box_of(points: np.ndarray) -> Box:
+    (left, bottom), (right, top) = points.min(axis=0), points.max(axis=0)
+    return Box(float(left), float(bottom), float(right), float(top))
+
+
+def _match_lines(part: Part, cell: Box, window: Box) -> Iterator[Item]:
+    """Yield the match lines, and beyond each the name of the part that goes on there."""
+    x, y = cell.centre
+    out = OVERLAP + 2.0
+    if part.left:
+        yield Stroke(((cell.left, window.bottom), (cell.left, window.top)), MATCH_PEN)
+        yield _beside(part.left, (cell.left - out, y), pi / 2)
+    if part.right:
+        yield Stroke(((cell.right, window.bottom), (cell.right, window.top)), MATCH_PEN)
+        yield _beside(part.right, (cell.right + out + BODY, y), pi / 2)
+    if part.below:
+        yield Stroke(((window.left, cell.bottom), (window.right, cell.bottom)), MATCH_PEN)
+        yield _beside(part.below, (x, cell.bottom - out - BODY), 0.0)
+    if part.above:
+        yield Stroke(((window.left, cell.top), (window.right, cell.top)), MATCH_PEN)
+        yield _beside(part.above, (x, cell.top + out), 0.0)
+
+
+def _beside(name: str, at: tuple[float, float], angle: float) -> Item:
+    return Text(at, f"match line: part {name}", BODY, "middle", bold=True, angle=angle)
