@@ -51,7 +51,7 @@ def nearest_edges(c: Floats, p: Floats, q: Floats, start: Indices, stop: Indices
     count = len(unit)
     length = (stop - start) % count
     row = np.frexp(length)[1].astype(np.intp) - 1
-    heading = unit[:, 0] + 1j * unit[:, 1]
+    heading = unit.view(np.complex128)[:, 0]
     field = _Field(c, p, q, heading, _bisectors(heading), *_duals(c, p, q))
     table = np.full((int(row.max()) + 1, count), -1, dtype=np.intp)
     edges = np.arange(len(p))
@@ -75,7 +75,7 @@ def _duals(c: Floats, p: Floats, q: Floats) -> tuple[Headings, Floats]:
         v, d = p - c, q - p
         left, right = v[:, 0] * d[:, 1], v[:, 1] * d[:, 0]
         height, error = left - right, 8 * ROUNDOFF * (np.abs(left) + np.abs(right)) + SMALLEST
-        w = (d @ np.array([-1j, 1])) / height
+        w = -1j * d.view(np.complex128)[:, 0] / height
         slack = np.where(height > 2 * error, error / (height - error), np.inf) + 64 * ROUNDOFF
         return w, 4 * np.abs(w) * slack
 

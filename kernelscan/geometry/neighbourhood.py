@@ -69,7 +69,7 @@ def nearby_edges(p: Floats, q: Floats) -> Iterator[tuple[Indices, Indices]]:
 def _levels(p: Floats, q: Floats) -> list[_Boxes]:
     """Return the boxes of the levels above the single edges, up to one with few nodes."""
     with np.errstate(over="ignore", invalid="ignore", under="ignore"):
-        v, w = ((end - p[0]) @ np.array([1, 1j]) for end in (p, q))
+        v, w = ((end - p[0]).view(np.complex128)[:, 0] for end in (p, q))
         way = w - v
         doubled = way * way / np.maximum(np.abs(way), SMALLEST)
         levels: list[_Boxes] = []
