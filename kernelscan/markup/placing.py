@@ -38,6 +38,10 @@ class Occupied:
         for cell in _cells_along(start, end):
             self._lines[cell].append((start, end))
 
+    def shows(self, point: Point) -> bool:
+        """Whether a point lies in the window."""
+        return _holds(self.window, point)
+
     def takes(self, box: Box) -> bool:
         """Whether a box lies in the window and touches nothing that was entered."""
         window = self.window

@@ -20,14 +20,14 @@ from kernelscan.markup.drawing import (
 from kernelscan.markup.labels import Label, Line
 from kernelscan.markup.layout import CAPTION, Layout
 from kernelscan.markup.paper import Scale
-from kernelscan.markup.scene import Box, Group, Item, Stroke, Text
+from kernelscan.markup.scene import Box, Group, Item, Point, Stroke, Text
 from kernelscan.markup.style import BODY, HEADING, MATCH_PEN
 from kernelscan.markup.symbols import spot_symbol
 from kernelscan.markup.tags import Tags, number_tags, placed_tags
 from kernelscan.markup.text import cut_to
 from kernelscan.markup.view import PlanView
 from kernelscan.markup.wording import Custom
-from kernelscan.plan import Plan
+from kernelscan.plan import Plan, Room
 
 __all__ = ["Part", "overview_groups", "part_groups", "parts_of", "plan_groups"]
 
@@ -47,28 +47,24 @@ class Part:
     above: str
 
 
-def parts_of(parts: Parts, extent: Box) -> list[Part]:
-    """Return the parts of a plan, row by row from the top: A1, B1 and on, then A2, B2 and on."""
+def parts_of(parts: Parts, extent: Box, rooms: Sequence[Room]) -> list[Part]:
+    """Return the parts that show a room, row by row from the top: A1, B1 and on, then A2, B2 and on."""
     width, height = extent.width / parts.columns, extent.height / parts.rows
-
-    def name(column: int, row: int) -> str:
-        inside = 0 <= column < parts.columns and 0 <= row < parts.rows
-        return f"{_letters(column)}{row + 1}" if inside else ""
-
-    found = []
+    boxes = [_box_of(room.outline) for room in rooms]
+    cells = {}
     for row, column in product(range(parts.rows), range(parts.columns)):
         left, top = extent.left + column * width, extent.top - row * height
-        found.append(
-            Part(
-                name(column, row),
-                Box(left, top - height, left + width, top),
-                name(column - 1, row),
-                name(column + 1, row),
-                name(column, row + 1),
-                name(column, row - 1),
-            )
-        )
-    return found
+        cell = Box(left, top - height, left + width, top)
+        if any(cell.overlaps(box) for box in boxes):
+            cells[column, row] = cell
+
+    def name(column: int, row: int) -> str:
+        return f"{_letters(column)}{row + 1}" if (column, row) in cells else ""
+
+    return [
+        Part(name(i, j), cell, name(i - 1, j), name(i + 1, j), name(i, j + 1), name(i, j - 1))
+        for (i, j), cell in cells.items()
+    ]
 
 
 def _letters(number: int) -> str:
@@ -117,7 +113,7 @@ def overview_groups(
 ) -> Iterator[Group]:
     """Yield the plan with nothing but outlines and numbers, and the key of the parts over it."""
     view = _view(layout, scale, extent)
-    divided = parts_of(parts, extent)
+    divided = parts_of(parts, extent, [zones.room for zones in answers])
     names = [(Label((Line(part.name, bold=True, height=HEADING),), framed=True), part) for part in divided]
     tags = number_tags(answers, view, [(label, view.box_on_paper(part.cell)) for label, part in names])
     yield Group("linework", tuple(linework_items(plan.linework, view, view.box)))
@@ -142,11 +138,13 @@ def part_groups(
     view = _view(layout, parts.scale, part.cell)
     cell, window = view.box_on_paper(part.cell), _window(view, part)
     shown = [zones for zones in answers if _box_of(view.to_paper(zones.room.outline)).overlaps(window)]
-    tags = placed_tags(shown, PlanView(window, view.scale, tuple(view.to_plan(window.centre))), custom)
+    lines = _match_lines(part, cell, window)
+    framed = PlanView(window, view.scale, view.to_plan(window.centre))
+    tags = placed_tags(shown, framed, custom, [line for _, line in lines])
     yield Group("linework", tuple(linework_items(plan.linework, view, window)))
     for group in _room_groups(shown, view, tags):
         yield Group(group.name, tuple(clipped(group.items, window)))
-    yield Group("parts", tuple(_match_lines(part, cell, window)))
+    yield Group("parts", tuple(_match_items(lines, cell)))
     words = f"Part {part.name}, {parts.scale.text} on {layout.paper.name}"
     yield Group("caption", (_caption(layout, words, tags),))
 
@@ -167,23 +165,30 @@ def _box_of(points: np.ndarray) -> Box:
     return Box(float(left), float(bottom), float(right), float(top))
 
 
-def _match_lines(part: Part, cell: Box, window: Box) -> Iterator[Item]:
-    """Yield the match lines, and beyond each the name of the part that goes on there."""
+def _match_lines(part: Part, cell: Box, window: Box) -> list[tuple[str, tuple[Point, Point]]]:
+    """Return the name of each part that goes on beyond a match line, and the line: left, right, below, above."""
+    return [
+        (name, line)
+        for name, line in (
+            (part.left, ((cell.left, window.bottom), (cell.left, window.top))),
+            (part.right, ((cell.right, window.bottom), (cell.right, window.top))),
+            (part.below, ((window.left, cell.bottom), (window.right, cell.bottom))),
+            (part.above, ((window.left, cell.top), (window.right, cell.top))),
+        )
+        if name
+    ]
+
+
+def _match_items(lines: Sequence[tuple[str, tuple[Point, Point]]], cell: Box) -> Iterator[Item]:
+    """Yield the match lines, and outside each, clear of the part, the name of the part that goes on there."""
     x, y = cell.centre
     out = OVERLAP + 2.0
-    if part.left:
-        yield Stroke(((cell.left, window.bottom), (cell.left, window.top)), MATCH_PEN)
-        yield _beside(part.left, (cell.left - out, y), pi / 2)
-    if part.right:
-        yield Stroke(((cell.right, window.bottom), (cell.right, window.top)), MATCH_PEN)
-        yield _beside(part.right, (cell.right + out + BODY, y), pi / 2)
-    if part.below:
-        yield Stroke(((window.left, cell.bottom), (window.right, cell.bottom)), MATCH_PEN)
-        yield _beside(part.below, (x, cell.bottom - out - BODY), 0.0)
-    if part.above:
-        yield Stroke(((window.left, cell.top), (window.right, cell.top)), MATCH_PEN)
-        yield _beside(part.above, (x, cell.top + out), 0.0)
-
-
-def _beside(name: str, at: tuple[float, float], angle: float) -> Item:
-    return Text(at, f"match line: part {name}", BODY, "middle", bold=True, angle=angle)
+    for name, line in lines:
+        yield Stroke(line, MATCH_PEN)
+        upright = line[0][0] == line[1][0]
+        beyond = line[0][0] > x if upright else line[0][1] > y
+        level = line[0][0] if upright else line[0][1]
+        # Text stands on its baseline, so on the right and below it needs its own height more.
+        level += out + (BODY if upright else 0.0) if beyond else -out - (0.0 if upright else BODY)
+        at, angle = ((level, y), pi / 2) if upright else ((x, level), 0.0)
+        yield Text(at, f"match line: part {name}", BODY, "middle", bold=True, angle=angle)

@@ -90,7 +90,7 @@ def _plan_pages(
     yield _Page(layout, scale.text, (*groups, table, _legend(layout, scale, custom)))
     if parts is None:
         return
-    for part in parts_of(parts, extent):
+    for part in parts_of(parts, extent, [zones.room for zones in answers]):
         groups = part_groups(plan, answers, parts, part, custom)
         yield _Page(parts.layout, parts.scale.text, (*groups, _legend(parts.layout, parts.scale, custom)))
 

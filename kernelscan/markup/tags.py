@@ -87,12 +87,16 @@ class _Place:
     middles: np.ndarray
 
 
-def placed_tags(answers: Sequence[RoomZones], view: PlanView, custom: Custom) -> Tags:
-    """Return every tag of the plan, none touching another, a symbol or a wall in conflict.
+def placed_tags(
+    answers: Sequence[RoomZones], view: PlanView, custom: Custom, lines: Sequence[tuple[Point, Point]] = ()
+) -> Tags:
+    """Return every tag of the plan, none touching another, a symbol, a wall in conflict or one of the lines given.
 
     A room too small for more than its number gets that first, and the letters of its points after it.
     """
     tags = Tags(view.box)
+    for line in lines:
+        tags.taken.add_line(*line)
     places = [_place(zones, view) for zones in answers]
     for zones in answers:
         _keep_marks_clear(zones, view, tags)
@@ -101,7 +105,8 @@ def placed_tags(answers: Sequence[RoomZones], view: PlanView, custom: Custom) ->
         cramped = not _has_room(place, custom, tags)
         placed = cramped and _place_inside(place, custom, tags)
         for letter, at, needed in _letters(place.zones, view):
-            _place_letter(letter, at, needed, place, tags)
+            if tags.taken.shows(at):
+                _place_letter(letter, at, needed, place, tags)
         if not placed and not _place_inside(place, custom, tags):
             waiting.append(place)
     outlines = np.concatenate([_edges(place.rings[0]) for place in places]) if places else np.empty((0, 4))
@@ -113,6 +118,9 @@ def placed_tags(answers: Sequence[RoomZones], view: PlanView, custom: Custom) ->
 def number_tags(answers: Sequence[RoomZones], view: PlanView, corners: Sequence[tuple[Label, Box]]) -> Tags:
     """Return labels in the upper left corners of boxes, and the numbers of the rooms as far as there is room."""
     tags = Tags(view.box)
+    for _, box in corners:
+        for start, end in zip(box.corners, box.corners[1:] + box.corners[:1], strict=True):
+            tags.taken.add_line(start, end)
     for label, box in corners:
         tags.put(
             label, Box(box.left + 1, box.top - 1 - label.height, box.left + 1 + label.width, box.top - 1)
@@ -238,7 +246,8 @@ def _place_outside(place: _Place, custom: Custom, outlines: np.ndarray, tags: Ta
     lines = (Line(zones.room.id, bold=True), *_name_lines(zones), _kernel_line(zones, custom))
     label = Label(lines, framed=True)
     second: tuple[Box, Point] | None = None
-    for foot in _feet(place, tags):
+    feet = _feet(place, tags)
+    for foot in feet:
         for box in boxes_around(foot, label, OUTSIDE, directions=24):
             if tags.taken.takes(box) and tags.taken.takes_line(foot, nearest_in(foot, box)):
                 if not _crosses(box, outlines):
@@ -247,13 +256,13 @@ def _place_outside(place: _Place, custom: Custom, outlines: np.ndarray, tags: Ta
                 second = second or (box, foot)
     if second is not None:
         tags.put(label, *second)
-        return
-    tags.missing.append(zones.room.id)
+    elif feet:
+        tags.missing.append(zones.room.id)
 
 
 def _feet(place: _Place, tags: Tags) -> list[Point]:
     """Return a few points of a room where the foot of a leader touches nothing."""
-    points = [_pair(middle) for middle in place.middles]
+    points = [point for point in map(_pair, place.middles) if tags.taken.shows(point)]
     free = [point for point in points if tags.taken.takes(Box(*point, *point).grown(0.6))]
     return (free or points)[:: max(1, len(free or points) // 4)]
 

@@ -44,10 +44,10 @@ class PlanView:
         (left, bottom), (right, top) = self.to_paper(np.array([box[:2], box[2:]]))
         return Box(float(left), float(bottom), float(right), float(top))
 
-    def to_plan(self, point: Point) -> np.ndarray:
-        """Return a point of the paper as ``(2,)`` metres of the plan."""
-        placed: np.ndarray = (np.array(point) - self.box.centre) / self.scale.mm_per_metre + self.middle
-        return placed
+    def to_plan(self, point: Point) -> Point:
+        """Return a point of the paper in metres of the plan."""
+        x, y = (np.array(point) - self.box.centre) / self.scale.mm_per_metre + self.middle
+        return float(x), float(y)
 
     def point(self, point: np.ndarray) -> Point:
         """Return one point of the plan on the paper."""
