@@ -1,15 +1,15 @@
 """What a lens takes in: its field from the sensor behind it, and what a tilted device sees of a level plane.
 
-Letters: ``w`` the sensor's width or height and ``f`` the focal length, both in millimetres; ``V`` the vertical field and
-``tilt`` how far its axis points below the horizon, both in radians; ``drop`` how far the plane lies below the lens,
-in metres.
+Letters: ``w`` the sensor's width or height and ``f`` the focal length, both in millimetres; ``V`` the vertical field
+and ``tilt`` how far its axis points below the horizon, both in radians; ``drop`` how far the plane lies below the
+lens, in metres.
 
-In section, through the axis, a device sees the rays that fall by ``tilt - V / 2`` to ``tilt + V / 2``. A ray that falls by
-an angle ``a`` between 0 and a right angle meets the plane at the horizontal distance ``drop / tan(a)``; one that does not
-fall never does, and one that falls straight down or backwards meets it under the lens. So the plane is seen from
-``drop / tan(tilt + V / 2)`` to ``drop / tan(tilt - V / 2)``, without a bound where ``tilt <= V / 2``. A plane above the lens
-is the same upside down. The edges of a pinhole's picture are straight lines across the axis, so that to the sides they are
-farther away by ``1 / cos`` of the bearing off the axis.
+In section, through the axis, a device sees the rays that fall by ``tilt - V / 2`` to ``tilt + V / 2``. A ray that
+falls by an angle ``a`` between 0 and a right angle meets the plane at the horizontal distance ``drop / tan(a)``; one
+that does not fall never does, and one that falls straight down or backwards meets it under the lens. So the plane is
+seen from ``drop / tan(tilt + V / 2)`` to ``drop / tan(tilt - V / 2)``, without a bound where ``tilt <= V / 2``. A plane
+above the lens is the same upside down. The edges of a pinhole's picture are straight lines across the axis, so that
+to the sides they are farther away by ``1 / cos`` of the bearing off the axis.
 
 Source of all formulas: the right-angled triangle; derived.
 """
@@ -20,7 +20,7 @@ from typing import Literal
 __all__ = ["NOTHING", "Projection", "field_of_view", "seen_of_plane"]
 
 Projection = Literal["pinhole", "equidistant"]
-"""How a lens spreads its pixels: evenly over a plane, as a drawing does, or evenly over the angle, as a fisheye does."""
+"""How a lens spreads its pixels: evenly over a plane, or evenly over the angle, as a fisheye does."""
 
 NOTHING = (inf, -inf)
 """The distances of a plane that is out of sight everywhere: from beyond all of them to before all of them."""
@@ -59,8 +59,8 @@ def seen_of_plane(drop: float, tilt: float, vertical_field: float) -> tuple[floa
     Returns
     -------
     tuple of float
-        The near and the far edge; the far edge is ``inf`` where nothing bounds it. ``NOTHING`` when the plane is in sight
-        nowhere.
+        The near and the far edge; the far edge is ``inf`` where nothing bounds it. ``NOTHING`` when the plane is
+        nowhere in sight.
     """
     if drop < 0:
         return seen_of_plane(-drop, -tilt, vertical_field)
