@@ -8,7 +8,13 @@ class KernelscanError(Exception):
 
 
 class InputError(KernelscanError):
-    """A drawing, a device file or an option cannot be used; the text says what, where and what to do."""
+    """A drawing, a device file or an option cannot be used; the text says what, where and what to do.
+
+    ``args`` are its lines, one for each fault that was found.
+    """
+
+    def __str__(self) -> str:
+        return "\n".join(self.args)
 
 
 class GeometryError(KernelscanError):
