@@ -5,6 +5,7 @@ the two apart. Each fault is one line that begins with the place of the key, suc
 from 1.
 """
 
+import re
 from collections.abc import Iterable, Mapping, Sequence, Set
 from difflib import get_close_matches
 from math import isfinite
@@ -72,15 +73,14 @@ class Table:
 
     def lengths(self, quantity: Quantity) -> tuple[tuple[str, float], ...]:
         """Return the patterns and lengths of a table whose name says the unit, such as ``obstacles_m``."""
-        found = []
-        for key in quantity.keys:
-            if (table := self.table(key)) is not None:
-                pairs = [
-                    (pattern, table._measure(quantity, key, value, pattern))
-                    for pattern, value in table._values.items()
-                ]
-                found += [(pattern, length) for pattern, length in pairs if length is not None]
-        return tuple(found)
+        tables = [(key, table) for key in quantity.keys if (table := self.table(key)) is not None]
+        return tuple(
+            (pattern, length)
+            for key, table in tables
+            for pattern, value in table._values.items()
+            if table._is_pattern(pattern)
+            and (length := table._measure(quantity, key, value, pattern)) is not None
+        )
 
     def whole_number(self, key: str) -> int | None:
         """Return a whole number above 0."""
@@ -135,7 +135,8 @@ class Table:
             return None
         if isinstance(value, dict):
             return Table(f"{self.place}.{_plain_key(key)}", value, self._faults)
-        self._refuse(key, f"a table of its own, [device.{key}]")
+        heading = re.sub(r"\[\d+\]", "", f"{self.place}.{key}")
+        self._refuse(key, f"a table of its own, [{heading}]")
         return None
 
     def require(self, key: str, example: object) -> None:
@@ -144,15 +145,20 @@ class Table:
             self.note(key, f"missing; expected for example {key} = {shown(example)}")
 
     def refuse_unknown(self, known: Sequence[str]) -> None:
-        """Note every key that is not known, with the nearest that is."""
+        """Note every key that is not known, with the nearest that is, or else where to look."""
         for key in self._values:
             if key not in known:
                 self.note(key, f"unknown key; {_nearest(key, known)}")
 
+    def _is_pattern(self, pattern: str) -> bool:
+        if not plain_text(pattern):
+            self.note(pattern, "an empty pattern fits nothing; name what to stay away from")
+        return bool(plain_text(pattern))
+
     def _measure(self, quantity: Quantity, key: str, value: object, place: str = "") -> float | None:
         number, expected = _finite(value), quantity.expected_in(key)
         if number is not None and quantity.allows(number):
-            if number == 0 or LEAST <= abs(number) <= MOST:
+            if abs(number) <= MOST and (abs(number) >= LEAST or quantity.allows(0.0)):
                 return number * quantity.units[key.removeprefix(quantity.name)]
             expected = f"a size between {LEAST:g} and {MOST:g}"
         self.note(place or key, f"got {shown(value)}, expected {expected}")
@@ -211,4 +217,5 @@ def _nearest(key: str, known: Sequence[str]) -> str:
     plain = key.strip().casefold()
     with_unit = [each for each in known if each.startswith(f"{plain}_")]
     near = with_unit or get_close_matches(plain, known, n=1)
-    return f"did you mean {near[0]}?" if near else "docs/devices.md lists them all"
+    usual = [each for each in known if (base := each.rpartition("_")[0] + "_m") not in known or each == base]
+    return f"did you mean {near[0]}?" if near else f"the keys are {', '.join(usual)}"
