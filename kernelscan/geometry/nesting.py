@@ -24,7 +24,7 @@ import numpy as np
 import numpy.typing as npt
 
 from kernelscan.geometry.contacts import edge_ends, meeting_edges, meeting_place
-from kernelscan.geometry.signs import orientation, orientations
+from kernelscan.geometry.signs import Point, orientation, orientations
 
 __all__ = ["first_fault_between", "side_of_ring"]
 
@@ -32,9 +32,11 @@ Floats = npt.NDArray[np.float64]
 Place = tuple[Fraction, Fraction]
 
 
-def side_of_ring(ring: Floats, point: Sequence[float]) -> int:
-    """Return +1 for a point of doubles inside a simple ring, 0 on it, -1 outside; exact."""
+def side_of_ring(ring: Floats, point: Point) -> int:
+    """Return +1 for a point inside a simple ring, 0 on it, -1 outside; exact, for doubles and rationals."""
     x, y = point
+    if isinstance(x, Fraction) or isinstance(y, Fraction):
+        return _side_of_rational(ring, (Fraction(x), Fraction(y)))
     p, q = edge_ends([ring])
     at_height = np.flatnonzero((np.minimum(p[:, 1], q[:, 1]) <= y) & (np.maximum(p[:, 1], q[:, 1]) >= y))
     p, q = p[at_height], q[at_height]
@@ -59,15 +61,17 @@ def first_fault_between(rings: Sequence[Floats]) -> str | None:
     fault = _fault_of_meetings(rings, touches)
     if fault is not None:
         return fault
-    pieces = [_pieces(rings, k, touches) for k in range(len(rings))]
-    boxes = [(ring.min(axis=0), ring.max(axis=0)) for ring in rings]
+    low, high = (np.array([extreme(ring, axis=0) for ring in rings]) for extreme in (np.min, np.max))
+    starts = np.cumsum([0, *(len(ring) for ring in rings)]).tolist()
     for k in range(1, len(rings)):
-        if not _lies(rings[0], pieces[k], 1):
-            return f"hole {k} is not inside the outline, near ({rings[k][0][0]:.9g}, {rings[k][0][1]:.9g})"
-        for other in range(1, len(rings)):
-            near = (boxes[k][0] <= boxes[other][1]).all() and (boxes[other][0] <= boxes[k][1]).all()
-            if other != k and near and not _lies(rings[other], pieces[k], -1):
-                return f"hole {k} lies in hole {other}, near ({rings[k][0][0]:.9g}, {rings[k][0][1]:.9g})"
+        middles = _middles(rings[k], starts[k], touches)
+        at = f"near ({rings[k][0][0]:.9g}, {rings[k][0][1]:.9g})"
+        if any(side_of_ring(rings[0], point) != 1 for point in middles):
+            return f"hole {k} is not inside the outline, {at}"
+        near = (low[1:] <= high[k]).all(axis=1) & (low[k] <= high[1:]).all(axis=1)
+        for other in (np.flatnonzero(near) + 1).tolist():
+            if other != k and any(side_of_ring(rings[other], point) != -1 for point in middles):
+                return f"hole {k} lies in hole {other}, {at}"
     return None
 
 
@@ -96,14 +100,12 @@ def _on_edge(p: Place, q: Place, c: Place) -> bool:
     return in_box and orientation(p, q, c) == 0
 
 
-def _pieces(rings: Sequence[Floats], k: int, touches: dict[int, set[Place]]) -> list[Place]:
-    """Return a point in the middle of each piece of ring k between its contacts, or one vertex if it has none."""
-    ring = rings[k]
-    start = sum(len(earlier) for earlier in rings[:k])
+def _middles(ring: Floats, start: int, touches: dict[int, set[Place]]) -> list[Point]:
+    """Return a point in the middle of each piece of a ring between its contacts, or one vertex if it has none."""
     touched = [i for i in range(len(ring)) if start + i in touches]
     if not touched:
-        return [_rational(ring[0])]
-    middles = []
+        return [ring[0].tolist()]
+    middles: list[Point] = []
     for i in touched:
         p, q = _rational(ring[i]), _rational(ring[(i + 1) % len(ring)])
         stops = sorted({p, q} | touches[start + i], key=lambda c: (c[0] - p[0]) ** 2 + (c[1] - p[1]) ** 2)
@@ -111,13 +113,7 @@ def _pieces(rings: Sequence[Floats], k: int, touches: dict[int, set[Place]]) -> 
     return middles
 
 
-def _lies(ring: Floats, middles: Sequence[Place], side: int) -> bool:
-    """Whether all the points lie strictly on that side of a ring, +1 inside and -1 outside."""
-    return all(_side_of_place(ring, place) == side for place in middles)
-
-
-def _side_of_place(ring: Floats, place: Place) -> int:
-    """Return what :func:`side_of_ring` does, for a rational point."""
+def _side_of_rational(ring: Floats, place: Place) -> int:
     x, y = place
     p, q = edge_ends([ring])
     below, above = float(np.nextafter(float(y), -np.inf)), float(np.nextafter(float(y), np.inf))

@@ -163,7 +163,9 @@ def test_the_side_of_a_ring_agrees_with_winding_in_rational_arithmetic(seed: int
     rng = np.random.default_rng(seed)
     ring = as_ring(grown_ring(rng, 14, 8))
     for point in [*rng.integers(-1, 9, (30, 2)), *rng.integers(0, 16, (30, 2)) / 2, *ring]:
-        assert side_of_ring(ring, point.tolist()) == winding_side(ring, point)
+        found = side_of_ring(ring, point.astype(float).tolist())
+        assert found == winding_side(ring, point)
+        assert side_of_ring(ring, [Fraction(x) for x in point.tolist()]) == found
 
 
 def winding_side(ring: Floats, point: Floats) -> int:
