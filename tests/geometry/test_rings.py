@@ -5,7 +5,8 @@ from fractions import Fraction
 
 import numpy as np
 import pytest
-from geometry.grown_rooms import star
+import shapely
+from geometry.grown_rooms import Floats, grown_ring, star
 
 from kernelscan.errors import GeometryError
 from kernelscan.geometry.rings import as_ring, as_rings, signed_area
@@ -214,6 +215,31 @@ def test_a_hole_through_a_corner_of_the_outline_is_refused() -> None:
         as_rings(ELL, [[(2, 2), (3, 3), (4, 4), (2, 2.5)]])
     with pytest.raises(GeometryError):
         as_rings(ELL, [[(3, 3), (5, 4), (4, 5)]])
+
+
+@pytest.mark.parametrize("seed", range(10))
+def test_random_holes_are_judged_as_the_overlay_of_their_areas_has_it(seed: int) -> None:
+    rng = np.random.default_rng(seed)
+    verdicts = []
+    for _ in range(100):
+        outline = grown_ring(rng, 6, 9)
+        holes = [grown_ring(rng, 3, 3) + rng.integers(0, 7, 2) for _ in range(2)]
+        room, *columns = (shapely.Polygon(ring) for ring in (outline, *holes))
+        verdicts.append(
+            all(room.covers(column) for column in columns)
+            and columns[0].intersection(columns[1]).length == 0
+            and all(room.exterior.intersection(column.exterior).length == 0 for column in columns)
+        )
+        assert accepted(outline, holes) == verdicts[-1]
+    assert set(verdicts) == {False, True}
+
+
+def accepted(outline: Floats, holes: list[Floats]) -> bool:
+    try:
+        as_rings(outline, holes)
+    except GeometryError:
+        return False
+    return True
 
 
 def test_many_columns_far_from_the_origin() -> None:

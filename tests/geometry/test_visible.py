@@ -6,10 +6,13 @@ from itertools import pairwise
 import numpy as np
 import pytest
 from geometry import visible_oracle
-from geometry.grown_rooms import Floats, grown_room
+from geometry.grown_rooms import Floats, grown_room, star
 
 from kernelscan.errors import GeometryError
+from kernelscan.geometry.kernel import kernel_of_rings
+from kernelscan.geometry.nesting import side_of_ring
 from kernelscan.geometry.rings import as_ring, as_rings, signed_area
+from kernelscan.geometry.signs import orientations
 from kernelscan.geometry.visible import View, view_from, visible_from, visible_region, visible_regions
 
 SQUARE = [(0, 0), (10, 0), (10, 10), (0, 10)]
@@ -218,6 +221,36 @@ def test_from_every_point_of_the_kernel_the_whole_room_is_seen() -> None:
         assert view.wall_fraction == 1
         assert view.floor_fraction == 1
     assert view_from(as_rings(ELL), (3.0000000000000004, 2)).floor_fraction < 1
+
+
+@pytest.mark.parametrize("seed", range(10))
+def test_the_whole_room_is_seen_just_from_the_inner_side_of_every_wall(seed: int) -> None:
+    rng = np.random.default_rng(8000 + seed)
+    rings = grown_room(rng, int(rng.integers(4, 9)), 0, 6)
+    verdicts = []
+    for eye in np.argwhere(np.ones((11, 11))) / 2:
+        if side_of_ring(rings[0], eye.tolist()) < 0:
+            continue
+        view = view_from(rings, eye)
+        verdicts.append((orientations(rings[0], np.roll(rings[0], -1, axis=0), eye) >= 0).all())
+        assert (view.wall_fraction == 1) == verdicts[-1]
+        assert (view.floor_fraction > 1 - 1e-12) == verdicts[-1]
+        assert (
+            np.unique(view.walls, axis=0).tolist() == [[0, k] for k in range(len(rings[0]))]
+            or not verdicts[-1]
+        )
+    assert verdicts
+
+
+@pytest.mark.parametrize("seed", range(10))
+def test_the_middle_of_a_kernel_sees_every_wall(seed: int) -> None:
+    rings = as_rings(star(np.random.default_rng(9000 + seed), 60))
+    kernel = kernel_of_rings(rings)
+    assert kernel.kind == "area"
+    view = view_from(rings, kernel.vertices.mean(axis=0))
+    assert view.wall_fraction == 1
+    assert view.floor_fraction == pytest.approx(1, abs=1e-13)
+    assert view.spans.tolist() == [[0, 1]] * 60
 
 
 # Hostile
