@@ -9,9 +9,10 @@ from typing import Annotated
 import typer
 from typer.exceptions import TyperException
 
+from kernelscan.cli.devices import devices
 from kernelscan.cli.rooms import rooms
 from kernelscan.cli.zones import zones
-from kernelscan.errors import CertificateError, KernelscanError
+from kernelscan.errors import CertificateError, InputError, KernelscanError
 
 __all__ = ["app", "main", "run"]
 
@@ -46,6 +47,7 @@ def _program(
 
 app.command()(rooms)
 app.command()(zones)
+app.command()(devices)
 
 
 def run(arguments: Sequence[str]) -> int:
@@ -57,15 +59,17 @@ def run(arguments: Sequence[str]) -> int:
     except typer.Exit as end:
         return end.exit_code
     except TyperException as error:
-        return _complain(f"{error.format_message()} See kernelscan --help.", WRONG_INPUT)
+        return _complain(f"{error.format_message()} See kernelscan --help.", code=WRONG_INPUT)
     except CertificateError as error:
         return _complain(
-            f"a fault of the program, please report it: {error}; nothing was written", PROGRAM_FAULT
+            f"a fault of the program, please report it: {error}; nothing was written", code=PROGRAM_FAULT
         )
+    except InputError as error:
+        return _complain(*error.args, code=WRONG_INPUT)
     except KernelscanError as error:
-        return _complain(str(error), WRONG_INPUT)
+        return _complain(str(error), code=WRONG_INPUT)
     except (KeyboardInterrupt, EOFError):
-        return _complain("stopped", INTERRUPTED)
+        return _complain("stopped", code=INTERRUPTED)
     except BrokenPipeError:
         # The reader of standard output has left; whatever is still buffered has nowhere to go.
         os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
@@ -73,7 +77,7 @@ def run(arguments: Sequence[str]) -> int:
     except Exception as error:
         if "KERNELSCAN_DEBUG" in os.environ:
             raise
-        return _complain(f"a fault of the program, please report it: {_brief(error)}", PROGRAM_FAULT)
+        return _complain(f"a fault of the program, please report it: {_brief(error)}", code=PROGRAM_FAULT)
     return DONE
 
 
@@ -85,8 +89,10 @@ def main() -> None:
     sys.exit(run(sys.argv[1:]))
 
 
-def _complain(message: str, code: int) -> int:
-    print("kernelscan: " + " ".join(message.split()), file=sys.stderr)
+def _complain(*messages: str, code: int) -> int:
+    """Print each message as one line, whatever stands in it."""
+    for message in messages:
+        print("kernelscan: " + " ".join(message.split()), file=sys.stderr)
     return code
 
 
