@@ -22,6 +22,8 @@ class Tolerances:
         A strip narrower than this is the body of a wall, not a room.
     door_gap
         A bare gap between two wall ends that face each other is closed up to this width.
+    least_closed
+        Where closed rooms account for less than this part of the walls' length, the plan is open and has no rooms.
     widest_opening
         A gap is closed up to this width where a door or window is drawn in it.
     smooth
@@ -34,5 +36,6 @@ class Tolerances:
     smallest_room: float = 1.5
     thickest_wall: float = 0.6
     door_gap: float = 1.3
+    least_closed: float = 0.1
     widest_opening: float = 6.0
     smooth: float = radians(20)

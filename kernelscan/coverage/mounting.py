@@ -14,17 +14,18 @@ from math import atan2, pi
 
 import numpy as np
 
+from kernelscan.coverage.depth import deepest_along, line_depths
+from kernelscan.coverage.surfaces import corners, joint_turns, solid_spans, walls_along
 from kernelscan.coverage.zones import CornerZone, FloorZone, RoomZones, Spot, WallZone
+from kernelscan.geometry.halfplanes import wall_half_planes
+from kernelscan.geometry.intersection import intersect
 from kernelscan.geometry.kernel import Kernel, kernel_of_rings
 from kernelscan.geometry.linear_programs import deepest_point
-from kernelscan.geometry.stretches import parts_within, side_signs, vertices_within
+from kernelscan.geometry.stretches import parts_within, vertices_within
 from kernelscan.plan import Room, WallRef
 from kernelscan.tolerances import Tolerances
 
 __all__ = ["room_zones"]
-
-PLACES = 17
-"""Points at which a stretch is tried at a time, when the best of it is sought."""
 
 
 def room_zones(room: Room, tolerances: Tolerances = Tolerances()) -> RoomZones:
@@ -33,37 +34,21 @@ def room_zones(room: Room, tolerances: Tolerances = Tolerances()) -> RoomZones:
     if kernel.kind == "empty":
         return RoomZones(room, kernel, None, (), (), ())
     lines = np.array([room.wall_ends(WallRef(*wall)) for wall in kernel.walls.tolist()])
-    joints = _joint_turns(room.outline)
-    walls = tuple(_wall_zones(room, lines, np.abs(joints) < tolerances.smooth))
-    corners = tuple(_corner_zones(room, lines, np.abs(joints) >= tolerances.smooth))
+    walls = tuple(_wall_zones(room, lines, np.abs(joint_turns(room.outline)) < tolerances.smooth))
+    corner_zones = tuple(_corner_zones(room, lines, tolerances.smooth))
     best = (
         _ceiling_spot(room, kernel, lines),
         _best(_wall_spot(room, zone, lines) for zone in walls),
-        _best(zone.spot for zone in corners if zone.spot.field_of_view < pi),
+        _best(zone.spot for zone in corner_zones if zone.spot.field_of_view < pi),
     )
     recommended = tuple(spot for spot in best if spot is not None)
-    return RoomZones(room, kernel, FloorZone(kernel.vertices), walls, corners, recommended)
-
-
-def _joint_turns(ring: np.ndarray) -> np.ndarray:
-    """The turn at each vertex, ``(n,)`` radians: positive where the room's corner is convex."""
-    ahead = np.roll(ring, -1, axis=0) - ring
-    back = ring - np.roll(ring, 1, axis=0)
-    turns: np.ndarray = np.arctan2(
-        back[:, 0] * ahead[:, 1] - back[:, 1] * ahead[:, 0], (back * ahead).sum(axis=1)
-    )
-    return turns
-
-
-def _opened(room: Room) -> set[int]:
-    """The outline's edges that are openings: nothing is fixed to them."""
-    return {opening.wall.edge for opening in room.openings if opening.wall.ring == 0}
+    return RoomZones(room, kernel, FloorZone(kernel.vertices), walls, corner_zones, recommended)
 
 
 def _wall_zones(room: Room, lines: np.ndarray, smooth: np.ndarray) -> Iterator[WallZone]:
     """The stretches of the outline in the kernel, joined where one wall runs smoothly into the next."""
-    opened, ring = _opened(room), room.outline
-    parts = [part for part in parts_within(ring, lines) if part[0] not in opened]
+    ring = room.outline
+    parts = [part for edge, ends in parts_within(ring, lines) for part in _solid_parts(room, edge, ends)]
     joined = [_runs_on(parts[k - 1], part, ring, smooth) for k, part in enumerate(parts)]
     starts = [k for k, runs_on in enumerate(joined) if not runs_on] or [0]
     for start, end in pairwise([*starts, starts[0] + len(parts)]):
@@ -71,6 +56,22 @@ def _wall_zones(room: Room, lines: np.ndarray, smooth: np.ndarray) -> Iterator[W
         if run:
             path = np.array([run[0][1][0], *(ends[1] for _, ends in run)])
             yield WallZone(tuple(WallRef(0, edge) for edge, _ in run), path)
+
+
+def _solid_parts(room: Room, edge: int, ends: np.ndarray) -> Iterator[tuple[int, np.ndarray]]:
+    """The parts of a stretch of one edge that are no opening; a stretch without openings stays as it is."""
+    spans = solid_spans(room, edge)
+    if spans == [(0.0, 1.0)]:
+        yield edge, ends
+        return
+    start, end = room.wall_ends(WallRef(0, edge))
+    way = end - start
+    first, last = ((ends - start) @ way / (way @ way)).tolist()
+    for low, high in spans:
+        if max(low, first) < min(high, last):
+            part = np.array([start + max(low, first) * way, start + min(high, last) * way])
+            part[0], part[1] = ends[0] if low <= first else part[0], ends[1] if high >= last else part[1]
+            yield edge, part
 
 
 def _runs_on(
@@ -84,40 +85,47 @@ def _runs_on(
     )
 
 
-def _corner_zones(room: Room, lines: np.ndarray, sharp: np.ndarray) -> Iterator[CornerZone]:
+def _corner_zones(room: Room, lines: np.ndarray, smooth: float) -> Iterator[CornerZone]:
     """The outline's corners in the kernel whose two walls can carry a device."""
-    opened, count = _opened(room), len(room.outline)
-    for corner in np.flatnonzero(sharp & vertices_within(room.outline, lines)).tolist():
-        before = (corner - 1) % count
-        if not opened & {before, corner}:
-            yield CornerZone(_corner_spot(room, before, corner, lines))
+    within = vertices_within(room.outline, lines)
+    for corner in corners(room, smooth):
+        if within[corner.walls[1].edge]:
+            clearance = _clearance(corner.point, lines[~walls_along(room, corner.walls, lines)])
+            farthest = _farthest(room, corner.point)
+            spot = Spot(
+                "corner", corner.point, corner.angle, corner.bearing, farthest, clearance, corner.walls
+            )
+            yield CornerZone(spot)
 
 
 def _ceiling_spot(room: Room, kernel: Kernel, lines: np.ndarray) -> Spot:
-    is_area = kernel.kind == "area"
-    point = deepest_point([kernel.vertices]).point if is_area else kernel.vertices.mean(axis=0)
+    point = _deepest(kernel.vertices) if kernel.kind == "area" else kernel.vertices.mean(axis=0)
     return Spot("ceiling", point, 2 * pi, None, _farthest(room, point), _clearance(point, lines), ())
 
 
-def _corner_spot(room: Room, before: int, after: int, lines: np.ndarray) -> Spot:
-    ring = room.outline
-    point, walls = ring[after], (WallRef(0, before), WallRef(0, after))
-    ahead, back = ring[(after + 1) % len(ring)] - point, ring[before] - point
-    heading = atan2(ahead[1], ahead[0])
-    angle = (atan2(back[1], back[0]) - heading) % (2 * pi)
-    clearance = _clearance(point, _lines_but(lines, room, walls))
-    return Spot("corner", point, angle, heading + angle / 2, _farthest(room, point), clearance, walls)
+def _deepest(vertices: np.ndarray) -> np.ndarray:
+    """The deepest point of a convex area; where a long area has many, the middle of them."""
+    deepest = deepest_point([vertices])
+    inner = intersect(wall_half_planes([vertices], deepest.radius * (1 - 1e-9))).vertices
+    return inner.mean(axis=0) if len(inner) else deepest.point
 
 
 def _wall_spot(room: Room, zone: WallZone, lines: np.ndarray) -> Spot:
     """The spot of a stretch that may be missed by most: never by more than the way to the stretch's nearer end."""
-    others = _lines_but(lines, room, zone.walls)
-    lengths = np.hypot(*np.diff(zone.path, axis=0).T)
+    others = lines[~walls_along(room, zone.walls, lines)]
     if len(others) == 0:
-        # The room is round and the whole of its wall is one zone: any place is as good as another.
-        wall, point, clearance = zone.walls[0], zone.path[:2].mean(axis=0), float(lengths.sum() / 2)
+        # The room is round and all of its wall is one zone: any place is as good as another, and the device may be
+        # off by as much as leaves it on its own side of the room.
+        wall, point, clearance = (
+            zone.walls[0],
+            zone.path[:2].mean(axis=0),
+            deepest_point([room.outline]).radius,
+        )
     else:
-        found = (_safest_along(ends, others) for ends in zip(zone.path, zone.path[1:], strict=False))
+        found = (
+            deepest_along(start, end, lambda points: line_depths(points, others).min(axis=1))
+            for start, end in pairwise(zone.path)
+        )
         clearance, point, wall = max(
             ((_clearance(point, others), point, wall) for point, wall in zip(found, zone.walls, strict=True)),
             key=lambda each: round(each[0], 6),
@@ -127,44 +135,9 @@ def _wall_spot(room: Room, zone: WallZone, lines: np.ndarray) -> Spot:
     return Spot("wall", point, pi, bearing, _farthest(room, point), clearance, (wall,))
 
 
-def _lines_but(lines: np.ndarray, room: Room, walls: Iterable[WallRef]) -> np.ndarray:
-    """The lines that do not run along any of the walls in its own direction."""
-    for wall in walls:
-        ends = np.array(room.wall_ends(wall))
-        along = (side_signs(ends, lines) == 0).all(axis=0)
-        same_way = ((lines[:, 1] - lines[:, 0]) @ (ends[1] - ends[0])) > 0
-        lines = lines[~(along & same_way)]
-    return lines
-
-
 def _clearance(point: np.ndarray, lines: np.ndarray) -> float:
     """The distance from a point of the kernel to the nearest of some lines that bound it."""
-    return max(0.0, float(_depths(point[None], lines).min()))
-
-
-def _depths(points: np.ndarray, lines: np.ndarray) -> np.ndarray:
-    """How far left of each line each point lies, ``(m, k)`` metres."""
-    ways = lines[:, 1] - lines[:, 0]
-    ways = ways / np.hypot(ways[:, 0], ways[:, 1])[:, None]
-    offsets = points[:, None] - lines[None, :, 0]
-    depths: np.ndarray = ways[:, 0] * offsets[..., 1] - ways[:, 1] * offsets[..., 0]
-    return depths
-
-
-def _safest_along(ends: tuple[np.ndarray, np.ndarray], lines: np.ndarray) -> np.ndarray:
-    """The point between two ends whose nearest line is farthest, to a billionth of the way; the depth is concave."""
-    low, high = 0.0, 1.0
-    while high - low > 1e-9:
-        places = np.linspace(low, high, PLACES)
-        depths = _depths(ends[0] + places[:, None] * (ends[1] - ends[0]), lines).min(axis=1)
-        # On a flat top the middle is the best: it leaves the most room to slide.
-        top = np.flatnonzero(depths >= depths.max() - 1e-9)
-        if len(top) > 2:
-            low = high = float(places[top].mean())
-        else:
-            low, high = float(places[max(top[0] - 1, 0)]), float(places[min(top[-1] + 1, PLACES - 1)])
-    point: np.ndarray = ends[0] + (low + high) / 2 * (ends[1] - ends[0])
-    return point
+    return max(0.0, float(line_depths(point[None], lines).min()))
 
 
 def _farthest(room: Room, point: np.ndarray) -> float:

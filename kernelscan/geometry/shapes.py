@@ -197,9 +197,13 @@ def faces_between(starts: Floats, ends: Floats, grid: float) -> list[Patch]:
     """
     noded = shapely.union_all(_lines(starts, ends), grid_size=grid)
     return [
-        Patch(shapely.get_coordinates(face.exterior)[:-1], tuple(shapely.get_coordinates(h)[:-1] for h in face.interiors))
+        Patch(_points(face.exterior), tuple(_points(hole) for hole in face.interiors))
         for face in shapely.get_parts(shapely.polygonize([noded]))
     ]
+
+
+def _points(ring: shapely.LinearRing) -> Floats:
+    return np.asarray(shapely.get_coordinates(ring)[:-1])
 
 
 def lines_near(points: Floats, starts: Floats, ends: Floats, distance: float) -> tuple[Indices, Indices]:

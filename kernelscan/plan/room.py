@@ -38,11 +38,16 @@ class Obstacle:
 
 @dataclass(frozen=True, slots=True)
 class Opening:
-    """A wall edge that is a door, a window or a bare gap: it bounds the room, but carries no device."""
+    """A door, a window or a bare gap in a wall: it bounds the room, but carries no device.
+
+    ``span`` says where along its wall it lies, 0 at the wall's first vertex and 1 at its second; ``width`` is in
+    metres.
+    """
 
     wall: WallRef
     kind: OpeningKind
     width: float
+    span: tuple[float, float] = (0.0, 1.0)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -60,7 +65,7 @@ class Room:
     outline
         ``(n, 2)`` counter-clockwise ring in metres.
     obstacles, openings
-        What stands in the room, and the edges that are doors, windows or gaps.
+        What stands in the room, and the doors, windows and gaps in its walls.
     source
         Layer and handle of the outline.
     """
@@ -97,3 +102,9 @@ class Room:
         """Return the two ends of a wall, each ``(2,)`` in metres, in the ring's own direction."""
         ring = self.rings[wall.ring]
         return ring[wall.edge], ring[(wall.edge + 1) % len(ring)]
+
+    def opening_ends(self, opening: Opening) -> np.ndarray:
+        """Return the two ends of an opening, ``(2, 2)`` in metres, in the ring's own direction."""
+        start, end = self.wall_ends(opening.wall)
+        low, high = opening.span
+        return np.array([start + low * (end - start), start + high * (end - start)])

@@ -78,11 +78,12 @@ class ZonesEntry(TypedDict):
 
 
 class OpeningEntry(TypedDict):
-    """A wall that is a door, a window or a gap."""
+    """A door, a window or a gap, and where along its wall it lies, from 0 to 1."""
 
     wall: Wall
     kind: str
     width: float
+    span: list[float]
 
 
 class RoomEntry(TypedDict):
@@ -174,7 +175,12 @@ def _room(room: Room) -> RoomEntry:
         "holes": [_positions(hole) for hole in room.holes],
         "area": room.area,
         "openings": [
-            {"wall": list(opening.wall), "kind": opening.kind, "width": opening.width}
+            {
+                "wall": list(opening.wall),
+                "kind": opening.kind,
+                "width": opening.width,
+                "span": list(opening.span),
+            }
             for opening in room.openings
         ],
     }

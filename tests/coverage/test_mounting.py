@@ -124,7 +124,7 @@ def test_a_round_room_is_one_stretch_without_corners():
     spots = best(zones)
     assert spots["ceiling"].point == pytest.approx([0, 0], abs=1e-9)
     assert spots["ceiling"].tolerance == pytest.approx(3 * cos(pi / 120))
-    assert spots["wall"].tolerance == pytest.approx(zones.walls[0].length / 2)
+    assert spots["wall"].tolerance == pytest.approx(3 * cos(pi / 120))
 
 
 @pytest.mark.parametrize("seed", range(60))
