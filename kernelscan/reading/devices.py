@@ -43,8 +43,8 @@ from kernelscan.reading.toml_table import Table, shown
 
 __all__ = ["read_devices"]
 
-LARGEST_FILE = 4_000_000
-"""Bytes; a device is some hundred."""
+LARGEST_FILE = 250_000
+"""Bytes; a device is some hundreds."""
 
 
 def read_devices(path: Path | str) -> tuple[Device, ...]:

@@ -21,6 +21,9 @@ Word = TypeVar("Word", bound=str)
 LEAST, MOST = 1e-9, 1_000_000_000
 """Sizes beyond these are slips; between them no formula overflows."""
 
+LONGEST = 60
+"""Signs that are shown of what stands in the file."""
+
 
 class Table:
     """A table, its place in the file, and the list to which its faults go.
@@ -173,12 +176,12 @@ def shown(value: object) -> str:
     if isinstance(value, bool):
         return str(value).lower()
     if isinstance(value, str):
-        return f'"{plain_text(value, 60)}"'
+        return f'"{plain_text(value, LONGEST)}"'
     if isinstance(value, list):
-        return plain_text(f"[{', '.join(shown(each) for each in value)}]", 60)
+        return plain_text(f"[{', '.join(shown(each) for each in value)}]", LONGEST)
     if isinstance(value, dict):
         return "a table"
-    return plain_text(_digits(value), 60)
+    return plain_text(_digits(value), LONGEST)
 
 
 def _digits(value: object) -> str:
@@ -209,12 +212,12 @@ def _listed(words: Iterable[str]) -> str:
 
 def _plain_key(key: str) -> str:
     bare = key and all(sign.isascii() and (sign.isalnum() or sign in "_-") for sign in key)
-    return key if bare else shown(key)
+    return key if bare and len(key) <= LONGEST else shown(key)
 
 
 def _nearest(key: str, known: Sequence[str]) -> str:
     """What may have been meant: the same name with a unit, a name spelt much the same, or else any."""
-    plain = key.strip().casefold()
+    plain = key[:LONGEST].strip().casefold()
     with_unit = [each for each in known if each.startswith(f"{plain}_")]
     near = with_unit or get_close_matches(plain, known, n=1)
     usual = [each for each in known if (base := each.rpartition("_")[0] + "_m") not in known or each == base]

@@ -421,6 +421,11 @@ def test_a_number_of_hundreds_of_digits(faults):
     assert len(line) < 150
 
 
+def test_keys_without_end_are_cut(faults):
+    (line,) = faults(described(**{"k" * 5000: "1"}))
+    assert len(line) < 800
+
+
 @pytest.mark.parametrize(
     ("raw", "words"),
     [
@@ -430,7 +435,7 @@ def test_a_number_of_hundreds_of_digits(faults):
         ),
         ("[[device]]".encode("utf-16"), "line 1 is not UTF-8 text"),
         (b"\x00" * 100, "is not TOML"),
-        (b"#" * (LARGEST_FILE + 1), "over 4,000,000 bytes is no device file"),
+        (b"#" * (LARGEST_FILE + 1), "over 250,000 bytes is no device file"),
     ],
 )
 def test_bytes_that_are_no_device_file(tmp_path, raw, words):
