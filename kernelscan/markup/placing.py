@@ -87,8 +87,8 @@ def _cells(box: Box) -> Iterator[tuple[int, int]]:
             yield column, row
 
 
-def inner_points(rings: tuple[np.ndarray, ...], count: int = 16) -> np.ndarray:
-    """Return points inside an area, ``(m, 2)``, the one farthest from its border first.
+def inner_points(rings: tuple[np.ndarray, ...], count: int = 16) -> tuple[np.ndarray, np.ndarray]:
+    """Return points inside an area, ``(m, 2)``, the one farthest from its border first, and these distances, ``(m,)``.
 
     A lattice of ``count`` by ``count`` points over the area's box, kept where the even-odd rule says inside. For an
     area so thin that the lattice misses it, the middle of its widest chord at mid-height.
@@ -101,9 +101,10 @@ def inner_points(rings: tuple[np.ndarray, ...], count: int = 16) -> np.ndarray:
     starts, ends = _edges(rings)
     inside = lattice[_even_odd(lattice, starts, ends)]
     if not len(inside):
-        return _widest_chord_middle(rings, starts, ends)[None]
-    ordered: np.ndarray = inside[np.argsort(-_clearance(inside, starts, ends), kind="stable")]
-    return ordered
+        inside = _widest_chord_middle(rings, starts, ends)[None]
+    clearance = _clearance(inside, starts, ends)
+    order = np.argsort(-clearance, kind="stable")
+    return inside[order], clearance[order]
 
 
 def boxes_inside(rings: tuple[np.ndarray, ...], boxes: np.ndarray) -> np.ndarray:

@@ -80,11 +80,12 @@ class Tags:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class _Place:
-    """A room on the paper: its answer, its rings in millimetres, and points for the middle of its tag."""
+    """A room on the paper: its answer, its rings, points for the middle of its tag and how far they are from walls."""
 
     zones: RoomZones
     rings: tuple[np.ndarray, ...]
     middles: np.ndarray
+    clearance: np.ndarray
 
 
 def placed_tags(
@@ -136,7 +137,7 @@ def number_tags(answers: Sequence[RoomZones], view: PlanView, corners: Sequence[
 
 def _place(zones: RoomZones, view: PlanView) -> _Place:
     rings = tuple(view.to_paper(ring) for ring in zones.room.rings)
-    return _Place(zones, rings, inner_points(rings))
+    return _Place(zones, rings, *inner_points(rings))
 
 
 def _keep_marks_clear(zones: RoomZones, view: PlanView, tags: Tags) -> None:
@@ -224,7 +225,8 @@ def _has_room(place: _Place, custom: Custom, tags: Tags) -> bool:
 def _inner_boxes(place: _Place, label: Label, border: np.ndarray) -> Iterator[Box]:
     """Yield boxes for a label that lie in the room with a border around them, the roomiest places first."""
     half = np.array([label.width, label.height]) / 2
-    boxes = np.column_stack([place.middles - half, place.middles + half])
+    middles = place.middles[place.clearance >= half.min() + border[2]]
+    boxes = np.column_stack([middles - half, middles + half])
     for sides in boxes[boxes_inside(place.rings, boxes + border)]:
         yield Box(*(float(side) for side in sides))
 

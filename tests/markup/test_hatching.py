@@ -5,7 +5,7 @@ from math import dist, radians, sin
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from kernelscan.markup.hatching import hatch_lines
@@ -24,6 +24,7 @@ def test_level_lines_of_a_square() -> None:
     assert all(dist(*line) == 10 for line in lines)
 
 
+@settings(deadline=None)
 @given(st.floats(0, 180), st.floats(0.3, 3))
 def test_length_times_spacing_is_the_area(angle: float, spacing: float) -> None:
     # The sum over the lattice is the midpoint rule for the area; its error is at most about one chord at each end.

@@ -4,7 +4,7 @@ from itertools import combinations
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 from markup.cases import POINT, L, U, classics, floor, moved, plan_of
 
@@ -77,12 +77,14 @@ def test_a_box_around_a_column_is_not_inside() -> None:
 @pytest.mark.parametrize("ring", [L, U, POINT, [(0, 0), (100, 0.001), (100, 0.002), (0, 0.001)]])
 def test_inner_points_are_inside(ring: list) -> None:
     array = np.array(ring, dtype=float)
-    for x, y in inner_points((array,)):
+    points, clearance = inner_points((array,))
+    assert clearance.tolist() == sorted(clearance, reverse=True)
+    for x, y in points:
         assert boxes_inside((array,), np.array([(x, y, x, y)]))[0]
 
 
 def view_of(scale: float) -> PlanView:
-    return PlanView(Box(-300, -300, 300, 300), Scale(scale, f"1:{scale:g}"), (7.5, 7.0))
+    return PlanView(Box(-1000, -1000, 1000, 1000), Scale(scale, f"1:{scale:g}"), (7.5, 7.0))
 
 
 @pytest.mark.parametrize("scale", [20, 50, 100, 200, 500])

@@ -1,7 +1,7 @@
 """Widths of text, cutting and wrapping."""
 
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from kernelscan.markup.metrics import CAP_HEIGHT, em_width, font_size, text_width
@@ -33,6 +33,7 @@ def test_what_fits_is_not_cut_and_what_is_cut_says_so() -> None:
     assert cut_to("W", 1, 2.5) == "…"
 
 
+@settings(deadline=None)
 @given(st.text(st.characters(codec="utf-8"), max_size=200), st.floats(15, 100), st.integers(1, 5))
 def test_wrapped_lines_fit_and_lose_nothing_but_space(text: str, width: float, most: int) -> None:
     lines = wrapped(text, width, 2.5)
@@ -44,6 +45,7 @@ def test_wrapped_lines_fit_and_lose_nothing_but_space(text: str, width: float, m
     assert few == lines or few[-1].endswith("…")
 
 
+@settings(deadline=None)
 @given(st.text(max_size=300))
 def test_clean_text_is_one_short_line(text: str) -> None:
     clean = clean_text(text)
