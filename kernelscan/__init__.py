@@ -1,6 +1,6 @@
 """Find where one camera or line-of-sight sensor sees every wall of a room.
 
-``read_plan`` turns a DXF into rooms, ``visibility_kernel`` gives the points that see every wall of one,
+``read_plan`` turns a DXF into rooms, ``read_devices`` a device file into devices, ``visibility_kernel`` gives the points that see every wall of one,
 ``verify_kernel`` checks such an answer exactly, and ``visible_region`` gives what one point sees.
 """
 
@@ -13,17 +13,19 @@ if TYPE_CHECKING:
     from kernelscan.geometry.certificate import verify_kernel
     from kernelscan.geometry.kernel import Kernel, visibility_kernel
     from kernelscan.geometry.visible import visible_region
-    from kernelscan.plan import Plan, Room
-    from kernelscan.reading import read_plan
+    from kernelscan.plan import Device, Plan, Room
+    from kernelscan.reading import read_devices, read_plan
 
 __all__ = [
     "CertificateError",
+    "Device",
     "GeometryError",
     "InputError",
     "Kernel",
     "KernelscanError",
     "Plan",
     "Room",
+    "read_devices",
     "read_plan",
     "verify_kernel",
     "visibility_kernel",
@@ -31,9 +33,11 @@ __all__ = [
 ]
 
 _HOMES = {
+    "Device": "kernelscan.plan",
     "Kernel": "kernelscan.geometry.kernel",
     "Plan": "kernelscan.plan",
     "Room": "kernelscan.plan",
+    "read_devices": "kernelscan.reading",
     "read_plan": "kernelscan.reading",
     "verify_kernel": "kernelscan.geometry.certificate",
     "visibility_kernel": "kernelscan.geometry.kernel",
