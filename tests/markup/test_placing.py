@@ -98,6 +98,7 @@ def test_no_two_labels_touch_at_any_scale(answers: list, scale: float) -> None:
     assert {zones.room.id for zones in answers} <= said
 
 
+@settings(deadline=None, max_examples=60)
 @given(
     st.lists(st.tuples(st.floats(0, 20), st.floats(0, 15), st.floats(0.2, 6), st.floats(0.2, 6)), max_size=12)
 )
