@@ -26,9 +26,10 @@ import numpy.typing as npt
 from kernelscan.geometry.contacts import edge_ends, meeting_edges, meeting_place
 from kernelscan.geometry.signs import Point, orientation, orientations
 
-__all__ = ["first_fault_between", "side_of_ring"]
+__all__ = ["crossings_right_of", "first_fault_between", "on_edges", "side_of_ring"]
 
 Floats = npt.NDArray[np.float64]
+Signs = npt.NDArray[np.int8]
 Place = tuple[Fraction, Fraction]
 
 
@@ -40,13 +41,23 @@ def side_of_ring(ring: Floats, point: Point) -> int:
     p, q = edge_ends([ring])
     at_height = np.flatnonzero((np.minimum(p[:, 1], q[:, 1]) <= y) & (np.maximum(p[:, 1], q[:, 1]) >= y))
     p, q = p[at_height], q[at_height]
-    sides = orientations(p, q, np.array([x, y]))
-    within_x = (np.minimum(p[:, 0], q[:, 0]) <= x) & (np.maximum(p[:, 0], q[:, 0]) >= x)
-    if ((sides == 0) & within_x).any():
+    c = np.array([x, y])
+    sides = orientations(p, q, c)
+    if on_edges(p, q, sides, c).any():
         return 0
-    up = (p[:, 1] <= y) & (q[:, 1] > y) & (sides > 0)
-    down = (q[:, 1] <= y) & (p[:, 1] > y) & (sides < 0)
-    return 1 if (np.count_nonzero(up) + np.count_nonzero(down)) % 2 else -1
+    return 1 if crossings_right_of(p, q, sides, c) % 2 else -1
+
+
+def on_edges(p: Floats, q: Floats, sides: Signs, c: Floats) -> npt.NDArray[np.bool_]:
+    """Return for each edge whether c lies on it, from the side of its line on which c lies."""
+    in_box = (np.minimum(p, q) <= c) & (np.maximum(p, q) >= c)
+    return np.asarray((sides == 0) & in_box[:, 0] & in_box[:, 1])
+
+
+def crossings_right_of(p: Floats, q: Floats, sides: Signs, c: Floats) -> int:
+    """Count the edges that the ray from c towards +x crosses, c on none of them; odd inside."""
+    low, high = p[:, 1] <= c[1], q[:, 1] <= c[1]
+    return int(np.count_nonzero((low & ~high & (sides > 0)) | (high & ~low & (sides < 0))))
 
 
 def first_fault_between(rings: Sequence[Floats]) -> str | None:

@@ -98,6 +98,8 @@ def _hole(number: int, points: npt.ArrayLike) -> Ring:
 
 
 def _finite_points(points: npt.ArrayLike) -> npt.NDArray[np.float64]:
+    if isinstance(points, np.ndarray) and points.dtype.kind == "c":
+        raise GeometryError("a ring needs an (n, 2) array of numbers, got complex ones")
     try:
         array = np.array(points, dtype=np.float64)
     except (TypeError, ValueError, OverflowError) as error:

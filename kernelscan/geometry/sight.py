@@ -37,6 +37,7 @@ import numpy.typing as npt
 from kernelscan.errors import GeometryError
 from kernelscan.geometry.directions import Directions, directions_around
 from kernelscan.geometry.envelope import nearest_edges
+from kernelscan.geometry.nesting import crossings_right_of, on_edges
 from kernelscan.geometry.rings import Ring
 from kernelscan.geometry.signs import ROUNDOFF, SMALLEST, orientations
 
@@ -46,6 +47,7 @@ Floats = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.intp]
 
 _FOOT_ERROR = 1e-10
+"""A foot whose floats may be off by more, as a part of its distance, is worked out in rational arithmetic."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -97,20 +99,11 @@ class Sight:
 
     def _walls_at_eye(self) -> Indices:
         """Return the walls that the eye stands on; an error if it is not in the room at all."""
-        (x, y), p, q = self.eye, self.walls.p, self.walls.q
-        at_height = (np.minimum(p[:, 1], q[:, 1]) <= y) & (np.maximum(p[:, 1], q[:, 1]) >= y)
-        on = (
-            at_height
-            & (self.side == 0)
-            & (np.minimum(p[:, 0], q[:, 0]) <= x)
-            & (np.maximum(p[:, 0], q[:, 0]) >= x)
-        )
-        under = np.flatnonzero(on)
-        if not len(under):
-            up = (p[:, 1] <= y) & (q[:, 1] > y) & (self.side > 0)
-            down = (q[:, 1] <= y) & (p[:, 1] > y) & (self.side < 0)
-            if (np.count_nonzero(up) + np.count_nonzero(down)) % 2 == 0:
-                raise GeometryError(f"the eye ({x:.9g}, {y:.9g}) is outside the room or inside a hole")
+        known = self.walls.p, self.walls.q, self.side, self.eye
+        under = np.flatnonzero(on_edges(*known))
+        if not len(under) and crossings_right_of(*known) % 2 == 0:
+            x, y = self.eye
+            raise GeometryError(f"the eye ({x:.9g}, {y:.9g}) is outside the room or inside a hole")
         return under
 
     def _sorted_ends(self) -> tuple[Directions, Indices]:

@@ -74,10 +74,10 @@ def visible_from(rings: Sequence[Ring], eye: npt.ArrayLike) -> Ring:
     return Sight(Walls.of(rings), _as_eye(eye)).region()
 
 
-def visible_regions(rings: Sequence[Ring], eyes: npt.ArrayLike) -> list[Ring]:
-    """Return what each of several eyes, ``(k, 2)``, sees of a room whose rings are already checked."""
+def visible_regions(rings: Sequence[Ring], eyes: Iterable[npt.ArrayLike]) -> list[Ring]:
+    """Return what each of several eyes sees of a room whose rings are already checked."""
     walls = Walls.of(rings)
-    return [Sight(walls, _as_eye(eye)).region() for eye in np.asarray(eyes, dtype=np.float64)]
+    return [Sight(walls, _as_eye(eye)).region() for eye in eyes]
 
 
 def view_from(rings: Sequence[Ring], eye: npt.ArrayLike) -> View:

@@ -89,6 +89,7 @@ def test_any_size_will_do(size: float) -> None:
         ([(0, 0), (1, 0), (0, None)], "not finite|numbers"),
         ([(0, 0), (1,), (0, 1)], "numbers"),
         ([(0, 0), (1j, 0), (0, 1)], "numbers"),
+        (np.array([(0, 0), (1j, 0), (0, 1)]), "numbers"),
         ([(0, 0), (float("nan"), 0), (0, 1)], r"point 1 of the ring is not finite: \(nan, 0.0\)"),
         ([(0, 0), (1, 0), (0, float("inf"))], "point 2 of the ring is not finite"),
         ([(0, 0)], "three distinct points or more, got 1"),
