@@ -1,7 +1,8 @@
 """Find where one camera or line-of-sight sensor sees every wall of a room.
 
-``read_plan`` turns a DXF into rooms, ``read_devices`` a device file into devices, ``visibility_kernel`` gives the points that see every wall of one,
-``verify_kernel`` checks such an answer exactly, and ``visible_region`` gives what one point sees.
+``read_plan`` turns a DXF into rooms and ``read_devices`` a device file into devices, ``visibility_kernel`` gives the
+points that see every wall of a room, ``verify_kernel`` checks such an answer exactly, and ``visible_region`` gives what
+one point sees.
 """
 
 from importlib import import_module
