@@ -121,7 +121,7 @@ def check_given_together(table: Table) -> None:
 def check_picture(table: Table, device: Device) -> None:
     """Note a field that no pinhole can spread pixels over."""
     key = table.key_of(HORIZONTAL_FIELD) or table.key_of(SENSOR_WIDTH)
-    if key is None or key in table.unsound or not device.pixels_across:
+    if key is None or table.unsound & {key, "projection"} or not device.pixels_across:
         return
     if device.projection == "pinhole" and device.horizontal_field >= pi:
         table.note(

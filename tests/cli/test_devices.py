@@ -78,6 +78,14 @@ def test_the_target_may_govern(printed):
     assert cells(out, "Tilted")[0][7:9] == ["0.00 m to 4.28 m", "vertical field"]
 
 
+def test_at_an_unbounded_range_there_is_no_density(printed):
+    text = "".join(
+        line for line in TILTED.splitlines(keepends=True) if "density" not in line and "farthest" not in line
+    )
+    _, out, _ = printed(text.replace("tilt_deg = 30", "tilt_deg = 20"))
+    assert cells(out, "Tilted")[0][7:] == ["0.00 m to unbounded", "none", "–", "–"]
+
+
 def test_an_unbounded_floor(printed):
     _, out, _ = printed(TILTED.replace("tilt_deg = 30", "tilt_deg = 25"))
     assert cells(out, "Tilted")[0][6] == "unbounded"

@@ -384,7 +384,10 @@ def test_all_faults_of_all_devices_at_once(faults):
 
 def test_a_rule_is_silent_on_values_that_are_wrong_themselves(faults):
     assert len(faults(described(nearest_m="5", farthest_m="-3"))) == 1
-    assert len(faults(described(vertical_field_deg="50", height_m="x = 1".join('""'), tilt_deg="-30"))) == 1
+    assert len(faults(described(vertical_field_deg="50", height_m='"high"', tilt_deg="-30"))) == 1
+    fisheye = {"horizontal_field_deg": "360", "pixels_across": "3000", "projection": '"fisheye"'}
+    assert len(faults(described(**fisheye))) == 1
+    assert len(faults(described(height="3", vertical_field_deg="50", tilt_deg="-30"))) == 2
 
 
 @pytest.mark.parametrize(
@@ -415,9 +418,10 @@ def test_files_that_are_no_device_file(faults, text, words):
     assert line.startswith(words)
 
 
-def test_a_number_of_hundreds_of_digits(faults):
-    (line,) = faults(described(cost="9" * 400))
-    assert line.startswith("device[1].cost: got 999")
+@pytest.mark.parametrize(("number", "shown"), [("9" * 400, "999"), ("0x" + "f" * 5000, "a huge number")])
+def test_a_number_of_hundreds_of_digits(faults, number, shown):
+    (line,) = faults(described(cost=number))
+    assert line.startswith(f"device[1].cost: got {shown}")
     assert len(line) < 150
 
 
