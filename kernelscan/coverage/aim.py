@@ -101,7 +101,7 @@ class _Running:
     def __init__(self, p: Floats, q: Floats, reach: float, measure: Measure) -> None:
         self.reach, self.measure = reach, measure
         p, q = _cut_at_the_back(p, q)
-        in_line = np.less_equal(_angles(p, q), IN_LINE)
+        in_line = _angles(p, q) <= IN_LINE
         self.p, self.q, self.start, self.before = self._sorted(p[~in_line], q[~in_line])
         self.end = self.start + _angles(self.p, self.q)
         # A wall in line with the lens has one direction only: it is counted whole from there on.
@@ -109,7 +109,8 @@ class _Running:
 
     def _sorted(self, p: Floats, q: Floats) -> tuple[Floats, Floats, Floats, Floats]:
         """Pieces by the direction in which they begin, their directions, and the measure before each."""
-        ahead = np.where((np.abs(p) > 0).any(axis=1)[:, None], p, q)
+        at_lens = np.equal(p, 0.0).all(axis=1, keepdims=True)
+        ahead = np.where(at_lens, q, p)
         start = np.arctan2(ahead[:, 1], ahead[:, 0])
         order = np.argsort(start, kind="stable")
         p, q = p[order], q[order]

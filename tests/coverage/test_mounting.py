@@ -23,8 +23,8 @@ def sees_all(of, point, slack=0):
     """Whether a rational point is on the inner side of every edge, or short of it by no more than the slack."""
     x, y = (Fraction(float(value)) for value in point)
     for ring in of.rings:
-        for (ax, ay), (bx, by) in zip(ring.tolist(), np.roll(ring, -1, axis=0).tolist(), strict=True):
-            ax, ay, bx, by = map(Fraction, (ax, ay, bx, by))
+        for a, b in zip(ring.tolist(), np.roll(ring, -1, axis=0).tolist(), strict=True):
+            ax, ay, bx, by = map(Fraction, (*a, *b))
             if (bx - ax) * (y - ay) - (by - ay) * (x - ax) < -slack * Fraction(hypot(bx - ax, by - ay)):
                 return False
     return True
@@ -108,7 +108,7 @@ def test_nothing_is_fixed_to_an_opening():
 def test_a_door_in_a_wall_parts_the_stretch():
     ring = [(0, 0), (2, 0), (3, 0), (6, 0), (6, 4), (0, 4)]
     whole = room_zones(room(ring))
-    assert [zone.walls for zone in whole.walls][0] == tuple(WallRef(0, k) for k in (0, 1, 2))
+    assert whole.walls[0].walls == tuple(WallRef(0, k) for k in (0, 1, 2))
     assert len(whole.corners) == 4
     parted = room_zones(room(ring, [Opening(WallRef(0, 1), "door", 1.0)]))
     assert [zone.length for zone in parted.walls] == [2, 3, 4, 6, 4]

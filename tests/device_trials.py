@@ -1,8 +1,7 @@
 """Random rooms and devices, and a test of its own for whether a lens position covers a room.
 
 The test knows nothing of half-planes or zones: it measures distances and angles to the ends of walls and to points
-strewn densely along them. ``python -m`` is not needed: ``python tests/coverage/device_trials.py 10000`` runs so many
-rooms and prints what it tried.
+strewn densely along them. ``python tests/device_trials.py 10000`` runs so many rooms and prints what it tried.
 """
 
 import sys
@@ -48,7 +47,10 @@ def random_room(rng):
 
 
 def random_device(rng):
-    fixings = tuple(rng.permutation(["ceiling", "wall", "corner", "floor"])[: int(rng.integers(1, 5))])
+    fixings = tuple(
+        str(each)
+        for each in rng.permutation(["ceiling", "wall", "corner", "floor"])[: int(rng.integers(1, 5))]
+    )
     field = rng.choice([2 * pi, pi, rng.uniform(0.8, 2 * pi)])
     sectional = rng.random() < 0.3
     return Device(
@@ -89,7 +91,10 @@ def slack(room, device, point, lens, fixed_to):
         found.append(to_line - device.clearances.walls - error)
         found.append(to_line - section(device)[0] - error)
         if device.grazing:
-            found += [grazing_slack(lens, a, b, device.grazing) - error, grazing_slack(lens, b, a, device.grazing) - error]
+            found += [
+                grazing_slack(lens, a, b, device.grazing) - error,
+                grazing_slack(lens, b, a, device.grazing) - error,
+            ]
     if device.clearances.openings:
         for opening in room.openings:
             a, b = room.wall_ends(opening.wall)
@@ -122,7 +127,11 @@ def reaches(device):
     yield device.farthest
     yield section(device)[1]
     if device.density is not None:
-        yield device.pixels_across / (2 * device.density * sin(device.horizontal_field / 2)) * cos(device.horizontal_field / 2)
+        yield (
+            device.pixels_across
+            / (2 * device.density * sin(device.horizontal_field / 2))
+            * cos(device.horizontal_field / 2)
+        )
 
 
 def sees_every_wall(room, device, lens, fixed_to, bearing):
@@ -154,11 +163,17 @@ def hidden_by(fixed_to, room, device, x):
     return False
 
 
+def side(a, b, c):
+    """Twice the signed area of each triangle a, b, c; ``(n, 2)`` each."""
+    return (b[:, 0] - a[:, 0]) * (c[:, 1] - a[:, 1]) - (b[:, 1] - a[:, 1]) * (c[:, 0] - a[:, 0])
+
+
 def crosses_a_wall(poly, lens, x, own):
     p, q = poly, np.roll(poly, -1, axis=0)
-    side = lambda a, b, c: (b[..., 0] - a[..., 0]) * (c[..., 1] - a[..., 1]) - (b[..., 1] - a[..., 1]) * (c[..., 0] - a[..., 0])  # noqa: E731
     lenses, ends = np.broadcast_to(lens, p.shape), np.broadcast_to(x, p.shape)
-    apart = (side(p, q, lenses) * side(p, q, ends) < -1e-9) & (side(lenses, ends, p) * side(lenses, ends, q) < -1e-9)
+    apart = (side(p, q, lenses) * side(p, q, ends) < -1e-9) & (
+        side(lenses, ends, p) * side(lenses, ends, q) < -1e-9
+    )
     apart[own] = False
     return bool(apart.any())
 
