@@ -1,5 +1,6 @@
 """Answers about devices as values: where one covers a room, the spot to use, and what it falls short by."""
 
+from collections.abc import Iterable
 from dataclasses import dataclass
 from typing import Literal
 
@@ -13,7 +14,7 @@ from kernelscan.coverage.plan_zone import PlanZone
 from kernelscan.coverage.setting_out import SettingOut
 from kernelscan.plan import Device, Fixing, Room, WallRef
 
-__all__ = ["DeviceAnswer", "DeviceSpot", "Obstruction", "PartialSpot"]
+__all__ = ["DeviceAnswer", "DeviceSpot", "Obstruction", "PartialSpot", "cheapest"]
 
 Floats = npt.NDArray[np.float64]
 
@@ -112,3 +113,9 @@ class DeviceAnswer:
     def covers(self) -> bool:
         """Whether the device covers the whole room from somewhere."""
         return bool(self.spots)
+
+
+def cheapest(answers: Iterable[DeviceAnswer]) -> DeviceAnswer | None:
+    """Return the answer of the cheapest device that covers the room, or ``None`` if none that has a cost does."""
+    priced = [answer for answer in answers if answer.covers and answer.device.cost is not None]
+    return min(priced, key=lambda answer: answer.device.cost or 0.0, default=None)

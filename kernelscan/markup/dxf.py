@@ -26,7 +26,7 @@ from kernelscan.markup.symbols import sector
 from kernelscan.markup.tags import Placement, placed_tags
 from kernelscan.markup.text import clean_text
 from kernelscan.markup.view import PlanView, plan_extent
-from kernelscan.markup.wording import Custom, angle_in_words
+from kernelscan.coverage.wording import Custom, angle_in_words
 from kernelscan.plan import Plan
 from kernelscan.units import HEADER_UNITS
 

@@ -26,7 +26,7 @@ from kernelscan.markup.symbols import spot_symbol
 from kernelscan.markup.tags import Tags, number_tags, placed_tags
 from kernelscan.markup.text import cut_to
 from kernelscan.markup.view import PlanView
-from kernelscan.markup.wording import Custom
+from kernelscan.coverage.wording import Custom
 from kernelscan.plan import Plan, Room
 
 __all__ = ["Part", "overview_groups", "part_groups", "parts_of", "plan_groups"]

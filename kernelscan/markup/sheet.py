@@ -22,7 +22,7 @@ from kernelscan.markup.style import FRAME_PEN, RULE_PEN
 from kernelscan.markup.text import clean_text
 from kernelscan.markup.titleblock import SheetNumber, title_block
 from kernelscan.markup.view import plan_extent
-from kernelscan.markup.wording import Custom
+from kernelscan.coverage.wording import Custom
 from kernelscan.plain_text import plain_text
 from kernelscan.plan import Plan
 

@@ -19,7 +19,7 @@ from kernelscan.markup.style import CONFLICT_LETTERS, HEADING, LEADER_PEN, MARKS
 from kernelscan.markup.symbols import box_around, spot_ring
 from kernelscan.markup.text import clean_text, wrapped
 from kernelscan.markup.view import PlanView
-from kernelscan.markup.wording import Custom, kernel_in_words
+from kernelscan.coverage.wording import Custom, kernel_in_words
 
 __all__ = ["Placement", "Tags", "number_tags", "placed_tags"]
 

@@ -1,17 +1,22 @@
 """Terminal tables: what a run found, for reading at a glance; full figures stand in the report."""
 
 from collections.abc import Sequence
-from math import ceil, degrees, log10
 from typing import TextIO
 
 from rich.text import Text
 
 from kernelscan.coverage import RoomZones, Spot
+from kernelscan.coverage.wording import Custom, angle_in_words
 from kernelscan.plain_text import plain_text
-from kernelscan.plan import Plan, Problem
-from kernelscan.report.schedule import kernel_in_words
+from kernelscan.plan import Plan, Problem, Room
 from kernelscan.report.terminal import cell, print_parts, table_of
-from kernelscan.units import feet_and_inches
+from kernelscan.report.wording import (
+    drawn_coordinate,
+    drawn_position,
+    kernel_or_reason,
+    range_in_words,
+    tolerance_in_words,
+)
 
 __all__ = ["print_problems", "print_rooms", "print_zones"]
 
@@ -23,7 +28,7 @@ def print_rooms(plan: Plan, out: TextIO) -> None:
         table.add_row(
             room.id,
             cell(room.name),
-            f"{room.area:.2f} m2",
+            _area(plan, room),
             str(room.corner_count),
             str(len(room.openings)),
             str(len(room.obstacles)),
@@ -34,12 +39,22 @@ def print_rooms(plan: Plan, out: TextIO) -> None:
 
 def print_zones(plan: Plan, answers: Sequence[RoomZones], out: TextIO) -> None:
     """Print for each room the kernel and the recommended spot of each mount, or why there is none."""
+    unit = plain_text(plan.unit.name)
     table = table_of(
-        "room", "name", "area", "sees every wall", "mount", "x", "y", "field", "range", "may be off by"
+        "room",
+        "name",
+        "area",
+        "sees every wall",
+        "mount",
+        f"x ({unit})",
+        f"y ({unit})",
+        "field",
+        "range",
+        "may be off by",
     )
     for zones in answers:
         room = zones.room
-        head: list[str | Text] = [room.id, cell(room.name), f"{room.area:.2f} m2", kernel_in_words(zones)]
+        head: list[str | Text] = [room.id, cell(room.name), _area(plan, room), kernel_or_reason(plan, zones)]
         for spot in zones.recommended or (None,):
             table.add_row(*head, *(["–"] * 6 if spot is None else _spot_cells(plan, spot)))
             head = ["", "", "", ""]
@@ -65,28 +80,21 @@ def _count(number: int, noun: str) -> str:
 def _spot_cells(plan: Plan, spot: Spot) -> list[str]:
     return [
         spot.mount,
-        *(_coordinate(plan, float(value)) for value in spot.point),
-        f"{degrees(spot.field_of_view):.0f} deg",
-        _length(plan, spot.farthest),
-        _length(plan, spot.tolerance),
+        *(drawn_coordinate(plan, float(value)) for value in spot.point),
+        angle_in_words(spot.field_of_view),
+        range_in_words(plan, spot.farthest),
+        tolerance_in_words(plan, spot.tolerance),
     ]
 
 
-def _coordinate(plan: Plan, metres: float) -> str:
-    """A position as the drawing counts it, to a millimetre or finer."""
-    decimals = max(0, ceil(log10(plan.unit.metres / 0.001)))
-    return f"{metres / plan.unit.metres:.{decimals}f}"
-
-
-def _length(plan: Plan, metres: float) -> str:
-    return feet_and_inches(metres) if plan.unit.imperial else f"{metres:.2f} m"
+def _area(plan: Plan, room: Room) -> str:
+    custom = Custom(plan.unit.imperial)
+    return f"{custom.area(room.area)} {custom.area_unit}"
 
 
 def _problem(plan: Plan, problem: Problem) -> str:
     place = [
-        f"at ({', '.join(_coordinate(plan, value) for value in problem.at)}) {plan.unit.name}"
-        if problem.at
-        else "",
+        f"at {drawn_position(plan, problem.at)}" if problem.at else "",
         f"layer {plain_text(problem.source.layer)}" if problem.source.layer else "",
         f"handle {plain_text(problem.source.handle)}" if problem.source.handle else "",
     ]

@@ -14,7 +14,7 @@ from kernelscan.markup.scene import Box
 from kernelscan.markup.sheet import SheetOptions, compose_zone_sheets
 from kernelscan.markup.tags import placed_tags
 from kernelscan.markup.view import PlanView, clipped_segment
-from kernelscan.markup.wording import Custom
+from kernelscan.coverage.wording import Custom
 
 WINDOW = Box(0, 0, 400, 300)
 
