@@ -1,8 +1,8 @@
-"""Runs the commands that getting-started.md shows, and writes what they print under them.
+"""Runs the commands that some pages show, and writes what they print under them.
 
 ``python docs/refresh_outputs.py`` does so in place, or into the folder given as only argument. A block that begins
 with ``$ kernelscan`` holds a command and its output; each runs in an empty folder that has a copy of the sample plans,
-and of one of them without its unit.
+of one of them without its unit, and the last device file that devices.md shows, as slips.toml.
 """
 
 import os
@@ -17,7 +17,9 @@ from tempfile import TemporaryDirectory
 __all__ = ["main", "with_fresh_outputs"]
 
 HERE = Path(__file__).resolve().parent
+PAGES = ("devices.md", "getting-started.md")
 BLOCK = re.compile(r"```console\n\$ (kernelscan [^\n]+)\n.*?```", re.DOTALL)
+DEVICE_FILE = re.compile(r"```toml\n(.*?)```", re.DOTALL)
 UNIT = re.compile(rb"(\$INSUNITS\s+70\s+)4")
 
 
@@ -35,7 +37,8 @@ def _output(command: str, folder: Path) -> str:
 
 
 def main(target: Path) -> None:
-    """Write the page anew into a folder."""
+    """Write the pages anew into a folder."""
+    pages = {name: (HERE / name).read_text(encoding="utf-8") for name in PAGES}
     with TemporaryDirectory() as folder:
         plans = Path(folder, "sample_plans")
         shutil.copytree(
@@ -43,9 +46,11 @@ def main(target: Path) -> None:
         )
         drawing = (plans / "workshop-ground-floor.dxf").read_bytes()
         Path(folder, "no-unit.dxf").write_bytes(UNIT.sub(rb"\g<1>0", drawing))
-        page = (HERE / "getting-started.md").read_text(encoding="utf-8")
-        fresh = with_fresh_outputs(page, Path(folder))
-    (target / "getting-started.md").write_text(fresh, encoding="utf-8", newline="\n")
+        slips = DEVICE_FILE.findall(pages["devices.md"])[-1]
+        Path(folder, "slips.toml").write_text(slips, encoding="utf-8")
+        for name, page in pages.items():
+            fresh = with_fresh_outputs(page, Path(folder))
+            (target / name).write_text(fresh, encoding="utf-8", newline="\n")
 
 
 if __name__ == "__main__":
