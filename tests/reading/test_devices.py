@@ -320,6 +320,10 @@ def test_what_is_written_is_what_is_read(tmp_path_factory, device, unit):
             "device[1].nearest_m: starts at 5.00 m, where farthest_ft has ended at 3.05 m: no distance is left",
         ),
         (
+            {"nearest_m": "5", "farthest_mm": "5000"},
+            "device[1].nearest_m: starts at 5.00 m, where farthest_mm has ended at 5.00 m: no distance is left",
+        ),
+        (
             {"nearest_m": "5", "pixels_across": "1000", "density_px_per_m": "250"},
             "device[1].nearest_m: starts at 5.00 m, where density_px_per_m has ended at 2.00 m: no distance is left",
         ),
