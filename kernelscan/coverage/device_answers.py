@@ -87,7 +87,7 @@ def _obstruction(
         "reach": replace(limits, reach=inf),
         "distance": replace(limits, distance=0.0),
         "grazing": replace(limits, grazing=0.0),
-        "openings": replace(limits, from_openings=0.0),
+        "clearance": replace(limits, from_openings=0.0, from_fixtures=()),
         "several": replace(limits, field=2 * pi, reach=inf, distance=0.0, grazing=0.0),
     }
     for name, without in lifted.items():

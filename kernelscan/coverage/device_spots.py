@@ -18,7 +18,7 @@ __all__ = ["DeviceAnswer", "DeviceSpot", "Obstruction", "PartialSpot", "cheapest
 
 Floats = npt.NDArray[np.float64]
 
-Obstruction = Literal["sight", "field", "reach", "distance", "grazing", "openings", "several"]
+Obstruction = Literal["sight", "field", "reach", "distance", "grazing", "clearance", "several"]
 """What keeps a device from covering a room: no point sees every wall, or the one limit without which it would."""
 
 

@@ -8,6 +8,7 @@ conditions leave of the line along which the lens slides; a corner is one lens p
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
+from fnmatch import fnmatchcase
 from math import atan2, hypot, inf, pi
 
 import numpy as np
@@ -44,8 +45,8 @@ class Conditions:
         ``(k, 2)``: the wall [ring, edge] that each line comes from.
     corners, reach
         ``(n, 2)`` the room's corners, each at most the reach away.
-    keep_out, margin
-        ``(m, 2, 2)`` segments, each at least the margin away from the point of fixing.
+    keep_out, margins
+        ``(m, 2, 2)`` segments, and how far at least the point of fixing is from each, ``(m,)``.
     """
 
     lines: Floats
@@ -53,7 +54,7 @@ class Conditions:
     corners: Floats
     reach: float
     keep_out: Floats
-    margin: float
+    margins: Floats
 
     def slack(self, lenses: Floats) -> Floats:
         """Return by how much each lens position, ``(m, 2)``, is within all but the clearances: negative outside."""
@@ -67,9 +68,8 @@ class Conditions:
 
     def clear_of(self, points: Floats) -> Floats:
         """Return by how much each point of fixing, ``(m, 2)``, is clear of what it must stay away from."""
-        if not len(self.keep_out) or self.margin <= 0:
-            return np.full(len(points), inf)
-        return np.asarray(_distances_to_segments(points, self.keep_out).min(axis=1) - self.margin)
+        distances = _distances_to_segments(points, self.keep_out)
+        return np.asarray((distances - self.margins).min(axis=1, initial=inf))
 
     def binding(self, lens: Floats) -> tuple[WallRef, ...]:
         """Return the walls that come nearest to ruling a lens position out, to a millimetre."""
@@ -181,8 +181,15 @@ def corner_places(room: Room, limits: Limits, smooth: float) -> Iterator[Place]:
 
 
 def _conditions(room: Room, limits: Limits, lines: Floats, walls: npt.NDArray[np.int64]) -> Conditions:
-    keep_out = np.array([room.opening_ends(opening) for opening in room.openings]).reshape(-1, 2, 2)
-    return Conditions(lines, walls, np.concatenate(room.rings), limits.reach, keep_out, limits.from_openings)
+    keep_out = [room.opening_ends(opening) for opening in room.openings if limits.from_openings > 0]
+    margins = [limits.from_openings] * len(keep_out)
+    for pattern, distance in limits.from_fixtures:
+        for fixture in room.fixtures:
+            if fnmatchcase(fixture.name.casefold(), pattern.casefold()):
+                keep_out.append(np.array([fixture.centre, fixture.centre]))
+                margins.append(fixture.radius + distance)
+    segments = np.array(keep_out, dtype=np.float64).reshape(-1, 2, 2)
+    return Conditions(lines, walls, np.concatenate(room.rings), limits.reach, segments, np.array(margins))
 
 
 def _lines(rows: Floats) -> Floats:
@@ -214,9 +221,8 @@ def _intervals(
         near, far = _within_disc(p, q, corner, needed.reach)
         low, high = max(low, near), min(high, far)
     left = [(max(low, start), min(high, end)) for start, end in solid]
-    if needed.margin > 0:
-        for segment in needed.keep_out:
-            left = without(left, _within_capsule(a, b, segment, needed.margin))
+    for segment, margin in zip(needed.keep_out, needed.margins.tolist(), strict=True):
+        left = without(left, _within_capsule(a, b, segment, margin))
     return [part for part in left if part[0] <= part[1]]
 
 

@@ -46,8 +46,8 @@ class Limits:
         The horizontal field.
     stand_off
         From the surface to the lens.
-    from_openings
-        From the point of fixing to every door, window and gap.
+    from_openings, from_fixtures
+        From the point of fixing to every door, window and gap, and to the fixtures whose names fit a pattern.
     """
 
     reach: float
@@ -58,6 +58,7 @@ class Limits:
     field: float
     stand_off: float
     from_openings: float
+    from_fixtures: tuple[tuple[str, float], ...]
 
 
 def device_limits(device: Device) -> Limits:
@@ -78,8 +79,14 @@ def device_limits(device: Device) -> Limits:
         placing_error=error,
         field=device.horizontal_field,
         stand_off=device.stand_off,
-        from_openings=device.clearances.openings + error if device.clearances.openings else 0.0,
+        from_openings=_clear(device.clearances.openings, error),
+        from_fixtures=tuple((name, _clear(off, error)) for name, off in device.clearances.obstacles),
     )
+
+
+def _clear(distance: float, error: float) -> float:
+    """A clearance with the placing error added; no clearance asked for is none."""
+    return distance + error if distance > 0 else 0.0
 
 
 def _reach_in_section(device: Device) -> tuple[float, float]:

@@ -79,8 +79,11 @@ def _flattened(needed: Conditions, corners: Floats) -> list[Patch]:
         for centre in needed.corners[too_far]:
             disc = Patch(_disc(centre, needed.reach))
             pieces = [part for piece in pieces for part in intersection(piece, disc)]
-    if needed.margin > 0 and len(needed.keep_out):
-        shut = [Patch(_capsule(segment, needed.margin)) for segment in needed.keep_out]
+    if len(needed.keep_out):
+        shut = [
+            Patch(_capsule(segment, margin))
+            for segment, margin in zip(needed.keep_out, needed.margins.tolist(), strict=True)
+        ]
         pieces = [part for piece in pieces for part in difference(piece, shut)]
     return pieces
 

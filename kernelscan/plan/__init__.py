@@ -2,12 +2,13 @@
 
 from kernelscan.plan.device import Clearances, Device, Fixing, Projection
 from kernelscan.plan.plan import Plan, Problem
-from kernelscan.plan.room import Obstacle, Opening, Room, Source, WallRef
+from kernelscan.plan.room import Fixture, Obstacle, Opening, Room, Source, WallRef
 
 __all__ = [
     "Clearances",
     "Device",
     "Fixing",
+    "Fixture",
     "Obstacle",
     "Opening",
     "Plan",

@@ -7,7 +7,7 @@ import numpy as np
 
 from kernelscan.geometry.rings import Ring, signed_area
 
-__all__ = ["NameSource", "Obstacle", "Opening", "OpeningKind", "Room", "Source", "WallRef"]
+__all__ = ["Fixture", "NameSource", "Obstacle", "Opening", "OpeningKind", "Room", "Source", "WallRef"]
 
 NameSource = Literal["label", "layer", "number"]
 OpeningKind = Literal["door", "window", "gap"]
@@ -33,6 +33,26 @@ class Obstacle:
     """Something inside a room that blocks sight, such as a column; a clockwise ring in metres."""
 
     ring: Ring
+    source: Source = Source()
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Fixture:
+    """Something drawn under a name that devices may have to stay away from, such as an air outlet.
+
+    Attributes
+    ----------
+    name
+        The name of its block.
+    centre, radius
+        ``(2,)`` and metres: a circle around all of it.
+    source
+        Layer and handle.
+    """
+
+    name: str
+    centre: np.ndarray
+    radius: float
     source: Source = Source()
 
 
@@ -68,6 +88,8 @@ class Room:
         What stands in the room, and the doors, windows and gaps in its walls.
     source
         Layer and handle of the outline.
+    fixtures
+        What is drawn in it as a named block; it blocks no sight.
     """
 
     id: str
@@ -77,6 +99,7 @@ class Room:
     openings: tuple[Opening, ...] = ()
     name_from: NameSource = "number"
     source: Source = Source()
+    fixtures: tuple[Fixture, ...] = ()
 
     @property
     def holes(self) -> tuple[Ring, ...]:
