@@ -36,7 +36,6 @@ __all__ = [
     "nearest_point",
     "noded_lines",
     "overlap_areas",
-    "overlapping_boxes",
     "rings_around",
     "union",
 ]
@@ -113,14 +112,6 @@ def faces_of_lines(lines: Iterable[npt.ArrayLike]) -> list[Patch]:
     """Return the bounded faces between lines that meet only at their ends, such as :func:`noded_lines` makes."""
     strings = [shapely.LineString(np.asarray(line, dtype=np.float64)) for line in lines]
     return _patches(shapely.polygonize(strings))
-
-
-def overlapping_boxes(low: Floats, high: Floats) -> tuple[Indices, Indices]:
-    """Return the pairs i < j of closed boxes that overlap; ``low`` and ``high`` are their corners, ``(n, 2)``."""
-    boxes = shapely.box(low[:, 0], low[:, 1], high[:, 0], high[:, 1])
-    i, j = shapely.STRtree(boxes).query(boxes)
-    once = i < j
-    return i[once], j[once]
 
 
 def _polygon(patch: Patch) -> shapely.Polygon:

@@ -14,7 +14,6 @@ from kernelscan.geometry.shapes import (
     interior_point,
     intersection,
     noded_lines,
-    overlapping_boxes,
     union,
 )
 
@@ -108,13 +107,3 @@ def test_lines_are_cut_where_they_meet_and_close_faces() -> None:
     assert len(noded) == 4 + 9
     assert sorted(area(face) for face in faces_of_lines(noded)) == [4, 4]
     assert faces_of_lines(lines) == []
-
-
-def test_overlapping_boxes_are_those_of_brute_force() -> None:
-    rng = np.random.default_rng(5)
-    low = rng.integers(0, 30, (80, 2)).astype(float)
-    high = low + rng.integers(0, 6, (80, 2)).astype(float)
-    i, j = overlapping_boxes(low, high)
-    meets = (low[:, None] <= high[None]).all(axis=2)
-    expected = {(int(a), int(b)) for a, b in np.argwhere(meets & meets.T) if a < b}
-    assert set(zip(i.tolist(), j.tolist(), strict=True)) == expected
