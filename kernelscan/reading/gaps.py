@@ -22,10 +22,17 @@ from kernelscan.geometry.shapes import lines_near, meeting_lines
 from kernelscan.reading.segments import DOOR, GAP, WINDOW, Segments, Swing
 from kernelscan.tolerances import Tolerances
 
-__all__ = ["Gaps", "connectors", "wall_gaps"]
+__all__ = ["Gaps", "closing_lines", "connectors", "wall_gaps"]
 
 SAME_DIRECTION = 2e-3
 SHORTEST_PIECE = 0.02
+TOUCHING = 1e-9
+STEEP = 0.5
+"""The sine of the smallest angle at which a wall stops a threshold."""
+
+FREE_ENDS = 1.25
+"""Between two free wall ends in one line a bare gap may be this many times as wide as elsewhere: a double door."""
+
 COVERED = 0.7
 """This part of a wide gap must be covered by the door or window drawn in it."""
 
@@ -40,7 +47,7 @@ class Gaps:
 
 
 def connectors(walls: Segments, snap: float) -> tuple[np.ndarray, np.ndarray]:
-    """Return short lines from each end that nearly meets another line to the nearest point of it."""
+    """Return short lines from each end that nearly meets another line to the nearest point of the nearest one."""
     points = np.concatenate((walls.a, walls.b))
     owner = np.concatenate((np.arange(len(walls)),) * 2)
     k, i = lines_near(points, walls.a, walls.b, snap)
@@ -48,14 +55,28 @@ def connectors(walls: Segments, snap: float) -> tuple[np.ndarray, np.ndarray]:
     k, i = k[other], i[other]
     foot = _foot(points[k], walls.a[i], walls.b[i])
     apart = np.hypot(*(foot - points[k]).T)
-    near = apart > 1e-9
-    return points[k[near]], foot[near]
+    near = np.flatnonzero(apart > TOUCHING)
+    near = near[np.lexsort((apart[near], k[near]))]
+    nearest = near[np.unique(k[near], return_index=True)[1]]
+    return points[k[nearest]], foot[nearest]
 
 
 def _foot(points: np.ndarray, a: np.ndarray, b: np.ndarray) -> np.ndarray:
     along = b - a
     share = ((points - a) * along).sum(axis=1) / (along * along).sum(axis=1)
     return np.asarray(a + np.clip(share, 0.0, 1.0)[:, None] * along)
+
+
+def closing_lines(openings: Segments, walls: Segments, tolerances: Tolerances) -> np.ndarray:
+    """Return which lines of openings close something themselves: those with both ends on a wall.
+
+    The leaf of an open door and the sides of a garage door drawn open touch a wall with one end at most.
+    """
+    touches = np.zeros((2, len(openings)), dtype=bool)
+    for side, ends in enumerate((openings.a, openings.b)):
+        if len(ends) and len(walls):
+            touches[side, lines_near(ends, walls.a, walls.b, 2 * tolerances.snap)[0]] = True
+    return np.asarray(touches.all(axis=0) & (openings.length <= tolerances.widest_opening))
 
 
 def wall_gaps(walls: Segments, openings: Segments, swings: list[Swing], tolerances: Tolerances) -> Gaps:
@@ -75,19 +96,35 @@ def wall_gaps(walls: Segments, openings: Segments, swings: list[Swing], toleranc
     a, b = _carrier_gaps(walls, tolerances)
     if len(a):
         a, b = _uncrossed(a, b, walls)
-    width = np.hypot(*(b - a).T)
+    tips, outward = _wall_ends(walls, tolerances)
     code = _what_stands_there(a, b, openings, swings, tolerances)
-    kept = (code != GAP) | (width <= tolerances.door_gap * (1 + 1e-6))
+    limit = tolerances.door_gap * np.where(
+        _near(a, tips, tolerances) & _near(b, tips, tolerances), FREE_ENDS, 1.0
+    )
+    kept = (code != GAP) | (np.hypot(*(b - a).T) <= limit * (1 + 1e-6))
     a, b, code = a[kept], b[kept], code[kept]
-    ea, eb = _ends_facing_walls(walls, a, b, tolerances)
+    unmet = ~_near(tips, np.concatenate((a, b)), tolerances)
+    ea, eb = _ends_facing_walls(walls, tips[unmet], outward[unmet], tolerances)
     ends_code = _what_stands_there(ea, eb, openings, swings, tolerances)
-    return Gaps(np.concatenate((a, ea)), np.concatenate((b, eb)), np.concatenate((code, ends_code)))
+    kept = (ends_code != GAP) | (np.hypot(*(eb - ea).T) <= tolerances.door_gap * (1 + 1e-6))
+    return Gaps(
+        np.concatenate((a, ea[kept])), np.concatenate((b, eb[kept])), np.concatenate((code, ends_code[kept]))
+    )
+
+
+def _near(points: np.ndarray, others: np.ndarray, tolerances: Tolerances) -> np.ndarray:
+    """Return which of the points are one with any of the others."""
+    hit = np.zeros(len(points), dtype=bool)
+    if len(points) and len(others):
+        hit[lines_near(points, others, others, tolerances.snap)[0]] = True
+    return hit
 
 
 def _carrier_gaps(walls: Segments, tolerances: Tolerances) -> tuple[np.ndarray, np.ndarray]:
     """Return the gaps between each piece of a carrier and the next."""
     long = np.flatnonzero(walls.length > SHORTEST_PIECE)
-    starts, ends = [], []
+    starts: list[np.ndarray] = []
+    ends: list[np.ndarray] = []
     a, b = walls.a[long], walls.b[long]
     angle = np.arctan2(*(b - a).T[::-1]) % np.pi
     for group in _runs(angle, SAME_DIRECTION, wrap=np.pi):
@@ -161,12 +198,10 @@ def _what_stands_there(
     oa, ob, kinds = _barriers(openings, swings)
     if not len(oa):
         return code
-    middle = (oa + ob) / 2
     reach = tolerances.widest_opening / 2 + tolerances.thickest_wall
     gap_middle = (a + b) / 2
     k, i = lines_near(gap_middle, oa, ob, reach)
     covered = {DOOR: np.zeros(len(a)), WINDOW: np.zeros(len(a))}
-    del middle
     width = np.hypot(*(b - a).T)
     along = (b - a) / width[:, None]
     normal = np.column_stack((-along[:, 1], along[:, 0]))
@@ -195,31 +230,21 @@ def _barriers(openings: Segments, swings: list[Swing]) -> tuple[np.ndarray, np.n
 
 
 def _ends_facing_walls(
-    walls: Segments, a: np.ndarray, b: np.ndarray, tolerances: Tolerances
+    walls: Segments, tips: np.ndarray, outward: np.ndarray, tolerances: Tolerances
 ) -> tuple[np.ndarray, np.ndarray]:
-    """Return the thresholds from wall ends that no gap closed to the walls they face."""
-    tips, outward = _wall_ends(walls, tolerances)
+    """Return the thresholds from wall ends to the first wall that each faces, if it stands steep enough to them."""
     if not len(tips):
         return tips, tips
-    taken = np.concatenate((a, b))
-    if len(taken):
-        apart = np.array([np.abs(taken - tip).max(axis=1).min() for tip in tips])
-        tips, outward = tips[apart > tolerances.snap], outward[apart > tolerances.snap]
-    if not len(tips):
-        return tips, tips
-    start = tips + outward * 2 * tolerances.snap
-    end = tips + outward * tolerances.door_gap
+    start, end = tips + outward * 2 * tolerances.snap, tips + outward * tolerances.widest_opening
     k, i = meeting_lines(start, end, (walls.a, walls.b))
-    step = walls.b[i] - walls.a[i]
+    step, to = (walls.b - walls.a)[i], walls.a[i] - tips[k]
     cross = outward[k, 0] * step[:, 1] - outward[k, 1] * step[:, 0]
-    steep = np.abs(cross) > 0.5 * np.hypot(*step.T)
-    k, i, cross = k[steep], i[steep], cross[steep]
-    to = walls.a[i] - tips[k]
-    reach = (to[:, 0] * (walls.b[i] - walls.a[i])[:, 1] - to[:, 1] * (walls.b[i] - walls.a[i])[:, 0]) / cross
+    steep = np.abs(cross) > STEEP * np.hypot(*step.T)
+    reach = (to[:, 0] * step[:, 1] - to[:, 1] * step[:, 0]) / np.where(steep, cross, 1.0)
+    reach = np.where(steep, reach, 0.0)
     order = np.lexsort((reach, k))
     first = order[np.unique(k[order], return_index=True)[1]]
-    blocked = np.zeros(len(tips), dtype=bool)
-    blocked[k] = True
+    first = first[steep[first]]
     return tips[k[first]], tips[k[first]] + outward[k[first]] * reach[first][:, None]
 
 

@@ -14,19 +14,19 @@ Not rooms
 """
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
 from kernelscan.errors import GeometryError
-from kernelscan.geometry.rings import as_ring
-from kernelscan.geometry.shapes import inner_points, rings_around
+from kernelscan.geometry.rings import as_ring, signed_area
+from kernelscan.geometry.shapes import inner_points, lines_near, rings_around
 from kernelscan.plan import Obstacle, Problem, Source
 from kernelscan.plan.room import OpeningKind
 from kernelscan.reading.closed_rooms import FoundRoom, RoomEdge
 from kernelscan.reading.corners import clean_ring
 from kernelscan.reading.faces import DRAWN_OPENING, OUTSIDE, Face, SmallFace, faces_of
-from kernelscan.reading.gaps import connectors, wall_gaps
+from kernelscan.reading.gaps import closing_lines, connectors, wall_gaps
 from kernelscan.reading.layers import LayerRole
 from kernelscan.reading.names import labels_in_rings, room_label
 from kernelscan.reading.outlines import Outline
@@ -46,6 +46,8 @@ from kernelscan.tolerances import Tolerances
 __all__ = ["Barriers", "barriers_by_content", "barriers_by_name", "loose_rooms"]
 
 GRID = 1e-5
+FARTHEST = 5000.0
+SMALLEST_PLAN = 1.0
 STRAIGHT = 1e-3
 LABELLED_AREA, LABELLED_WIDTH = 0.5, 0.5
 FILLED_KINDS = frozenset({"HATCH", "MPOLYGON", "SOLID", "TRACE"})
@@ -54,20 +56,25 @@ KINDS: dict[int, OpeningKind] = {DOOR: "door", WINDOW: "window", GAP: "gap"}
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Barriers:
-    """The strokes that bound rooms and those that are doors and windows."""
+    """The strokes that bound rooms, those that are doors and windows, and the layers on which outlines are solid."""
 
     walls: Sequence[Stroke]
     openings: Sequence[Stroke]
+    bodies: frozenset[str] = frozenset()
 
 
 def barriers_by_name(strokes: Sequence[Stroke], roles: Mapping[str, LayerRole]) -> Barriers:
     """Return what lies on layers named for walls, or, for doors and windows, on layers named so."""
-    walls = [s for s in strokes if roles[s.layer].role in {"wall", "room"}]
+    walls = [
+        s
+        for s in strokes
+        if roles[s.layer].role == "wall" or (roles[s.layer].role == "room" and not s.closed)
+    ]
     return Barriers(walls, [s for s in strokes if roles[s.layer].role == "opening"])
 
 
 def barriers_by_content(strokes: Sequence[Stroke], roles: Mapping[str, LayerRole]) -> Barriers:
-    """Return all that may be a wall where names say nothing: no fillings, and nothing that is named as something else."""
+    """Return all that may be a wall where names say nothing: no fillings, nothing named as something else."""
     walls, openings = [], []
     for stroke in strokes:
         part = roles[stroke.layer].role
@@ -76,9 +83,10 @@ def barriers_by_content(strokes: Sequence[Stroke], roles: Mapping[str, LayerRole
             continue
         if part == "opening" or (part == "unknown" and block == "opening"):
             openings.append(stroke)
-        elif part in {"unknown", "wall", "room", "obstacle"}:
+        elif part in {"unknown", "wall", "obstacle"}:
             walls.append(stroke)
-    return Barriers(walls, openings)
+    solid = frozenset(layer for layer, role in roles.items() if role.role == "obstacle")
+    return Barriers(walls, openings, solid)
 
 
 def loose_rooms(
@@ -97,33 +105,87 @@ def loose_rooms(
     tolerances
         Snap, door gap, widest opening, thickest wall, smallest room.
     """
+    origin = _middle([*barriers.walls, *barriers.openings], metres)
+    barriers, far = _within(barriers, metres, origin)
     strokes = [*barriers.walls, *barriers.openings]
-    if not strokes:
-        return [], []
-    origin = np.rint(np.median(np.concatenate([s.points[:1] for s in strokes]), axis=0) * metres)
+    if not strokes or _reach(strokes, metres) < SMALLEST_PLAN:
+        return [], far
     lines = _closed_lines(barriers, metres, origin, tolerances)
     faces = faces_of(lines, GRID, SmallFace(tolerances.smallest_room, tolerances.thickest_wall))
     named = _named(faces, labels, metres, origin)
-    rooms = _room_faces(faces, named, tolerances)
+    solid = _solid_faces(faces, barriers, metres, origin)
+    rooms = [f for f in _room_faces(faces, named, tolerances) if f not in solid]
     found = [_found(faces[f], origin, strokes, lines, tolerances) for f in rooms]
-    return sorted((room for room in found if room is not None), key=_reading_order), []
+    found.sort(key=_reading_order)
+    walls = lines.where((lines.code == WALL) & (lines.stroke >= 0))
+    if found and _bounded_length(faces, rooms) < tolerances.least_closed * float(walls.length.sum()):
+        return [], [*far, *(_pocket(room) for room in found)]
+    return found, far
+
+
+def _middle(strokes: Sequence[Stroke], metres: float) -> np.ndarray:
+    """Return a whole number of metres amid the strokes, to reckon from; far-off strays do not move it."""
+    if not strokes:
+        return np.zeros(2)
+    return np.asarray(np.rint(np.median(np.concatenate([s.points[:1] for s in strokes]), axis=0) * metres))
+
+
+def _reach(strokes: Sequence[Stroke], metres: float) -> float:
+    """Return the longer side of the box around all strokes."""
+    points = np.concatenate([stroke.points for stroke in strokes])
+    return float(np.ptp(points, axis=0).max() * metres)
+
+
+def _within(barriers: Barriers, metres: float, origin: np.ndarray) -> tuple[Barriers, list[Problem]]:
+    """Leave out what lies farther from the rest than any building reaches, and say so."""
+    problems: list[Problem] = []
+
+    def near(strokes: Sequence[Stroke]) -> list[Stroke]:
+        kept = []
+        for stroke in strokes:
+            if np.abs(stroke.points * metres - origin).max() <= FARTHEST:
+                kept.append(stroke)
+            else:
+                at = (float(stroke.points[0, 0] * metres), float(stroke.points[0, 1] * metres))
+                text = f"{stroke.kind} lies over {FARTHEST / 1000:g} km from the rest; left out"
+                problems.append(Problem("far-off", text, at, Source(stroke.layer, stroke.handle)))
+        return kept
+
+    return replace(barriers, walls=near(barriers.walls), openings=near(barriers.openings)), problems
+
+
+def _bounded_length(faces: Sequence[Face], rooms: Sequence[int]) -> float:
+    """Return how much wall bounds the rooms, their openings not counted."""
+    total = 0.0
+    for f in rooms:
+        for ring, codes in zip(faces[f].rings, faces[f].codes, strict=True):
+            steps = np.hypot(*np.diff(ring, axis=0, append=ring[:1]).T)
+            total += float(steps[codes == WALL].sum())
+    return total
+
+
+def _pocket(room: FoundRoom) -> Problem:
+    text = (
+        f"{room.outline.area:.2f} m2 are enclosed here, but hardly any other wall of the drawing encloses anything: "
+        "an open plan, without rooms"
+    )
+    return Problem("open-plan", text, room.outline.centre, room.outline.source)
 
 
 def _closed_lines(barriers: Barriers, metres: float, origin: np.ndarray, tolerances: Tolerances) -> Segments:
     """Return the walls, the openings' lines and the thresholds that together close the rooms."""
-    swinging = swings_of([*barriers.walls, *barriers.openings], metres, origin)
-    arcs = {k for k, _ in swinging}
     strokes = [*barriers.walls, *barriers.openings]
+    swinging = swings_of(strokes, metres, origin)
+    arcs = {k for k, _ in swinging}
     first = len(barriers.walls)
     codes = [WALL if k < first else opening_code(s.layer, s.blocks) for k, s in enumerate(strokes)]
     whole = segments_of(strokes, codes, metres, origin)
     whole = whole.where(~np.isin(whole.stroke, list(arcs)))
     walls, openings = whole.where(whole.code == WALL), whole.where(whole.code != WALL)
     gaps = wall_gaps(walls, openings, [swing for _, swing in swinging], tolerances)
-    drawn = Segments(
-        whole.a, whole.b, np.where(whole.code == WALL, WALL, whole.code + DRAWN_OPENING), whole.stroke
-    )
-    starts, ends = connectors(whole, tolerances.snap)
+    closing = openings.where(closing_lines(openings, walls, tolerances))
+    drawn = walls.plus(closing.a, closing.b, closing.code + DRAWN_OPENING)
+    starts, ends = connectors(drawn, tolerances.snap)
     joined = drawn.plus(starts, ends, np.full(len(starts), WALL))
     return joined.plus(gaps.a, gaps.b, gaps.code)
 
@@ -132,6 +194,17 @@ def _named(faces: Sequence[Face], labels: Sequence[Label], metres: float, origin
     """Return the faces in which a label that is a name stands."""
     inside = labels_in_rings([face.rings[0] + origin for face in faces], labels, metres)
     return {f for f, texts in enumerate(inside) if texts and room_label(texts).name}
+
+
+def _solid_faces(faces: Sequence[Face], barriers: Barriers, metres: float, origin: np.ndarray) -> set[int]:
+    """Return the faces that lie in an outline of an obstacle layer, the body of a wall or column."""
+    bodies = [
+        s.points * metres - origin for s in barriers.walls if s.layer in barriers.bodies and s.is_ring(0.0)
+    ]
+    if not bodies or not faces:
+        return set()
+    points = inner_points([face.rings[0] for face in faces])
+    return set(rings_around(bodies, points)[0].tolist())
 
 
 def _room_faces(faces: Sequence[Face], named: set[int], tolerances: Tolerances) -> list[int]:
@@ -151,7 +224,7 @@ def _room_faces(faces: Sequence[Face], named: set[int], tolerances: Tolerances) 
     for k, h in zip(inner.tolist(), of_hole.tolist(), strict=True):
         if rooms[k] not in free:
             held[holes[h][0]] = held.get(holes[h][0], 0.0) + faces[rooms[k]].area
-    frames = {f for f in held if _is_frame(faces[f]) and f not in named}
+    frames = {f for f in held if _is_frame(faces[f], f in named)}
     return [
         f
         for f in rooms
@@ -176,13 +249,15 @@ def _is_entered(face: Face) -> bool:
     return any((codes != WALL).any() for codes in face.codes)
 
 
-def _is_frame(face: Face) -> bool:
-    return bool((face.beyond[0] == OUTSIDE).all() and (face.codes[0] == WALL).all())
+def _is_frame(face: Face, has_name: bool) -> bool:
+    """Whether a face that holds rooms opens to nothing outside; with a name in it, only if it holds mostly others."""
+    alone = bool((face.beyond[0] == OUTSIDE).all() and (face.codes[0] == WALL).all())
+    return alone and not (has_name and face.area > signed_area(face.rings[0]) / 2)
 
 
 def _found(
     face: Face, origin: np.ndarray, strokes: Sequence[Stroke], lines: Segments, tolerances: Tolerances
-) -> FoundRoom | None:
+) -> FoundRoom:
     """Return a face as a room: its corners cleaned, its holes obstacles, its openings kept."""
     ring, codes = clean_ring(face.rings[0], face.codes[0], tolerances.snap, STRAIGHT)
     try:
@@ -202,25 +277,17 @@ def _found(
         for k, code in enumerate(codes.tolist())
         if code != WALL
     )
-    area = _area(outline)
+    area = signed_area(outline)
     return FoundRoom(Outline(outline, area, stroke), tuple(obstacles), edges, "walls")
 
 
 def _bounding_stroke(face: Face, strokes: Sequence[Stroke], lines: Segments) -> Stroke:
-    from kernelscan.geometry.shapes import lines_near
-
     ring = face.rings[0]
     long = int(np.argmax(np.hypot(*np.diff(ring, axis=0, append=ring[:1]).T)))
     middle = (ring[long] + ring[(long + 1) % len(ring)]) / 2
     drawn = np.flatnonzero(lines.stroke >= 0)
     _, i = lines_near(middle[None], lines.a[drawn], lines.b[drawn], 10 * GRID)
     return strokes[int(lines.stroke[drawn[i[0]]])] if len(i) else strokes[0]
-
-
-def _area(ring: np.ndarray) -> float:
-    from kernelscan.geometry.rings import signed_area
-
-    return signed_area(ring)
 
 
 def _reading_order(room: FoundRoom) -> tuple[float, float]:

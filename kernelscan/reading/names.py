@@ -86,7 +86,8 @@ def room_label(labels: Sequence[Label], centre: tuple[float, float] | None = Non
     stacks = [stack for stack in _stacks(labels) if _name_of(stack)]
     if not stacks:
         return RoomLabel("", size)
-    best = min(stacks, key=lambda stack: _rank(stack, centre))
+    sizes = [label for label in labels if stated_size(label.text)]
+    best = min(stacks, key=lambda stack: _rank(stack, sizes, centre))
     return RoomLabel(_name_of(best), _nearest_size(best, labels) or size, best[0])
 
 
@@ -119,7 +120,7 @@ def _says_name(label: Label) -> bool:
 
 
 def _is_name(line: str) -> bool:
-    return stated_size(line) is None and any(sign.isalnum() for sign in line)
+    return "=" not in line and stated_size(line) is None and any(sign.isalnum() for sign in line)
 
 
 def _name_of(stack: Sequence[Label]) -> str:
@@ -128,13 +129,25 @@ def _name_of(stack: Sequence[Label]) -> str:
     return " ".join(worded or lines[:1])[:200]
 
 
-def _rank(stack: Sequence[Label], centre: tuple[float, float] | None) -> tuple[int, float, float]:
-    """Return how poor a name the stack makes: notes and bare numbers last, then small letters, then far ones."""
+def _rank(
+    stack: Sequence[Label], sizes: Sequence[Label], centre: tuple[float, float] | None
+) -> tuple[bool, int, float, float]:
+    """Return how poor a name the stack makes: best with a size under it; notes and numbers last, then small ones."""
     head, name = stack[0], _name_of(stack)
     on_layer = set(words(head.layer))
+    sized = any(_stands_under(size, stack[-1]) for size in sizes) or any(
+        stated_size(line) for line in stack[-1].lines
+    )
     poor = 4 * bool(on_layer & NOTE_WORDS) + 2 * (len(name) > LONGEST_NAME) + 2 * (not _LETTERS.search(name))
     far = 0.0 if centre is None else float(np.hypot(head.middle[0] - centre[0], head.middle[1] - centre[1]))
-    return poor - bool(on_layer & NAME_WORDS), -round(head.height, 9), far
+    return not sized, poor - bool(on_layer & NAME_WORDS), -round(head.height, 9), far
+
+
+def _stands_under(size: Label, above: Label) -> bool:
+    """Whether a label that states a size continues a stack: close under its last line and in line with it."""
+    drop = above.middle[1] - size.middle[1]
+    aside = min(abs(above.middle[0] - size.middle[0]), abs(above.start[0] - size.start[0]))
+    return 0 < drop <= STACK_PITCH * above.height and aside <= 2 * above.height
 
 
 def _nearest_size(stack: Sequence[Label], labels: Sequence[Label]) -> StatedSize | None:

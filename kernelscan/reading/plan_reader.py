@@ -29,7 +29,10 @@ __all__ = ["read_plan"]
 
 
 BY_NAMED_WALLS = "No room is outlined; rooms are what the lines on wall, door and window layers enclose."
-BY_DOUBLE_LINES = "No room is outlined and no layer is named for walls, so by content: rooms are what the double lines on {} enclose."
+OPEN_PLAN = "No room is outlined, and the lines on wall, door and window layers close none: an open plan."
+BY_DOUBLE_LINES = (
+    "No layer is named for rooms or walls, so by content: rooms are what the double lines on {} enclose."
+)
 BY_LINES = (
     "No room is outlined and no layer is named for walls, so by content: rooms are what all lines enclose."
 )
@@ -58,28 +61,31 @@ class _Reading:
         ]
         by_option = bool(self.patterns.rooms)
         chosen, rule, problems = chosen_outlines(outlines, self.roles, by_option, self.tolerances)
-        if not by_option and not any(self.roles[o.stroke.layer].role == "room" for o in chosen):
-            loose = self._loose(metres, bool(chosen))
+        if not by_option and not any(part.is_ring(self.tolerances.snap / metres) for part in parts):
+            loose = self._loose(metres, len(chosen))
             if loose is not None:
                 return [*loose[0]], loose[1], [*gaps, *loose[2]]
         found, more = with_obstacles(chosen, obstacles, self.tolerances.snap)
         return found, rule, [*faults, *gaps, *problems, *more]
 
-    def _loose(self, metres: float, has_outlines: bool) -> tuple[list[FoundRoom], str, list[Problem]] | None:
-        """Return the rooms that loose lines enclose, by names, else by content; ``None`` to keep to outlines."""
+    def _loose(self, metres: float, outlined: int) -> tuple[list[FoundRoom], str, list[Problem]] | None:
+        """Return the rooms that loose lines enclose, by names, else by content.
+
+        By content only if there are more of them than are outlined; ``None`` means: keep to those.
+        """
         strokes = self.contents.strokes
         named = barriers_by_name(strokes, self.roles)
         found, problems = loose_rooms(named, self.contents.labels, metres, self.tolerances)
-        if found:
-            return found, BY_NAMED_WALLS, problems
+        if found or any(problem.code == "open-plan" for problem in problems):
+            return found, BY_NAMED_WALLS if found else OPEN_PLAN, problems
         every = barriers_by_content(strokes, self.roles)
         layers = double_layers(every.walls, metres, self.tolerances)
         if layers:
             walls = replace(every, walls=[stroke for stroke in every.walls if stroke.layer in layers])
             found, problems = loose_rooms(walls, self.contents.labels, metres, self.tolerances)
-            if found:
+            if len(found) > outlined:
                 return found, BY_DOUBLE_LINES.format(", ".join(sorted(layers))), problems
-        if has_outlines:
+        if outlined:
             return None
         found, problems = loose_rooms(every, self.contents.labels, metres, self.tolerances)
         return found, BY_LINES, problems
@@ -164,7 +170,15 @@ def _rooms(found: Sequence[FoundRoom], contents: Contents, metres: float) -> tup
         openings = _openings(outline.ring, room.edges)
         name, name_from = _name(number, room_label(inside, (x / metres, y / metres)), own_layer)
         rooms.append(
-            Room(f"R{number:03d}", name, outline.ring, room.obstacles, openings, name_from, outline.source)
+            Room(
+                f"R{number:03d}",
+                name,
+                outline.ring,
+                obstacles=room.obstacles,
+                openings=openings,
+                name_from=name_from,
+                source=outline.source,
+            )
         )
     return tuple(rooms)
 

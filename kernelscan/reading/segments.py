@@ -6,7 +6,6 @@ a leaf drawn from their hinge, are kept apart as swings, from which the width of
 
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
-from typing import Literal
 
 import numpy as np
 
@@ -19,10 +18,11 @@ WALL, DOOR, WINDOW, GAP = 0, 1, 2, 3
 """What a piece is part of, as a number, for arrays; a gap is a piece that nobody drew."""
 
 SMALLEST_LEAF, LARGEST_LEAF = 0.4, 1.6
-WINDOW_WORDS = frozenset(
-    ["window", "windows", "glaz", "glazing", "glass", "fenster", "fenetre", "fenetres", "finestra", "finestre", "ventana", "ventanas", "janela", "janelas", "raam", "ramen", "okno", "okna", "fonster", "vindu", "ikkuna", "pencere"]
-)
-SwingSide = Literal["start", "end"]
+WINDOW_TEXT = """
+    window windows glaz glazing glass fenster fenetre fenetres finestra finestre ventana ventanas janela janelas raam
+    ramen okno okna fonster vindu ikkuna pencere
+"""
+WINDOW_WORDS = frozenset(WINDOW_TEXT.split())
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -76,7 +76,7 @@ def segments_of(
 ) -> Segments:
     """Return the straight pieces of strokes, as coordinates from an origin in metres."""
     starts, ends, code, index = [], [], [], []
-    for k, (stroke, its) in enumerate(zip(strokes, codes, strict=True)):
+    for stroke, its in zip(strokes, codes, strict=True):
         points = stroke.points
         if stroke.closed:
             points = np.concatenate((points, points[:1]))
@@ -118,4 +118,4 @@ def _circle_through(a: np.ndarray, b: np.ndarray, c: np.ndarray) -> tuple[np.nda
         return None
     x = (v[1] * (u @ u) - u[1] * (v @ v)) / cross
     y = (u[0] * (v @ v) - v[0] * (u @ u)) / cross
-    return a + (x, y), float(np.hypot(x, y))
+    return a + np.array((x, y)), float(np.hypot(x, y))
