@@ -16,6 +16,7 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from kernelscan.coverage import RoomZones, Spot, WallZone
+from kernelscan.coverage.wording import Custom, angle_in_words
 from kernelscan.errors import InputError
 from kernelscan.markup.drawing import band_ring, conflict_walls
 from kernelscan.markup.dxf_blocks import PREFIX, Sizes, block_of, set_up
@@ -26,7 +27,6 @@ from kernelscan.markup.symbols import sector
 from kernelscan.markup.tags import Placement, placed_tags
 from kernelscan.markup.text import clean_text
 from kernelscan.markup.view import PlanView, plan_extent
-from kernelscan.coverage.wording import Custom, angle_in_words
 from kernelscan.plan import Plan
 from kernelscan.units import HEADER_UNITS
 

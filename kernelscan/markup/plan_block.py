@@ -8,6 +8,7 @@ from math import pi
 import numpy as np
 
 from kernelscan.coverage import RoomZones
+from kernelscan.coverage.wording import Custom
 from kernelscan.markup.choice import Parts
 from kernelscan.markup.clipping import clipped
 from kernelscan.markup.drawing import (
@@ -26,10 +27,18 @@ from kernelscan.markup.symbols import spot_symbol
 from kernelscan.markup.tags import Tags, number_tags, placed_tags
 from kernelscan.markup.text import cut_to
 from kernelscan.markup.view import PlanView
-from kernelscan.coverage.wording import Custom
 from kernelscan.plan import Plan, Room
 
-__all__ = ["Part", "overview_groups", "part_groups", "parts_of", "plan_groups"]
+__all__ = [
+    "Part",
+    "caption",
+    "overview_groups",
+    "part_groups",
+    "parts_of",
+    "plan_groups",
+    "room_groups",
+    "view_of",
+]
 
 OVERLAP = 8.0
 """How far a part goes on beyond a match line, in millimetres."""
@@ -72,7 +81,8 @@ def _letters(number: int) -> str:
     return (_letters(number // 26 - 1) if number >= 26 else "") + chr(ord("A") + number % 26)
 
 
-def _view(layout: Layout, scale: Scale, shown: Box) -> PlanView:
+def view_of(layout: Layout, scale: Scale, shown: Box) -> PlanView:
+    """Return the window of a layout's plan at a scale, a box of the plan in its middle."""
     plan = layout.plan
     return PlanView(Box(plan.left, plan.bottom + CAPTION, plan.right, plan.top), scale, shown.centre)
 
@@ -80,28 +90,32 @@ def _view(layout: Layout, scale: Scale, shown: Box) -> PlanView:
 def plan_groups(
     plan: Plan, answers: Sequence[RoomZones], layout: Layout, scale: Scale, extent: Box, custom: Custom
 ) -> Iterator[Group]:
-    """Yield the whole plan from back to front; setting-out dimensions have their place under the points."""
-    view = _view(layout, scale, extent)
+    """Yield the whole plan from back to front."""
+    view = view_of(layout, scale, extent)
     tags = placed_tags(answers, view, custom)
     yield Group("linework", tuple(linework_items(plan.linework, view, view.box)))
-    yield from _room_groups(answers, view, tags)
+    yield from room_groups(answers, view, tags)
     words = f"Plan, {scale.text} on {layout.paper.name}"
-    yield Group("caption", (_caption(layout, words, tags),))
+    yield Group("caption", (caption(layout, words, tags),))
 
 
-def _room_groups(answers: Sequence[RoomZones], view: PlanView, tags: Tags) -> Iterator[Group]:
+def room_groups(
+    answers: Sequence[RoomZones], view: PlanView, tags: Tags, setting_out: tuple[Item, ...] = ()
+) -> Iterator[Group]:
+    """Yield rooms and all that is marked in them, from back to front; dimensions lie under the points."""
     rooms = [zones.room for zones in answers]
     yield Group("zones", tuple(item for zones in answers for item in zone_items(zones, view)))
     yield Group("obstacles", tuple(item for room in rooms for item in obstacle_items(room, view)))
     yield Group("rooms", tuple(item for room in rooms for item in outline_items(room, view)))
     yield Group("conflicts", tuple(item for zones in answers for item in conflict_items(zones, view)))
-    yield Group("setting-out", ())
+    yield Group("setting-out", setting_out)
     spots = [spot for zones in answers for spot in zones.recommended]
     yield Group("points", tuple(item for spot in spots for item in spot_symbol(spot, view.point(spot.point))))
     yield Group("tags", tuple(item for tag in tags.placements for item in tag.items()))
 
 
-def _caption(layout: Layout, words: str, tags: Tags) -> Text:
+def caption(layout: Layout, words: str, tags: Tags) -> Text:
+    """Return the line under a plan, with the tags that found no place on it."""
     if tags.missing:
         words += f". Without a place here, see the schedule: {', '.join(tags.missing)}"
     plan = layout.plan
@@ -112,7 +126,7 @@ def overview_groups(
     plan: Plan, answers: Sequence[RoomZones], layout: Layout, scale: Scale, extent: Box, parts: Parts
 ) -> Iterator[Group]:
     """Yield the plan with nothing but outlines and numbers, and the key of the parts over it."""
-    view = _view(layout, scale, extent)
+    view = view_of(layout, scale, extent)
     divided = parts_of(parts, extent, [zones.room for zones in answers])
     names = [(Label((Line(part.name, bold=True, height=HEADING),), framed=True), part) for part in divided]
     tags = number_tags(answers, view, [(label, view.box_on_paper(part.cell)) for label, part in names])
@@ -124,9 +138,9 @@ def overview_groups(
     words = (
         f"Overview, {scale.text} on {layout.paper.name}; the parts {divided[0].name} to {divided[-1].name}"
     )
-    caption = f"{words} follow at {parts.scale.text}, with their zones and points"
+    told = f"{words} follow at {parts.scale.text}, with their zones and points"
     plan_box = layout.plan
-    shown = cut_to(caption, plan_box.width - 4, BODY, bold=True)
+    shown = cut_to(told, plan_box.width - 4, BODY, bold=True)
     yield Group("caption", (Text((plan_box.left + 2, plan_box.bottom + 1.8), shown, bold=True),))
 
 
@@ -135,18 +149,18 @@ def part_groups(
 ) -> Iterator[Group]:
     """Yield one part of a plan, cut a little beyond its match lines."""
     layout = parts.layout
-    view = _view(layout, parts.scale, part.cell)
+    view = view_of(layout, parts.scale, part.cell)
     cell, window = view.box_on_paper(part.cell), _window(view, part)
     shown = [zones for zones in answers if _box_of(view.to_paper(zones.room.outline)).overlaps(window)]
     lines = _match_lines(part, cell, window)
     framed = PlanView(window, view.scale, view.to_plan(window.centre))
     tags = placed_tags(shown, framed, custom, [line for _, line in lines])
     yield Group("linework", tuple(linework_items(plan.linework, view, window)))
-    for group in _room_groups(shown, view, tags):
+    for group in room_groups(shown, view, tags):
         yield Group(group.name, tuple(clipped(group.items, window)))
     yield Group("parts", tuple(_match_items(lines, cell)))
     words = f"Part {part.name}, {parts.scale.text} on {layout.paper.name}"
-    yield Group("caption", (_caption(layout, words, tags),))
+    yield Group("caption", (caption(layout, words, tags),))
 
 
 def _window(view: PlanView, part: Part) -> Box:

@@ -4,12 +4,12 @@ from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
 from kernelscan.coverage import RoomZones
+from kernelscan.coverage.wording import Custom, angle_in_words, kernel_in_words
 from kernelscan.markup.drawing import conflict_walls
 from kernelscan.markup.metrics import text_width
 from kernelscan.markup.scene import Anchor, Box, Item, Stroke, Text
 from kernelscan.markup.style import BODY, CONFLICT_LETTERS, HEADING, MARKS, RULE_PEN, TABLE_PEN
 from kernelscan.markup.text import LINE_PITCH, clean_text, wrapped
-from kernelscan.coverage.wording import Custom, angle_in_words, kernel_in_words
 
 __all__ = ["Column", "Entry", "Schedule", "schedule_of"]
 
@@ -22,8 +22,8 @@ NAME_WIDTH = 30.0
 POINT = 4
 """The column where a remark begins when a room has no point."""
 NOTES = (
-    "x and y are counted from the drawing's own origin. Field: horizontal field of view needed there. Range: to the farthest corner. "
-    "Off by: how far the device may be off and still see every wall."
+    "x and y are counted from the drawing's own origin. Field: horizontal field of view needed there. "
+    "Range: to the farthest corner. Off by: how far the device may be off and still see every wall."
 )
 
 

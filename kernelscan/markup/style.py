@@ -20,6 +20,7 @@ __all__ = [
     "CONFLICT_PEN",
     "CORNER_RADIUS",
     "DEGENERATE_PEN",
+    "DIMENSION_PEN",
     "FRAME_PEN",
     "HEADING",
     "LEADER_PEN",
@@ -100,6 +101,7 @@ ARROW_PEN = Pen(0.35)
 SYMBOL_PEN = Pen(0.35)
 LEADER_PEN = Pen(0.25)
 MATCH_PEN = Pen(0.7, BLACK, (12.0, 2.0, 2.0, 2.0))
+DIMENSION_PEN = Pen(0.25)
 FRAME_PEN = Pen(0.7)
 TABLE_PEN = Pen(0.18)
 RULE_PEN = Pen(0.35)

@@ -11,6 +11,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from kernelscan.coverage import RoomZones
+from kernelscan.coverage.wording import Custom, kernel_in_words
 from kernelscan.markup.drawing import conflict_walls, corner_rings, seeing_arrow
 from kernelscan.markup.labels import Label, Line, boxes_around, dot, nearest_in
 from kernelscan.markup.placing import Occupied, boxes_inside, inner_points
@@ -19,9 +20,8 @@ from kernelscan.markup.style import CONFLICT_LETTERS, HEADING, LEADER_PEN, MARKS
 from kernelscan.markup.symbols import box_around, spot_ring
 from kernelscan.markup.text import clean_text, wrapped
 from kernelscan.markup.view import PlanView
-from kernelscan.coverage.wording import Custom, kernel_in_words
 
-__all__ = ["Placement", "Tags", "number_tags", "placed_tags"]
+__all__ = ["Placement", "Tags", "number_tags", "place_tags", "placed_tags", "tags_around_marks"]
 
 WIDEST_NAME = 36.0
 """A longer name is wrapped over two lines, in millimetres."""
@@ -91,16 +91,28 @@ class _Place:
 def placed_tags(
     answers: Sequence[RoomZones], view: PlanView, custom: Custom, lines: Sequence[tuple[Point, Point]] = ()
 ) -> Tags:
-    """Return every tag of the plan, none touching another, a symbol, a wall in conflict or one of the lines given.
+    """Return every tag of the plan, none touching another, a symbol, a wall in conflict or one of the lines given."""
+    tags = tags_around_marks(answers, view)
+    for line in lines:
+        tags.taken.add_line(*line)
+    place_tags(tags, answers, view, custom)
+    return tags
+
+
+def tags_around_marks(answers: Sequence[RoomZones], view: PlanView) -> Tags:
+    """Return no tags as yet, and the places of all symbols and walls in conflict taken."""
+    tags = Tags(view.box)
+    for zones in answers:
+        _keep_marks_clear(zones, view, tags)
+    return tags
+
+
+def place_tags(tags: Tags, answers: Sequence[RoomZones], view: PlanView, custom: Custom) -> None:
+    """Place the letters and the tags of rooms where nothing is taken.
 
     A room too small for more than its number gets that first, and the letters of its points after it.
     """
-    tags = Tags(view.box)
-    for line in lines:
-        tags.taken.add_line(*line)
     places = [_place(zones, view) for zones in answers]
-    for zones in answers:
-        _keep_marks_clear(zones, view, tags)
     waiting = []
     for place in places:
         cramped = not _has_room(place, custom, tags)
@@ -113,7 +125,6 @@ def placed_tags(
     outlines = np.concatenate([_edges(place.rings[0]) for place in places]) if places else np.empty((0, 4))
     for place in waiting:
         _place_outside(place, custom, outlines, tags)
-    return tags
 
 
 def number_tags(answers: Sequence[RoomZones], view: PlanView, corners: Sequence[tuple[Label, Box]]) -> Tags:

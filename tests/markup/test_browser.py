@@ -15,16 +15,21 @@ from markup.cases import classics, floor, plan_of
 from kernelscan import read_plan
 from kernelscan.coverage import room_zones
 from kernelscan.markup.metrics import text_width
+from kernelscan.markup.room_sheets import compose_room_sheets
 from kernelscan.markup.scene import Box, Scene
 from kernelscan.markup.sheet import SheetOptions, compose_zone_sheets
 from kernelscan.markup.svg import svg_text
 
 MEASURE = """
 const svgs = [...document.querySelectorAll("svg")];
-const found = svgs.map(svg => [...svg.querySelectorAll("text")].map(text => {
-  const box = text.getBBox();
-  return {string: text.textContent, box: [box.x, box.y, box.x + box.width, box.y + box.height]};
-}));
+const found = svgs.map(svg => {
+  const sheet = svg.getBoundingClientRect(), mm = svg.viewBox.baseVal.width / sheet.width;
+  return [...svg.querySelectorAll("text")].map(text => {
+    const box = text.getBoundingClientRect();
+    const sides = [box.left - sheet.left, box.top - sheet.top, box.right - sheet.left, box.bottom - sheet.top];
+    return {string: text.textContent, box: sides.map(side => side * mm)};
+  });
+});
 const out = document.createElement("pre");
 out.id = "found";
 out.textContent = JSON.stringify(found);
@@ -99,6 +104,8 @@ def test_no_two_texts_touch_on_any_sheet(
         )
         for i, sheet in enumerate(compose_zone_sheets(plan_of(answers, unit), answers, options), 1):
             sheets[f"{name}-{i}"] = sheet
+    for i, sheet in enumerate(compose_room_sheets(plan_of(classics()), classics()), 1):
+        sheets[f"room-{i}"] = sheet
     body = "".join(svg_text(sheet).partition("?>")[2] for sheet in sheets.values())
     measured = found_by(browser, tmp_path / "sheets.html", body, MEASURE)
     assert len(measured) == len(sheets)

@@ -8,13 +8,13 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from markup.cases import POINT, L, U, classics, floor, moved, plan_of
 
+from kernelscan.coverage.wording import Custom
 from kernelscan.markup.paper import Scale
 from kernelscan.markup.placing import Occupied, boxes_inside, inner_points
 from kernelscan.markup.scene import Box
 from kernelscan.markup.sheet import SheetOptions, compose_zone_sheets
 from kernelscan.markup.tags import placed_tags
 from kernelscan.markup.view import PlanView, clipped_segment
-from kernelscan.coverage.wording import Custom
 
 WINDOW = Box(0, 0, 400, 300)
 
