@@ -75,5 +75,6 @@ def without_flat_corners(region: list[Point]) -> list[Point]:
 
 def twice_area(corners: Sequence[Point]) -> Fraction:
     return sum(
-        (p[0] * q[1] - p[1] * q[0] for p, q in zip(corners, [*corners[1:], *corners[:1]], strict=True)), Fraction(0)
+        (p[0] * q[1] - p[1] * q[0] for p, q in zip(corners, [*corners[1:], *corners[:1]], strict=True)),
+        Fraction(0),
     )

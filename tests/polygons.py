@@ -13,9 +13,9 @@ Points = np.ndarray
 
 def star(rng: Rng, n: int) -> Points:
     """Random radii at sorted random angles: the centre sees every wall."""
-    angles = np.sort(rng.uniform(0, 2 * pi, n))
-    gap = 2 * pi / n
-    angles = np.where(np.ptp(angles) < pi, np.arange(n) * gap, angles)
+    angles = np.zeros(n)
+    while np.diff(angles, append=angles[0] + 2 * pi).max() >= pi:
+        angles = np.sort(rng.uniform(0, 2 * pi, n))
     return polar(angles, rng.uniform(0.3, 1.0, n) * 10)
 
 
@@ -35,15 +35,11 @@ def convex(n: int) -> Points:
     return polar(np.arange(n) * (2 * pi / n), np.full(n, 10.0))
 
 
-def dented(n: int, every: int = 10, depth: float = 0.2) -> Points:
-    """A regular polygon in which every so many corners one is pushed in, by a part of what keeps it convex or more.
-
-    The two walls at a dent turn inward about their outer ends, so that the kernel has about 2 n / every sides.
-    """
+def dented(n: int, every: int = 20) -> Points:
+    """A regular polygon with a shallow dent at every so many corners: a kernel of about n / 10 sides."""
     angles = np.arange(n) * (2 * pi / n)
     radii = np.full(n, 10.0)
-    sagitta = 10 * (1 - cos(2 * pi / n))
-    radii[::every] -= (1 + depth) * sagitta
+    radii[::every] -= 100 * (1 - cos(2 * pi / n))
     return polar(angles, radii)
 
 

@@ -29,8 +29,6 @@ Letters
 """
 
 from collections.abc import Iterable
-from fractions import Fraction
-from itertools import pairwise
 from math import inf
 from typing import Literal
 
@@ -42,7 +40,6 @@ from kernelscan.geometry.predicates import (
     exact_line,
     first_conflict,
     meet,
-    quotient,
     sign,
     turn,
     value,
@@ -52,6 +49,8 @@ __all__ = ["ConvexRegion", "Shape", "region_of"]
 
 Shape = Literal["area", "segment", "point", "empty"]
 Floats = tuple[float, float, float]
+Place = tuple[float, float]
+Rows = dict[int, Row]
 
 UNIT = 2.0**-53
 FILTER = 64 * UNIT
@@ -65,13 +64,13 @@ class ConvexRegion:
     Parameters
     ----------
     rows
-        The half-planes, by number; more of them may be appended while the region lives.
+        The half-planes by number; more of them may be added while the region lives.
     first, second
         The numbers of two rows, the second turning left from the first.
-    reach
-        A bound M on the coordinates of all the rows' border points, as seen from the origin.
     origin
         The local origin for the filter.
+    reach
+        A bound M on the coordinates of all the rows' border points, as seen from the origin.
     """
 
     __slots__ = (
@@ -88,9 +87,7 @@ class ConvexRegion:
         "shape",
     )
 
-    def __init__(
-        self, rows: list[Row], first: int, second: int, origin: tuple[float, float], reach: float
-    ) -> None:
+    def __init__(self, rows: Rows, first: int, second: int, origin: Place, reach: float) -> None:
         self.rows, self.origin, self.reach = rows, origin, reach
         self.bound = FILTER * reach + TINY if reach <= 2.0**1000 else inf
         self.exact: dict[int, Line] = {INFINITE: AT_INFINITY}
@@ -104,21 +101,22 @@ class ConvexRegion:
     def cut_by_all(self, numbers: Iterable[int]) -> None:
         """Cut by the half-planes in turn, and stop as soon as nothing is left."""
         for i in numbers:
-            self.cut(i)
+            line = u, v, w = self._float_line(i)
+            values = [u * x + v * y + w * z for x, y, z in self.corners]
+            if min(values) > self.bound:
+                continue
+            self._cut(i, line, self._signs(i, values))
             if self.shape == "empty":
                 return
 
-    def cut(self, i: int) -> None:
-        """Cut by half-plane i."""
-        line = u, v, w = self._float_line(i)
-        values = [u * x + v * y + w * z for x, y, z in self.corners]
-        if min(values) > self.bound:
+    def _cut(self, i: int, line: Floats, signs: list[int]) -> None:
+        if min(signs) >= 0:
             return
         if self.shape == "area":
-            self._cut_area(i, line, self._signs(i, values))
+            self._cut_area(i, line, signs)
         elif self.shape == "segment":
-            self._cut_segment(i, *self._signs(i, values))
-        elif self.shape == "point" and self._signs(i, values)[0] < 0:
+            self._cut_segment(i, *signs)
+        else:
             self._empty((*self.proof, i))
 
     @property
@@ -138,16 +136,6 @@ class ConvexRegion:
     def exact_corners(self) -> list[Triple]:
         """Return the corners in order; those at infinity have W = 0."""
         return [self.exact_corner(name) for name in self.corner_names()] if self.shape != "empty" else []
-
-    def area(self) -> float:
-        """Return the area of a bounded region, within a few units in the last place; infinity beyond the doubles."""
-        if self.shape != "area":
-            return 0.0
-        corners = [(Fraction(x, w), Fraction(y, w)) for x, y, w in self.exact_corners()]
-        (ox, oy), *others = corners
-        arms = [(x - ox, y - oy) for x, y in others]
-        twice = sum((px * qy - py * qx for (px, py), (qx, qy) in pairwise(arms)), Fraction(0))
-        return quotient(twice.numerator, 2 * twice.denominator)
 
     def exact_corner(self, name: tuple[int, int]) -> Triple:
         """Return where two lines meet."""
@@ -180,21 +168,26 @@ class ConvexRegion:
         ]
 
     def _cut_area(self, i: int, line: Floats, signs: list[int]) -> None:
-        if min(signs) >= 0:
-            return
         if max(signs) <= 0:
             self._collapse(i, signs)
             return
-        count = len(signs)
-        first = next(k for k in range(count) if signs[k] > 0 and signs[k - 1] <= 0)
-        length = 1
-        while signs[(first + length) % count] > 0:
-            length += 1
-        kept = [(first - 1 + k) % count for k in range(length + 1)]
-        self.names = [self.names[k] for k in kept] + [i]
-        self.lines = [self.lines[k] for k in kept] + [line]
-        corners = [self.corners[k] for k in kept[1:]]
-        self.corners = [_cross(line, self.lines[0]), *corners, _cross(self.lines[-2], line)]
+        if signs[0] <= 0 or signs[-1] <= 0:
+            first = signs.index(1)
+        else:
+            first = len(signs) - next(k for k, s in enumerate(reversed(signs)) if s <= 0)
+        self._turn_to(first)
+        after = next(k for k, s in enumerate(signs[first:] + signs[:first]) if s <= 0)
+        names, lines, corners = self.names, self.lines, self.corners
+        self.names = [names[-1], *names[:after], i]
+        self.corners = [_cross(line, lines[-1]), *corners[:after], _cross(lines[after - 1], line)]
+        self.lines = [lines[-1], *lines[:after], line]
+
+    def _turn_to(self, k: int) -> None:
+        """Let the cyclic list start at corner k."""
+        if k:
+            self.names = self.names[k:] + self.names[:k]
+            self.lines = self.lines[k:] + self.lines[:k]
+            self.corners = self.corners[k:] + self.corners[:k]
 
     def _collapse(self, i: int, signs: list[int]) -> None:
         """No corner is strictly inside: what is left is where the border touches the region."""
@@ -235,8 +228,6 @@ class ConvexRegion:
     def _cut_segment(self, i: int, start: int, end: int) -> None:
         before, carrier, after = self.names
         carriers = (self.proof[0], self.proof[1])
-        if start >= 0 and end >= 0:
-            return
         if start > 0:
             self._become_segment(before, carrier, i, carriers)
         elif end > 0:
@@ -261,24 +252,39 @@ def _cross(g: Floats, h: Floats) -> Floats:
     return g[1] * h[2] - h[1] * g[2], g[2] * h[0] - h[2] * g[0], g[0] * h[1] - h[0] * g[1]
 
 
-def region_of(rows: list[Row]) -> ConvexRegion:
-    """Return the intersection of half-planes that are not all parallel."""
+def region_of(rows: Rows, origin: Place | None = None, reach: float | None = None) -> ConvexRegion | None:
+    """Return the intersection of half-planes; None if all of them are parallel.
+
+    Parameters
+    ----------
+    rows
+        The half-planes by number.
+    origin, reach
+        A local origin and a bound on all coordinates as seen from there, of these rows and of any to be added
+        later; found from the rows if not given.
+    """
     pair = _starting_pair(rows)
-    assert pair is not None
-    ox, oy = rows[0][:2]
-    reach = max(max(abs(row[0] - ox), abs(row[1] - oy)) for row in rows)
-    region = ConvexRegion(rows, *pair, (ox, oy), reach)
-    region.cut_by_all(i for i in range(len(rows)) if i not in pair)
+    if pair is None:
+        return None
+    if origin is None or reach is None:
+        origin, reach = _surroundings(rows)
+    region = ConvexRegion(rows, *pair, origin, reach)
+    region.cut_by_all(i for i in rows if i not in pair)
     return region
 
 
-def _starting_pair(rows: list[Row]) -> tuple[int, int] | None:
+def _surroundings(rows: Rows) -> tuple[Place, float]:
+    xs, ys = [row[0] for row in rows.values()], [row[1] for row in rows.values()]
+    ox, oy = xs[0], ys[0]
+    return (ox, oy), max(max(xs) - ox, ox - min(xs), max(ys) - oy, oy - min(ys))
+
+
+def _starting_pair(rows: Rows) -> tuple[int, int] | None:
     """Return the first row and the first that is not parallel to it, the second turning left from the first."""
-    if not rows:
-        return None
-    base = exact_line(rows[0])
-    for i in range(1, len(rows)):
+    first, *others = rows
+    base = exact_line(rows[first])
+    for i in others:
         way = turn(base, exact_line(rows[i]))
         if way:
-            return (0, i) if way > 0 else (i, 0)
+            return (first, i) if way > 0 else (i, first)
     return None

@@ -19,12 +19,20 @@ from fractions import Fraction
 import numpy as np
 import numpy.typing as npt
 
+from kernelscan.geometry.areas import polygon_area, ring_area
 from kernelscan.geometry.clipping import Shape, region_of
+from kernelscan.geometry.convexity import is_surely_convex
 from kernelscan.geometry.halfplanes import wall_numbers, wall_rows
-from kernelscan.geometry.predicates import Row, exact_line, meet, rounded
+from kernelscan.geometry.intersection import FEW, Solution, corners_of, solve
+from kernelscan.geometry.predicates import Row, Triple, exact_line, meet, rounded
+from kernelscan.geometry.pruning import RingSource
 from kernelscan.geometry.rings import Ring, as_rings
 
 __all__ = ["Kernel", "Shape", "kernel_of_rings", "visibility_kernel"]
+
+
+NO_POINTS: npt.NDArray[np.float64] = np.zeros((0, 2))
+NO_WALLS: npt.NDArray[np.int64] = np.zeros((0, 2), dtype=np.int64)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -62,10 +70,10 @@ class Kernel:
             return ()
         rows = [_wall_row(self._rings, ring, edge) for ring, edge in self.walls.tolist()]
         if self.kind == "area":
-            lines = [exact_line(row) for row in rows]
-            triples = [meet(lines[k - 1], line) for k, line in enumerate(lines)]
+            triples = _corners_around(rows)
         else:
-            triples = region_of(rows).exact_corners()
+            region = region_of(dict(enumerate(rows)))
+            triples = region.exact_corners() if region is not None else []
         return tuple((Fraction(x, w), Fraction(y, w)) for x, y, w in triples)
 
 
@@ -93,15 +101,64 @@ def kernel_of_rings(rings: Sequence[Ring]) -> Kernel:
 
     Nothing is checked; see :func:`~kernelscan.geometry.rings.as_rings`.
     """
-    region = region_of(wall_rows(rings))
-    corners = [rounded(corner) for corner in region.exact_corners()]
-    vertices = np.array(corners, dtype=np.float64).reshape(-1, 2)
-    sides = region.names if region.shape == "area" else region.proof
-    walls = wall_numbers(rings, np.array(sides, dtype=np.intp))
-    none = walls[:0]
+    count = sum([len(ring) for ring in rings])
+    if count <= FEW:
+        return _of_few(rings)
+    if len(rings) == 1 and is_surely_convex(rings[0]):
+        return _whole(rings[0])
+    source = RingSource(rings)
+    solution = solve(source)
+    if solution.kind == "empty":
+        conflict = wall_numbers(rings, np.array(solution.conflict, dtype=np.int64))
+        return Kernel("empty", NO_POINTS, 0.0, NO_WALLS, conflict, tuple(rings))
+    walls = wall_numbers(rings, solution.sides)
+    vertices, area = _corners_of_many(source, solution)
+    return Kernel(solution.kind, vertices, area, walls, NO_WALLS, tuple(rings))
+
+
+def _whole(ring: Ring) -> Kernel:
+    """A convex room."""
+    walls = np.zeros((len(ring), 2), dtype=np.int64)
+    walls[:, 1] = np.arange(len(ring))
+    return Kernel("area", ring, ring_area(ring), walls, NO_WALLS, (ring,))
+
+
+def _of_few(rings: Sequence[Ring]) -> Kernel:
+    region = region_of(dict(enumerate(wall_rows(rings))))
+    assert region is not None  # the walls around a room are not all parallel
+    corners = region.exact_corners()
+    vertices = [rounded(corner) for corner in corners]
+    walls = _named(rings, region.names if region.shape == "area" else region.proof)
     if region.shape == "empty":
-        return Kernel("empty", vertices, 0.0, none, walls, tuple(rings))
-    return Kernel(region.shape, vertices, region.area(), walls, none, tuple(rings))
+        return Kernel("empty", NO_POINTS, 0.0, NO_WALLS, walls, tuple(rings))
+    area = polygon_area(vertices, lambda: corners) if region.shape == "area" else 0.0
+    return Kernel(region.shape, np.array(vertices), area, walls, NO_WALLS, tuple(rings))
+
+
+def _corners_of_many(source: RingSource, solution: Solution) -> tuple[npt.NDArray[np.float64], float]:
+    sides = source.rows(solution.sides)
+    if solution.corners is not None:
+        row = dict(zip(solution.sides.tolist(), sides.tolist(), strict=True))
+        triples = corners_of(solution.corners, row.__getitem__)
+        return np.array([rounded(triple) for triple in triples]), 0.0
+    before = np.roll(sides, 1, axis=0)
+    vertices = sides[:, :2].copy()
+    for k in np.flatnonzero((before[:, 4:] != vertices).any(axis=1)).tolist():
+        vertices[k] = rounded(meet(exact_line(before[k].tolist()), exact_line(sides[k].tolist())))
+    return vertices, polygon_area(vertices.tolist(), lambda: _corners_around(sides.tolist()))
+
+
+def _corners_around(sides: Sequence[Row]) -> list[Triple]:
+    """Return where each side meets the one before it."""
+    lines = [exact_line(row) for row in sides]
+    return [meet(lines[k - 1], line) for k, line in enumerate(lines)]
+
+
+def _named(rings: Sequence[Ring], places: Sequence[int]) -> npt.NDArray[np.int64]:
+    """Return the walls at a few places counted through all the rings."""
+    if len(rings) == 1:
+        return np.array([(0, place) for place in places], dtype=np.int64)
+    return wall_numbers(rings, np.array(places, dtype=np.int64))
 
 
 def _wall_row(rings: Sequence[Ring], ring: int, edge: int) -> Row:

@@ -54,17 +54,23 @@ AT_INFINITY: Line = (0, 0, 1)
 
 def exact_line(row: Row) -> Line:
     """Return integers (u, v, w) with u x + v y + w >= 0 exactly on the half-plane of the row."""
-    (px, py), d = _integers(row[:2])
-    (tx, ty, hx, hy), _ = _integers(row[2:])
-    u, v = ty - hy, hx - tx
-    return u * d, v * d, -(u * px + v * py)
+    px, py, tx, ty, hx, hy = row
+    tx_, ty_, hx_, hy_, d = _integers(tx, ty, hx, hy)
+    u, v = ty_ - hy_, hx_ - tx_
+    if px == tx and py == ty:
+        return u * d, v * d, -(u * tx_ + v * ty_)
+    px_, py_, _, _, d = _integers(px, py, px, py)
+    return u * d, v * d, -(u * px_ + v * py_)
 
 
-def _integers(numbers: Sequence[float]) -> tuple[list[int], int]:
-    """Return the numbers times their least common denominator, a power of two, and that denominator."""
-    ratios = [float(number).as_integer_ratio() for number in numbers]
-    common = max(ratio[1] for ratio in ratios)
-    return [numerator * (common // denominator) for numerator, denominator in ratios], common
+def _integers(a: float, b: float, c: float, d: float) -> tuple[int, int, int, int, int]:
+    """Return four numbers times their least common denominator, a power of two, and that denominator."""
+    a_, p = a.as_integer_ratio()
+    b_, q = b.as_integer_ratio()
+    c_, r = c.as_integer_ratio()
+    d_, s = d.as_integer_ratio()
+    common = max(p, q, r, s)
+    return a_ * (common // p), b_ * (common // q), c_ * (common // r), d_ * (common // s), common
 
 
 def turn(g: Line, h: Line) -> int:

@@ -1,0 +1,244 @@
+"""The intersection of closed half-planes, exactly, from three to millions.
+
+Problem
+    Its kind (an area, a segment, a point or empty), its sides in order, its corners; of an empty one, two or three
+    half-planes that exclude each other.
+Method
+    Few half-planes cut a region one after the other (:mod:`~kernelscan.geometry.clipping`). Of many, a sample is cut
+    first. If nothing is left of it, nothing is left of all; so, too, for the first few, since walls that
+    follow each other often exclude each other. Else one pass drops every half-plane that holds what
+    the sample leaves (:mod:`~kernelscan.geometry.pruning`); the rest is sampled again, and so on until few are left.
+    Where a pass drops too little, because the intersection has very many sides, the sides are found by local
+    elimination (:mod:`~kernelscan.geometry.elimination`).
+Exactness
+    Signs come from floats with proven bounds or else from integers, for the six doubles of each half-plane as they are
+    stored. Corners are named by two half-planes and rounded once, at the end.
+Degenerate cases
+    An unbounded intersection is an area without some corners, or a segment of which one end or both are missing.
+Cost
+    Expected O(n) for n half-planes and few sides; O(n log n) at most but for numbers that leave every sign in doubt.
+Source
+    The sampling follows Clarkson, Las Vegas algorithms for linear and integer programming, J. ACM 42(2), 1995.
+"""
+
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from fractions import Fraction
+from itertools import pairwise
+from typing import NamedTuple
+
+import numpy as np
+import numpy.typing as npt
+
+from kernelscan.geometry.areas import polygon_area
+from kernelscan.geometry.clipping import INFINITE, ConvexRegion, Shape, region_of
+from kernelscan.geometry.elimination import sides_of
+from kernelscan.geometry.halfplanes import HalfPlanes
+from kernelscan.geometry.predicates import Row, Triple, exact_line, meet, rounded
+from kernelscan.geometry.pruning import HalfPlaneSource, Indices, Outline, RowSource, survivors
+
+__all__ = ["FEW", "Intersection", "Solution", "corners_of", "intersect", "solve"]
+
+FEW = 64
+SAMPLE = 48
+HEADS = (16, 128, 1024)
+HEAD_SHARE = 64
+GOLDEN = 0.6180339887498949
+
+
+class Solution(NamedTuple):
+    """An intersection by the numbers of its half-planes.
+
+    Attributes
+    ----------
+    kind
+        What it is.
+    sides
+        Of an area its sides in order, side i from corner i to corner i + 1; of a thin one those that prove it.
+    conflict
+        Of an empty one, two or three that exclude each other.
+    corners
+        The two half-planes that meet in each finite corner; ``None`` for a bounded area, where they are neighbours.
+    is_bounded
+        Whether it is.
+    """
+
+    kind: Shape
+    sides: Indices
+    conflict: tuple[int, ...] = ()
+    corners: Sequence[tuple[int, int]] | None = None
+    is_bounded: bool = True
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Intersection:
+    """The common points of some half-planes.
+
+    Attributes
+    ----------
+    kind
+        An area, a segment (of an unbounded one, a ray or a line), a point or empty.
+    vertices
+        ``(k, 2)`` its finite corners, each coordinate the double nearest to the exact one; of an area
+        counter-clockwise, of an unbounded one from one end to the other.
+    area
+        Its area; infinity for an unbounded one.
+    sides
+        ``(s,)`` which half-planes bound it: of a bounded area, side i runs from vertex i to vertex i + 1; of an
+        unbounded one, from vertex i - 1 to vertex i. Of a thin one, up to four that have nothing else in common.
+    conflict
+        ``(2,)`` or ``(3,)`` half-planes that have no common point; ``(0,)`` unless empty.
+    is_bounded
+        Whether it is.
+    planes
+        The half-planes; ``planes.walls`` has the wall of each.
+    """
+
+    kind: Shape
+    vertices: npt.NDArray[np.float64]
+    area: float
+    sides: npt.NDArray[np.int64]
+    conflict: npt.NDArray[np.int64]
+    is_bounded: bool
+    planes: HalfPlanes
+    _corners: tuple[tuple[int, int], ...]
+
+    @property
+    def walls(self) -> npt.NDArray[np.int64]:
+        """``(s, 2)``: the walls that the sides come from."""
+        return self.planes.walls[self.sides]
+
+    def rationals(self) -> tuple[tuple[Fraction, Fraction], ...]:
+        """Return the exact corners, in the order of ``vertices``."""
+        triples = corners_of(self._corners, lambda i: self.planes.rows[i].tolist())
+        return tuple((Fraction(x, w), Fraction(y, w)) for x, y, w in triples)
+
+
+def intersect(half_planes: HalfPlanes) -> Intersection:
+    """Return what closed half-planes have in common; all of the plane is an unbounded area without sides."""
+    solution = solve(RowSource(half_planes.rows))
+    names = solution.corners
+    if names is None:
+        numbers = solution.sides.tolist()
+        names = list(zip([numbers[-1], *numbers[:-1]], numbers, strict=True)) if numbers else []
+    triples = corners_of(names, lambda i: half_planes.rows[i].tolist())
+    vertices = np.array([rounded(triple) for triple in triples], dtype=np.float64).reshape(-1, 2)
+    area = 0.0
+    if solution.kind == "area":
+        area = polygon_area(vertices.tolist(), lambda: triples) if solution.is_bounded else np.inf
+    conflict = np.array(solution.conflict, dtype=np.int64)
+    return Intersection(
+        solution.kind,
+        vertices,
+        area,
+        solution.sides,
+        conflict,
+        solution.is_bounded,
+        half_planes,
+        tuple(names),
+    )
+
+
+def corners_of(names: Sequence[tuple[int, int]], row: Callable[[int], Row]) -> list[Triple]:
+    """Return where the named pairs of half-planes meet."""
+    lines = {i: exact_line(row(i)) for i in {i for name in names for i in name}}
+    return [meet(lines[g], lines[h]) for g, h in names]
+
+
+def solve(source: HalfPlaneSource) -> Solution:
+    """Return the intersection of many half-planes or of few."""
+    count = len(source)
+    if count <= FEW:
+        region = region_of(_rows(source, np.arange(count))) if count else None
+        return _eliminated(source, np.arange(count)) if region is None else _solved(region)
+    for size in HEADS:
+        if count < size * HEAD_SHARE and size != HEADS[0]:
+            break
+        head = solve(RowSource(source.rows(np.arange(size))))
+        if head.kind == "empty":
+            return head
+    return _sampled(source, _spread(count))
+
+
+def _sampled(source: HalfPlaneSource, sample: Indices) -> Solution:
+    """Cut by a sample, drop what holds the rest of it, and so on with a sample of what is left."""
+    region = region_of(_rows(source, sample), *source.surroundings())
+    pool = None
+    while region is not None and region.shape != "empty":
+        outline = Outline.of(region)
+        if outline is None and region.shape == "area":
+            return _eliminated(source, pool)
+        before = len(source) if pool is None else len(pool)
+        pool = _without(_survivors(source, pool, outline), region)
+        if len(pool) <= FEW or region.shape != "area":
+            _cut(region, source, pool)
+            break
+        if 2 * len(pool) > before:
+            return _eliminated(source, np.concatenate([region.names, pool]))
+        _cut(region, source, pool[_spread(len(pool))])
+    return _eliminated(source, pool) if region is None else _solved(region)
+
+
+def _survivors(source: HalfPlaneSource, pool: Indices | None, outline: Outline | None) -> Indices:
+    if outline is None:
+        return np.arange(len(source)) if pool is None else pool
+    if pool is None:
+        return survivors(source, outline)
+    return pool[survivors(RowSource(source.rows(pool)), outline)]
+
+
+def _without(numbers: Indices, region: ConvexRegion) -> Indices:
+    """Leave out the lines of the region itself."""
+    own = region.names if region.shape == "area" else region.proof
+    places = np.searchsorted(numbers, own)
+    known = places < len(numbers)
+    places = places[known]
+    return np.delete(numbers, places[numbers[places] == np.array(own)[known]])
+
+
+def _spread(count: int) -> Indices:
+    """Return some numbers below count, far from each other and from any period."""
+    places: Indices = np.unique((np.arange(1, SAMPLE + 1) * GOLDEN % 1 * count).astype(np.int64))
+    return places
+
+
+def _rows(source: HalfPlaneSource, numbers: Indices) -> dict[int, Row]:
+    return dict(zip(numbers.tolist(), source.rows(numbers).tolist(), strict=True))
+
+
+def _cut(region: ConvexRegion, source: HalfPlaneSource, numbers: Indices) -> None:
+    region.rows.update(_rows(source, numbers))
+    region.cut_by_all(numbers.tolist())
+
+
+def _solved(region: ConvexRegion) -> Solution:
+    """Return a region as a solution."""
+    if region.shape == "empty":
+        return Solution("empty", np.zeros(0, dtype=np.int64), region.conflict, ())
+    corners = [name for name in region.corner_names() if INFINITE not in name]
+    if region.shape != "area":
+        return Solution(region.shape, np.array(region.proof), (), corners, region.is_bounded)
+    if region.is_bounded:
+        return Solution("area", np.array(region.names))
+    first = region.names.index(INFINITE) + 1
+    sides = [*region.names[first:], *region.names[: first - 1]]
+    return Solution("area", np.array(sides), (), list(pairwise(sides)), is_bounded=False)
+
+
+def _eliminated(source: HalfPlaneSource, numbers: Indices | None) -> Solution:
+    """Find the sides of many half-planes, of all if no numbers are given."""
+    if numbers is None:
+        numbers = np.arange(len(source))
+    if not len(numbers):
+        return Solution("area", numbers, (), (), is_bounded=False)
+    found = sides_of(source.rows(numbers))
+    if found.conflict:
+        return Solution("empty", numbers[:0], tuple(numbers[list(found.conflict)].tolist()), ())
+    if len(found.thin) == 2:
+        return Solution("segment", numbers[list(found.thin)], (), (), is_bounded=False)
+    if found.thin:
+        return _sampled(source, numbers[list(found.thin)])
+    sides = numbers[found.order]
+    if found.is_bounded:
+        return Solution("area", sides)
+    return Solution("area", sides, (), list(pairwise(sides.tolist())), is_bounded=False)

@@ -1,0 +1,255 @@
+"""Which of many half-planes may cut a small convex region: one pass over memory.
+
+Problem
+    Given a region that is already known to hold the intersection, find among very many half-planes the few that do
+    not surely hold all of it; the others change nothing.
+Method
+    With c a double near the region and q its corners as seen from c, a half-plane with border point p and way d has
+    at a corner the value d x (c - p) + d x q. The least of these over a box |q_x| <= r_x, |q_y| <= r_y is
+    d x (c - p) - |d_x| r_y - |d_y| r_x: a few array operations, in portions that stay in the cache. The
+    half-planes that do not hold the box are asked about the corners themselves, all at once as a matrix product.
+Exactness
+    What is dropped is surely held. With e = 2**-53: c - p errs by a part e, d by a part e, the two products each by a
+    part 3 e more, so d x (c - p) is off by less than 5 e (|d_x| |c_y - p_y| + |d_y| |c_x - p_x|), which is bounded with
+    the largest |c - p| of the portion and added to r. The corners' own errors and that of the matrix product,
+    3 e |d| |q|, are added likewise. Overflow gives infinities or NaN, which compare as not held.
+Letters
+    p, d as above; g = c - p; q corners, r the box.
+"""
+
+from collections.abc import Callable, Iterator, Sequence
+from dataclasses import dataclass
+from math import inf
+from typing import Protocol
+
+import numpy as np
+import numpy.typing as npt
+
+from kernelscan.geometry.clipping import ConvexRegion
+from kernelscan.geometry.predicates import rounded
+from kernelscan.geometry.rings import Ring
+
+__all__ = ["HalfPlaneSource", "Outline", "RingSource", "RowSource", "survivors"]
+
+Floats = npt.NDArray[np.float64]
+Indices = npt.NDArray[np.int64]
+Flags = npt.NDArray[np.bool_]
+
+UNIT = 2.0**-53
+TINY = 2.0**-1000
+PORTION = 1 << 14
+
+
+class HalfPlaneSource(Protocol):
+    """Many half-planes, by number."""
+
+    def __len__(self) -> int:
+        """How many there are."""
+
+    def rows(self, numbers: Indices) -> Floats:
+        """Return some of them as ``(m, 6)`` rows."""
+
+    def surroundings(self) -> tuple[tuple[float, float], float]:
+        """Return a border point and a bound on the coordinates of all border points as seen from there."""
+
+    def portions(self) -> Iterator[tuple[int, Floats, Floats]]:
+        """Yield border points and ways, ``(2, m)`` each, in portions, with the number of the first."""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class RowSource:
+    """Half-planes kept as ``(n, 6)`` rows."""
+
+    table: Floats
+
+    def __len__(self) -> int:
+        return len(self.table)
+
+    def rows(self, numbers: Indices) -> Floats:
+        """Return some of them as ``(m, 6)`` rows."""
+        return self.table[numbers]
+
+    def surroundings(self) -> tuple[tuple[float, float], float]:
+        """Return a border point and a bound on the coordinates of all border points as seen from there."""
+        return _surroundings([self.table[:, :2]])
+
+    def portions(self) -> Iterator[tuple[int, Floats, Floats]]:
+        """Yield border points and ways, ``(2, m)`` each, in portions, with the number of the first."""
+        for first in range(0, len(self.table), PORTION):
+            part = np.ascontiguousarray(self.table[first : first + PORTION].T)
+            yield first, part[:2], part[4:] - part[2:4]
+
+
+class RingSource:
+    """The half-planes of the edges of rings, without a copy of them."""
+
+    def __init__(self, rings: Sequence[Ring]) -> None:
+        self.rings = rings
+        self.firsts = np.cumsum([0, *(len(ring) for ring in rings)])
+
+    def __len__(self) -> int:
+        return int(self.firsts[-1])
+
+    def rows(self, numbers: Indices) -> Floats:
+        """Return some of them as ``(m, 6)`` rows."""
+        if len(self.rings) == 1:
+            (ring,) = self.rings
+            starts, ends = ring[numbers], ring[(numbers + 1) % len(ring)]
+            return np.concatenate([starts, starts, ends], axis=1)
+        table = np.empty((len(numbers), 6))
+        for ring, first, after in zip(self.rings, self.firsts[:-1], self.firsts[1:], strict=True):
+            mine = np.flatnonzero((numbers >= first) & (numbers < after))
+            edges = numbers[mine] - first
+            table[mine, :2] = table[mine, 2:4] = ring[edges]
+            table[mine, 4:] = ring[(edges + 1) % len(ring)]
+        return table
+
+    def surroundings(self) -> tuple[tuple[float, float], float]:
+        """Return a border point and a bound on the coordinates of all border points as seen from there."""
+        return _surroundings(self.rings)
+
+    def portions(self) -> Iterator[tuple[int, Floats, Floats]]:
+        """Yield border points and ways, ``(2, m)`` each, in portions, with the number of the first."""
+        for ring, first in zip(self.rings, self.firsts.tolist(), strict=False):
+            count = len(ring)
+            for k in range(0, count, PORTION):
+                points = ring[k : k + PORTION + 1]
+                if k + PORTION >= count:
+                    points = np.concatenate([points, ring[:1]])
+                points = np.ascontiguousarray(points.T)
+                yield first + k, points[:, :-1], points[:, 1:] - points[:, :-1]
+
+
+def _surroundings(point_sets: Sequence[Floats]) -> tuple[tuple[float, float], float]:
+    origin = point_sets[0][0]
+    reach = 0.0
+    for points in point_sets:
+        reach = max(reach, float((_extreme(points, np.max) - origin).max()))
+        reach = max(reach, float((origin - _extreme(points, np.min)).max()))
+    return (float(origin[0]), float(origin[1])), reach
+
+
+def _extreme(points: Floats, of: Callable[..., Floats]) -> Floats:
+    """Return the greatest, or least, x and y; in long rows first, because short ones are slow to reduce."""
+    whole = len(points) // 256 * 256
+    if not whole or not points.flags.c_contiguous:
+        return of(points, axis=0)
+    rows = of(points[:whole].reshape(-1, 512), axis=0).reshape(-1, 2)
+    return of(np.concatenate([rows, points[whole:]]), axis=0)
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Outline:
+    """A region as doubles.
+
+    Attributes
+    ----------
+    centre
+        c.
+    corners
+        ``(2, k)``: q.
+    error
+        How far off the coordinates of q are, in x and in y.
+    limits
+        ``(2, 2)``: the exact least and greatest x, and y, of a thin region; NaN where they are no doubles.
+    """
+
+    centre: tuple[float, float]
+    corners: Floats
+    error: tuple[float, float]
+    limits: Floats | None = None
+
+    @property
+    def reach(self) -> Floats:
+        """The half sides of a box about the centre that surely holds the region."""
+        reach: Floats = np.abs(self.corners).max(axis=1) * (1 + 4 * UNIT) + self.error
+        return reach
+
+    @staticmethod
+    def of(region: ConvexRegion) -> "Outline | None":
+        """Return the outline of a region, or ``None`` if it is unbounded or its corners are too ill-conditioned."""
+        if not region.is_bounded or region.bound == inf:
+            return None
+        if region.shape != "area":
+            return Outline._of_thin(region)
+        lowest = min(z for _, _, z in region.corners)
+        if lowest < 2.0**-40:
+            return None
+        x, y = np.array([(x / z, y / z) for x, y, z in region.corners]).T
+        ox, oy = region.origin
+        lx, ly = (float(x.max()) + float(x.min())) / 2, (float(y.max()) + float(y.min())) / 2
+        cx, cy = ox + lx, oy + ly
+        corners = np.array([x - (cx - ox), y - (cy - oy)])
+        error = 80 * UNIT * region.reach / lowest**2 + TINY
+        return Outline((cx, cy), corners, (error, error))
+
+    @staticmethod
+    def _of_thin(region: ConvexRegion) -> "Outline":
+        """Take the first corner, rounded, for the centre, so that it is free of error if it is a pair of doubles."""
+        exact = region.exact_corners()
+        (cx, cy), *_ = points = [rounded(corner) for corner in exact]
+        at = np.array(points).T
+        corners = at - [[cx], [cy]]
+        off = [max(_off(q[k], q[2], p[k]) for p, q in zip(points, exact, strict=True)) for k in (0, 1)]
+        error = [bound + 2 * UNIT * float(np.abs(row).max()) for bound, row in zip(off, corners, strict=True)]
+        limits = np.array([at.min(axis=1), at.max(axis=1)]).T
+        limits[np.array(off) > 0] = np.nan
+        return Outline((cx, cy), corners, (error[0], error[1]), limits)
+
+
+def _off(numerator: int, denominator: int, nearest: float) -> float:
+    """Return 0 if a rounded quotient is the quotient itself, and else a bound on the difference."""
+    p, q = nearest.as_integer_ratio()
+    return 0.0 if p * denominator == q * numerator else 2 * UNIT * abs(nearest) + TINY
+
+
+def survivors(source: HalfPlaneSource, outline: Outline) -> Indices:
+    """Return the numbers, ascending, of the half-planes that do not surely hold a region."""
+    found = []
+    with np.errstate(over="ignore", invalid="ignore", under="ignore"):
+        for first, p, d in source.portions():
+            left = np.flatnonzero(~_held_by_box(p, d, outline))
+            if len(left):
+                left = left[~_held_by_corners(p[:, left], d[:, left], outline)]
+                found.append(left + first)
+    return np.concatenate(found) if found else np.zeros(0, dtype=np.int64)
+
+
+def _held_by_box(p: Floats, d: Floats, outline: Outline) -> Flags:
+    g_x, g_y = outline.centre[0] - p[0], outline.centre[1] - p[1]
+    r_x, r_y = outline.reach + np.array([8 * UNIT * _largest(g_x), 8 * UNIT * _largest(g_y)])
+    g_y *= d[0]
+    g_x *= d[1]
+    g_y -= g_x
+    lowest = np.abs(d[0], out=g_x)
+    lowest *= r_y
+    other = np.abs(d[1])
+    other *= r_x
+    lowest += other
+    lowest += TINY
+    return np.asarray(g_y > lowest)
+
+
+def _held_by_corners(p: Floats, d: Floats, outline: Outline) -> Flags:
+    q_x, q_y = outline.corners
+    left, right = d[0] * (outline.centre[1] - p[1]), d[1] * (outline.centre[0] - p[0])
+    lowest = (np.column_stack([q_y, -q_x]) @ d).min(axis=0)
+    bound = 6 * UNIT * (np.abs(left) + np.abs(right)) + TINY
+    bound += np.abs(d[0]) * (4 * UNIT * np.abs(q_y).max() + outline.error[1])
+    bound += np.abs(d[1]) * (4 * UNIT * np.abs(q_x).max() + outline.error[0])
+    held = left - right + lowest > bound
+    if outline.limits is not None:
+        held |= _along(p, d, outline.limits)
+    return np.asarray(held)
+
+
+def _along(p: Floats, d: Floats, limits: Floats) -> Flags:
+    """Which borders run along an axis and hold the limits, be it on the border itself: a plain comparison."""
+    (left, right), (bottom, top) = limits
+    upright = (d[0] == 0) & np.where(d[1] < 0, p[0] <= left, p[0] >= right)
+    level = (d[1] == 0) & np.where(d[0] > 0, p[1] <= bottom, p[1] >= top)
+    return np.asarray(upright | level)
+
+
+def _largest(numbers: Floats) -> float:
+    return max(float(numbers.max()), -float(numbers.min()))
