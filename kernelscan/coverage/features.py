@@ -5,10 +5,10 @@ Problem
     no deeper than a given depth, and list it.
 Method
     A feature is a chain of walls between two others that can be made to meet without it, and whose joint strays from
-    the outline by no more than the depth (:mod:`kernelscan.coverage.joints`). The shallowest goes first; of equals the
-    shorter chain, then the one whose leaving out makes the room smaller, then the leftmost and lowest. After each step
-    the outline must still be a ring around its obstacles, every wall that stays must keep some length and its
-    direction, and chains are made of whole walls: a wall that runs on past a feature is one wall.
+    the outline by no more than the depth (:mod:`kernelscan.coverage.joints`). The shallowest goes first; of equals
+    the one that costs least wall for each wall saved, then the one that makes the room smaller, then the leftmost and
+    lowest. After each step the outline must still be a ring around its obstacles, every wall that stays must keep some
+    length and its direction, and chains are made of whole walls: a wall that runs on past a feature is one wall.
 What is kept
     Walls that stay, stay on their lines, so that a staircase of small jogs does not creep: each joint, and so every
     point of the simplified outline, is within the depth of the exact one, and the other way round. With more depth the
@@ -40,10 +40,13 @@ from kernelscan.geometry.kernel import kernel_of_rings
 from kernelscan.plan import Opening, Room, WallRef
 from kernelscan.tolerances import Tolerances
 
-__all__ = ["Feature", "FeatureKind", "Simplified", "least_depth", "simplified"]
+__all__ = ["Feature", "FeatureKind", "Simplified", "least_depth", "least_simplified", "simplified"]
 
 Floats = npt.NDArray[np.float64]
 FeatureKind = Literal["pilaster", "niche", "splayed niche", "reveal", "jog", "chamfer", "rounded corner"]
+
+MOST = 1.0
+"""Metres: what is deeper is no small feature, whatever its shape."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -125,35 +128,65 @@ def simplified(room: Room, depth: float, tolerances: Tolerances = Tolerances()) 
     """
     if not 0 <= depth < inf:
         raise GeometryError(f"features can be left out up to a depth of 0 or more, got {depth}")
-    walls = tuple(WallRef(0, edge) for edge in range(len(room.outline)))
     if depth == 0:
-        return Simplified(room, room, 0.0, (), walls)
+        return _untouched(room, 0.0)
     steps = LeavingOut(room, depth, tolerances)
     for _ in steps.levels():
         pass
-    if not steps.joints:
-        return Simplified(room, room, depth, (), walls)
-    features = tuple(_feature(room, steps.walls, steps.joints[wall]) for wall in sorted(steps.joints))
-    walls_on = tuple(WallRef(0, piece.edge) if piece.edge is not None else None for piece in steps.pieces)
-    outline = steps.rings[0]
-    openings = (*_openings(room, steps), *(opening for opening in room.openings if opening.wall.ring))
-    return Simplified(room, replace(room, outline=outline, openings=openings), depth, features, walls_on)
+    return _result(room, depth, steps)
 
 
-def least_depth(room: Room, most: float = 1.0, tolerances: Tolerances = Tolerances()) -> float | None:
-    """Return the least depth at which the room without its small features has a kernel that is not empty.
+def least_depth(room: Room, most: float = MOST, tolerances: Tolerances = Tolerances()) -> float | None:
+    """Return the depth of :func:`least_simplified`, or ``None``."""
+    least = least_simplified(room, most, tolerances)
+    return least.depth if least is not None else None
 
-    0 if it has one as it is; ``None`` if it has none up to the depth ``most``, in metres. A room with obstacles never
-    has one: nobody sees the back of a column.
+
+def least_simplified(
+    room: Room, most: float = MOST, tolerances: Tolerances = Tolerances()
+) -> Simplified | None:
+    """Return the room without its small features up to the least depth that leaves it a kernel.
+
+    Parameters
+    ----------
+    room
+        The exact room; if it has a kernel as it is, it comes back with depth 0.
+    most
+        In metres: deeper features are not small.
+    tolerances
+        As in :func:`simplified`.
+
+    Returns
+    -------
+    Simplified or None
+        ``None`` if there is no kernel up to the depth ``most``. A room with obstacles never has one: nobody sees the
+        back of a column.
     """
     if kernel_of_rings(room.rings).kind != "empty":
-        return 0.0
+        return _untouched(room, 0.0)
     if room.obstacles:
         return None
-    steps = LeavingOut(room, most, tolerances)
-    return next(
-        (depth for depth in steps.levels() if depth and kernel_of_rings(steps.rings).kind != "empty"), None
-    )
+    # Most rooms need little: what is shallow is looked for first, which never changes the first steps.
+    for limit in (most / 4, most):
+        steps = LeavingOut(room, limit, tolerances)
+        for depth in steps.levels():
+            if depth and kernel_of_rings(steps.rings).kind != "empty":
+                return _result(room, depth, steps)
+    return None
+
+
+def _untouched(room: Room, depth: float) -> Simplified:
+    return Simplified(room, room, depth, (), tuple(WallRef(0, edge) for edge in range(len(room.outline))))
+
+
+def _result(room: Room, depth: float, steps: LeavingOut) -> Simplified:
+    if not steps.joints:
+        return _untouched(room, depth)
+    features = tuple(_feature(room, steps.walls, steps.joints[wall]) for wall in sorted(steps.joints))
+    walls = tuple(WallRef(0, piece.edge) if piece.edge is not None else None for piece in steps.pieces)
+    openings = (*_openings(room, steps), *(opening for opening in room.openings if opening.wall.ring))
+    plain = replace(room, outline=steps.rings[0], openings=openings)
+    return Simplified(room, plain, depth, features, walls)
 
 
 def _openings(room: Room, steps: LeavingOut) -> Iterator[Opening]:

@@ -120,9 +120,11 @@ class StraightWalls:
         walls = range(a + 1, b if b > a else b + len(self))
         return [edge for wall in walls for edge in self.edges(wall % len(self))]
 
-    def length_between(self, a: int, b: int) -> float:
-        """Return how long the walls between wall a and wall b are together, in metres."""
-        return sum(self.lengths[wall % len(self)] for wall in range(a + 1, b if b > a else b + len(self)))
+    def left_out(self, joint: Joint) -> tuple[float, int]:
+        """Return how long the walls are that a joint leaves out, in metres, and how many walls it saves."""
+        walls = range(joint.a + 1, joint.b if joint.b > joint.a else joint.b + len(self))
+        saved = len(walls) + (joint.shape == "line")
+        return sum(self.lengths[wall % len(self)] for wall in walls), saved
 
     def edge_ends(self, edge: int) -> tuple[Point, Point]:
         """Return the two ends of an edge of the outline."""

@@ -1,11 +1,11 @@
 """Leaving chains of walls out of an outline, one after another, the shallowest first.
 
 Method
-    All joints within a limit are found once and put in order: by depth, then by the length of the walls
-    left out, then those
-    that make the room smaller, then by place. Each has one chance, in its turn. It is taken if both its walls still
-    stand, neither runs on into the chain, both keep some length in their own direction, and the outline is still a
-    ring around the room's obstacles. Since no step undoes another, a higher limit only adds steps at the end.
+    All joints within a limit are found once and put in order: by depth, then by the length of wall left out for each
+    wall saved, then those that make the room smaller, then by place. Each has one chance, in its turn. It is taken if
+    both its walls still stand, neither runs on into the chain, both keep some length in their own direction, and the
+    outline is still a ring around the room's obstacles. Since no step undoes another, a higher limit only adds steps
+    at the end.
 Cost
     The search for joints, and one check of the ring for each step that is tried.
 """
@@ -81,8 +81,8 @@ class LeavingOut:
     def _order(self, joint: Joint) -> tuple[float, ...]:
         low = self.rings[0].min(axis=0)
         place = np.round(np.mean(joint.chain, axis=0) - low, 6)
-        length = round(self.walls.length_between(joint.a, joint.b), 6)
-        return joint.depth, length, -round(joint.floor, 6), *place.tolist()
+        length, saved = self.walls.left_out(joint)
+        return joint.depth, round(length / saved, 6), -round(joint.floor, 6), *place.tolist()
 
     def _with(self, joint: Joint) -> tuple[list[int], dict[int, Joint], list[Piece], tuple[Ring, ...]] | None:
         """Everything as it would be with one more joint, or ``None`` if that is not possible."""
