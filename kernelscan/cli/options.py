@@ -7,6 +7,7 @@ from typing import Annotated
 import typer
 
 __all__ = [
+    "DeviceFile",
     "DrawingPath",
     "DrawingUnit",
     "ObstacleLayers",
@@ -48,5 +49,9 @@ ObstacleLayers = Annotated[
     typer.Option(
         "--obstacle-layer", metavar="PATTERN", help="Layers whose closed outlines block sight; repeatable."
     ),
+]
+DeviceFile = Annotated[
+    Path | None,
+    typer.Option("--devices", metavar="FILE.toml", help="The devices to place, see docs/devices.md."),
 ]
 Quiet = Annotated[bool, typer.Option("--quiet", "-q", help="Print nothing but errors.")]

@@ -6,7 +6,7 @@ from typing import Annotated
 
 import typer
 
-from kernelscan.cli.drawing import read_drawing
+from kernelscan.cli.drawing import read_drawing, with_rooms
 from kernelscan.cli.options import DrawingPath, ObstacleLayers, Quiet, RoomLayers, RoomNames, UnitChoice
 from kernelscan.cli.writing import write_file
 
@@ -25,7 +25,7 @@ def rooms(
     quiet: Quiet = False,
 ) -> None:
     """List the rooms of a drawing, their areas and names, and the problems met."""
-    plan = read_drawing(plan_file, unit, room, room_layer, obstacle_layer)
+    plan = with_rooms(read_drawing(plan_file, unit, room_layer, obstacle_layer), room)
     from kernelscan.report.document import report_text, rooms_report
     from kernelscan.report.tables import print_problems, print_rooms
 

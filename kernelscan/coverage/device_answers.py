@@ -19,7 +19,6 @@ from kernelscan.coverage.plan_zone import PlanZone, plan_zone
 from kernelscan.coverage.setting_out import on_grid, setting_out
 from kernelscan.geometry.kernel import Kernel
 from kernelscan.plan import Device, Fixing, Room, WallRef
-from kernelscan.plan.optics import seen_of_plane
 from kernelscan.tolerances import Tolerances
 
 __all__ = ["device_answer"]
@@ -189,19 +188,14 @@ def _spot(
         field=field,
         farthest=farthest,
         density=device.density_at(farthest),
-        floor_edges=_floor_edges(device),
+        floor_edges=device.floor_seen
+        if device.height is not None and device.vertical_field is not None
+        else None,
         tolerance=max(0.0, tolerance),
         binding=needed.binding(lens),
         setting_out=setting_out(room, point, walls),
         on_grid=rounded is not None,
     )
-
-
-def _floor_edges(device: Device) -> tuple[float, float] | None:
-    """From which to which distance the floor is seen, on the axis."""
-    if device.height is None or device.vertical_field is None:
-        return None
-    return seen_of_plane(device.height, device.tilt, device.vertical_field)
 
 
 def _just_inside(lens: Floats, bearing: float) -> Floats:

@@ -21,7 +21,6 @@ from math import inf
 from typing import Literal
 
 from kernelscan.plan import Device
-from kernelscan.plan.optics import seen_of_plane
 
 __all__ = ["Limits", "ReachLimit", "device_limits"]
 
@@ -63,7 +62,7 @@ class Limits:
 
 def device_limits(device: Device) -> Limits:
     """Return the limits of a device, the placing error allowed for."""
-    near, far = _reach_in_section(device)
+    near, far = device.target_seen
     reaches: list[tuple[float, ReachLimit]] = [
         (device.farthest, "range"),
         (device.density_range, "density"),
@@ -87,10 +86,3 @@ def device_limits(device: Device) -> Limits:
 def _clear(distance: float, error: float) -> float:
     """A clearance with the placing error added; no clearance asked for is none."""
     return distance + error if distance > 0 else 0.0
-
-
-def _reach_in_section(device: Device) -> tuple[float, float]:
-    """From which to which distance the target's height is in the vertical field, on the axis."""
-    if device.vertical_field is None or device.height is None:
-        return 0.0, inf
-    return seen_of_plane(device.height - device.target_height, device.tilt, device.vertical_field)

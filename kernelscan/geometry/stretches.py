@@ -22,11 +22,15 @@ import numpy as np
 import numpy.typing as npt
 
 from kernelscan.geometry.rings import Ring
+from kernelscan.geometry.signs import orientations
 
 __all__ = ["parts_within", "side_signs", "vertices_within"]
 
 Lines = npt.NDArray[np.float64]
 """``(k, 2, 2)``: the ends a and b of each line."""
+
+AT_ONCE = 2**20
+"""Signs that are found at a time, to bound the memory."""
 
 
 def vertices_within(ring: Ring, lines: Lines) -> npt.NDArray[np.bool_]:
@@ -72,17 +76,12 @@ def _along(p: np.ndarray, q: np.ndarray, t: Fraction) -> list[float]:
 
 def side_signs(points: npt.NDArray[np.float64], lines: Lines) -> npt.NDArray[np.int8]:
     """Return ``(n, k)`` signs, exact: +1 where a point lies left of a line, 0 on it, -1 right of it."""
-    a, d = lines[:, 0], lines[:, 1] - lines[:, 0]
-    with np.errstate(over="ignore", invalid="ignore", under="ignore"):
-        left = d[:, 0] * (points[:, 1, None] - a[:, 1])
-        right = d[:, 1] * (points[:, 0, None] - a[:, 0])
-        value, bound = left - right, 4 * 2.0**-53 * (np.abs(left) + np.abs(right)) + 1e-290
-        signs = np.sign(value)
-        doubtful = ~(np.abs(value) > bound)
-    for point, line in np.argwhere(doubtful).tolist():
-        exact = _cross(lines[line, 0], lines[line, 1], points[point])
-        signs[point, line] = (exact > 0) - (exact < 0)
-    return signs.astype(np.int8)
+    at_once = max(1, AT_ONCE // max(1, len(lines)))
+    parts = [
+        orientations(lines[None, :, 0], lines[None, :, 1], points[first : first + at_once, None])
+        for first in range(0, len(points), at_once)
+    ]
+    return np.concatenate(parts)
 
 
 def _cross(a: np.ndarray, b: np.ndarray, p: np.ndarray) -> Fraction:

@@ -37,7 +37,8 @@ class Device:
     vertical_field, tilt
         The angle it sees in section, and how far its axis points below the horizon; ``None`` where it is no limit.
     height, target_height
-        Of the lens and of what is to be seen, above the floor.
+        Of the lens and of what must be in view of the walls, above the floor; without the latter nothing is asked of
+        the vertical field.
     nearest, farthest
         Between these distances it works.
     pixels_across, density, projection
@@ -62,7 +63,7 @@ class Device:
     vertical_field: float | None = None
     tilt: float = 0.0
     height: float | None = None
-    target_height: float = 0.0
+    target_height: float | None = None
     nearest: float = 0.0
     farthest: float = inf
     pixels_across: int | None = None
@@ -106,7 +107,7 @@ class Device:
     @property
     def target_seen(self) -> tuple[float, float]:
         """From which to which distance it sees what is at the target's height; ``optics.NOTHING`` if it never does."""
-        return self._seen_at(self.target_height)
+        return (0.0, inf) if self.target_height is None else self._seen_at(self.target_height)
 
     def _seen_at(self, height: float) -> tuple[float, float]:
         if self.vertical_field is None or self.height is None:

@@ -148,7 +148,7 @@ def _device(table: Table) -> Device:
         vertical_field=vertical_field(table, values, projection),
         tilt=values[TILT] or 0.0,
         height=values[HEIGHT],
-        target_height=values[TARGET_HEIGHT] or 0.0,
+        target_height=values[TARGET_HEIGHT],
         nearest=values[NEAREST] or 0.0,
         farthest=inf if farthest is None else farthest,
         pixels_across=table.whole_number("pixels_across"),

@@ -16,8 +16,10 @@ import numpy as np
 
 from kernelscan.coverage import RoomZones, Spot
 from kernelscan.coverage.cautions import CAUTIONS
+from kernelscan.coverage.device_spots import DeviceAnswer
 from kernelscan.geometry.kernel import Kernel
 from kernelscan.plan import Plan, Problem, Room
+from kernelscan.report.device_entries import DeviceEntry, device_entries
 
 __all__ = ["Report", "report_schema", "report_text", "rooms_report", "zones_report"]
 
@@ -101,6 +103,7 @@ class RoomEntry(TypedDict):
     kernel: NotRequired[KernelEntry]
     zones: NotRequired[ZonesEntry]
     recommended: NotRequired[list[SpotEntry]]
+    devices: NotRequired[list[DeviceEntry]]
 
 
 class ProblemEntry(TypedDict):
@@ -129,9 +132,18 @@ def rooms_report(plan: Plan) -> Report:
     return _report(plan, [_room(room) for room in plan.rooms])
 
 
-def zones_report(plan: Plan, answers: Sequence[RoomZones]) -> Report:
-    """Return the report of every answered room, as the ``zones`` command writes it."""
-    return _report(plan, [_answered(zones) for zones in answers])
+def zones_report(
+    plan: Plan, answers: Sequence[RoomZones], devices: Sequence[Sequence[DeviceAnswer]] = ()
+) -> Report:
+    """Return the report of every answered room, as the ``zones`` command writes it.
+
+    ``devices`` holds, room by room, what each device can do there; it may be left out.
+    """
+    rooms = [_answered(zones) for zones in answers]
+    for entry, of_room in zip(rooms, devices or [()] * len(rooms), strict=True):
+        if of_room:
+            entry["devices"] = device_entries(of_room)
+    return _report(plan, rooms)
 
 
 def report_text(report: Report) -> str:

@@ -1,13 +1,18 @@
-"""The schedule: a row for each recommended spot, and a row with the reason for each room that has none."""
+"""The schedule: a row for each recommended spot, of the room and of each device, or a row with the reason for none."""
 
 import csv
 import io
 from collections.abc import Iterator, Sequence
 from math import ceil, degrees, floor
 
-from kernelscan.coverage import RoomZones, Spot
+import numpy as np
+
+from kernelscan.coverage import RoomZones
+from kernelscan.coverage.device_spots import DeviceAnswer
+from kernelscan.coverage.wording import Custom
 from kernelscan.plain_text import plain_text
 from kernelscan.plan import Plan
+from kernelscan.report.device_choices import set_out_in_words, shortfall_in_words
 from kernelscan.report.wording import kernel_or_reason
 
 __all__ = ["SCHEDULE_COLUMNS", "schedule_csv"]
@@ -18,6 +23,7 @@ SCHEDULE_COLUMNS: tuple[str, ...] = (
     "area_m2",
     "kernel",
     "kernel_area_m2",
+    "device",
     "mount",
     "x_m",
     "y_m",
@@ -27,52 +33,103 @@ SCHEDULE_COLUMNS: tuple[str, ...] = (
     "field_of_view_deg",
     "range_m",
     "tolerance_m",
+    "density_px_per_m",
+    "set_out",
     "remarks",
 )
 """The header of ``schedule.csv``; positions also in the drawing's own unit, bearings from the x axis."""
 
 SLACK = 1e-6
-"""Millimetres: what is whole but for its rounding is not pushed over."""
+"""In the last place: what is whole but for its rounding is not pushed over."""
 
 
-def schedule_csv(plan: Plan, answers: Sequence[RoomZones]) -> bytes:
+def schedule_csv(
+    plan: Plan, answers: Sequence[RoomZones], devices: Sequence[Sequence[DeviceAnswer]] = ()
+) -> bytes:
     """Return ``schedule.csv``, in UTF-8 with a byte-order mark, so that spreadsheet programs read names right.
 
-    Ranges are rounded up and tolerances down, to the millimetre.
+    ``devices`` holds, room by room, what each device can do there; it may be left out. Ranges are rounded up and
+    tolerances down, to the millimetre.
     """
     text = io.StringIO(newline="")
     writer = csv.writer(text, lineterminator="\r\n")
     writer.writerow(SCHEDULE_COLUMNS)
-    for zones in answers:
+    for zones, of_room in zip(answers, devices or [()] * len(answers), strict=True):
         writer.writerows(_rows(plan, zones))
+        for answer in of_room:
+            writer.writerows(_device_rows(plan, zones, answer))
     return text.getvalue().encode("utf-8-sig")
 
 
-def _rows(plan: Plan, zones: RoomZones) -> Iterator[list[str]]:
+def _head(zones: RoomZones, device: str) -> list[str]:
     room, kernel = zones.room, zones.kernel
-    head = [room.id, _harmless(room.name), f"{room.area:.3f}", kernel.kind, f"{kernel.area:.3f}"]
-    for spot in zones.recommended:
-        yield [*head, *_spot_cells(plan, spot), ""]
-    if not zones.recommended:
-        reason = (
-            kernel_or_reason(plan, zones)
-            if kernel.kind == "empty"
-            else "no wall or corner can carry a device"
-        )
-        yield [*head, *[""] * 9, reason]
-
-
-def _spot_cells(plan: Plan, spot: Spot) -> list[str]:
-    drawn = spot.point / plan.unit.metres
     return [
-        spot.mount,
-        *(f"{value:.3f}" for value in spot.point),
-        *(f"{value:.10g}" for value in drawn),
-        "" if spot.bearing is None else f"{degrees(spot.bearing) % 360:.1f}",
-        f"{degrees(spot.field_of_view):.1f}",
-        f"{ceil(spot.farthest * 1000 - SLACK) / 1000:.3f}",
-        f"{floor(spot.tolerance * 1000 + SLACK) / 1000:.3f}",
+        room.id,
+        _harmless(room.name),
+        f"{room.area:.3f}",
+        kernel.kind,
+        f"{kernel.area:.3f}",
+        _harmless(device),
     ]
+
+
+def _rows(plan: Plan, zones: RoomZones) -> Iterator[list[str]]:
+    """The recommended spots without any device file, or the reason why there is none."""
+    for spot in zones.recommended:
+        yield [
+            *_head(zones, ""),
+            spot.mount,
+            *_place(plan, spot.point),
+            _bearing(spot.bearing),
+            _up(degrees(spot.field_of_view), 1),
+            _up(spot.farthest, 3),
+            _down(spot.tolerance, 3),
+            "",
+            "",
+            "",
+        ]
+    if not zones.recommended:
+        yield [*_head(zones, ""), *[""] * 11, kernel_or_reason(plan, zones)]
+
+
+def _device_rows(plan: Plan, zones: RoomZones, answer: DeviceAnswer) -> Iterator[list[str]]:
+    """The spots of one device, or what it falls short by."""
+    name = answer.device.name
+    for spot in answer.spots:
+        yield [
+            *_head(zones, name),
+            spot.fixing,
+            *_place(plan, spot.point),
+            _bearing(spot.bearing),
+            _up(degrees(spot.field), 1),
+            _up(spot.farthest, 3),
+            _down(spot.tolerance, 3),
+            "" if spot.density is None else _down(spot.density, 1),
+            _harmless(set_out_in_words(answer.room, spot.setting_out, Custom(plan.unit.imperial))),
+            "",
+        ]
+    if not answer.spots:
+        yield [*_head(zones, name), *[""] * 11, shortfall_in_words(answer)]
+
+
+def _place(plan: Plan, point: np.ndarray) -> list[str]:
+    """A position in metres and as the drawing counts it."""
+    return [
+        *(f"{value + 0.0:.3f}" for value in point.tolist()),
+        *(f"{v:.10g}" for v in point / plan.unit.metres),
+    ]
+
+
+def _bearing(radians: float | None) -> str:
+    return "" if radians is None else f"{degrees(radians) % 360:.1f}"
+
+
+def _up(value: float, decimals: int) -> str:
+    return f"{ceil(value * 10**decimals - SLACK) / 10**decimals:.{decimals}f}"
+
+
+def _down(value: float, decimals: int) -> str:
+    return f"{floor(value * 10**decimals + SLACK) / 10**decimals:.{decimals}f}"
 
 
 def _harmless(text: str) -> str:

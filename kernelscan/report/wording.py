@@ -40,5 +40,5 @@ def kernel_or_reason(plan: Plan, zones: RoomZones) -> str:
     middles = []
     for wall in zones.kernel.conflict.tolist():
         start, end = zones.room.wall_ends(WallRef(*wall))
-        middles.append(drawn_position(plan, start / 2 + end / 2))
+        middles.append(drawn_position(plan, (start / 2 + end / 2).tolist()))
     return f"nowhere: the walls at {', '.join(middles[:-1])} and {middles[-1]} exclude each other"

@@ -73,7 +73,7 @@ def test_the_range_may_govern(printed):
 
 
 def test_the_target_may_govern(printed):
-    _, out, _ = printed(TILTED.replace("tilt_deg = 30", "tilt_deg = 60"))
+    _, out, _ = printed(TILTED.replace("tilt_deg = 30", "tilt_deg = 60\ntarget_height_m = 0"))
     # 3 m / tan 35 deg.
     assert cells(out, "Tilted")[0][7:9] == ["0.00 m to 4.28 m", "vertical field"]
 

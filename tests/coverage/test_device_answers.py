@@ -169,7 +169,7 @@ def test_reach_by_density_and_by_section():
     assert device_limits(camera).reach == pytest.approx(5.0)
     assert device_limits(camera).reach_limit == "density"
     # h = 3 m, tilt 30 and field 50 degrees: the floor from 2.1006 m to 34.290 m (derived).
-    tilted = replace(DOME, vertical_field=radians(50), tilt=radians(30), height=3.0)
+    tilted = replace(DOME, vertical_field=radians(50), tilt=radians(30), height=3.0, target_height=0.0)
     assert device_limits(tilted).distance == pytest.approx(2.1006, abs=1e-4)
     assert device_limits(tilted).reach == pytest.approx(34.290, abs=1e-3)
     # A target level with the lens is out of a field that ends below the horizon.

@@ -312,7 +312,7 @@ def test_what_is_written_is_what_is_read(tmp_path_factory, device, unit):
             "device[1].target_height_in: says nothing without vertical_field_deg and height_m",
         ),
         (
-            {"vertical_field_deg": "50", "tilt_deg": "-30", "height_m": "3"},
+            {"vertical_field_deg": "50", "tilt_deg": "-30", "height_m": "3", "target_height_m": "0"},
             "device[1].tilt_deg: with this tilt and vertical field, nothing at target_height_m is ever in view",
         ),
         (
@@ -328,7 +328,7 @@ def test_what_is_written_is_what_is_read(tmp_path_factory, device, unit):
             "device[1].nearest_m: starts at 5.00 m, where density_px_per_m has ended at 2.00 m: no distance is left",
         ),
         (
-            {"vertical_field_deg": "10", "height_m": "3", "farthest_m": "2"},
+            {"vertical_field_deg": "10", "height_m": "3", "farthest_m": "2", "target_height_m": "0"},
             "device[1].vertical_field_deg: starts at 34.29 m, where farthest_m has ended at 2.00 m: "
             "no distance is left",
         ),
