@@ -6,6 +6,7 @@ not, unit, rotation, untidiness) comes from one seed, so that a plan can be made
 """
 
 from dataclasses import dataclass, field
+from itertools import pairwise
 from math import atan2, cos, degrees, hypot, radians, sin
 from pathlib import Path
 from random import Random
@@ -157,7 +158,7 @@ class _Pen:
             ends = [e + self.dice.uniform(-1, 1) * self.manner.untidy / long for e in ends]
         if self.manner.split and long > 1 and not tidy:
             ends.insert(1, self.dice.uniform(0.3, 0.7))
-        for low, high in zip(ends, ends[1:], strict=False):
+        for low, high in pairwise(ends):
             self._piece(a, b, low, high, role)
         if self.manner.repeat and long > 1 and self.dice.random() < 0.3:
             self._piece(a, b, 0.2, 0.8, role)

@@ -36,7 +36,9 @@ from kernelscan.reading.segments import (
     WALL,
     WINDOW,
     Segments,
+    are_leaves,
     opening_code,
+    plug_strokes,
     segments_of,
     swings_of,
 )
@@ -73,7 +75,9 @@ def barriers_by_name(strokes: Sequence[Stroke], roles: Mapping[str, LayerRole]) 
     return Barriers(walls, [s for s in strokes if roles[s.layer].role == "opening"])
 
 
-def barriers_by_content(strokes: Sequence[Stroke], roles: Mapping[str, LayerRole]) -> Barriers:
+def barriers_by_content(
+    strokes: Sequence[Stroke], roles: Mapping[str, LayerRole], metres: float, tolerances: Tolerances
+) -> Barriers:
     """Return all that may be a wall where names say nothing: no fillings, nothing named as something else."""
     walls, openings = [], []
     for stroke in strokes:
@@ -85,6 +89,9 @@ def barriers_by_content(strokes: Sequence[Stroke], roles: Mapping[str, LayerRole
             openings.append(stroke)
         elif part in {"unknown", "wall", "obstacle"}:
             walls.append(stroke)
+    plugs = plug_strokes(walls, metres, tolerances)
+    openings += [walls[k] for k in sorted(plugs)]
+    walls = [stroke for k, stroke in enumerate(walls) if k not in plugs]
     solid = frozenset(layer for layer, role in roles.items() if role.role == "obstacle")
     return Barriers(walls, openings, solid)
 
@@ -180,9 +187,11 @@ def _closed_lines(barriers: Barriers, metres: float, origin: np.ndarray, toleran
     first = len(barriers.walls)
     codes = [WALL if k < first else opening_code(s.layer, s.blocks) for k, s in enumerate(strokes)]
     whole = segments_of(strokes, codes, metres, origin)
-    whole = whole.where(~np.isin(whole.stroke, list(arcs)))
+    swings = [swing for _, swing in swinging]
+    leaves = are_leaves(whole, swings) & (whole.code == WALL)
+    whole = whole.where(~np.isin(whole.stroke, list(arcs)) & ~leaves)
     walls, openings = whole.where(whole.code == WALL), whole.where(whole.code != WALL)
-    gaps = wall_gaps(walls, openings, [swing for _, swing in swinging], tolerances)
+    gaps = wall_gaps(walls, openings, swings, tolerances)
     closing = openings.where(closing_lines(openings, walls, tolerances))
     drawn = walls.plus(closing.a, closing.b, closing.code + DRAWN_OPENING)
     starts, ends = connectors(drawn, tolerances.snap)

@@ -78,7 +78,7 @@ class _Reading:
         found, problems = loose_rooms(named, self.contents.labels, metres, self.tolerances)
         if found or any(problem.code == "open-plan" for problem in problems):
             return found, BY_NAMED_WALLS if found else OPEN_PLAN, problems
-        every = barriers_by_content(strokes, self.roles)
+        every = barriers_by_content(strokes, self.roles, metres, self.tolerances)
         layers = double_layers(every.walls, metres, self.tolerances)
         if layers:
             walls = replace(every, walls=[stroke for stroke in every.walls if stroke.layer in layers])

@@ -9,15 +9,30 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from kernelscan.geometry.shapes import lines_near
 from kernelscan.reading.strokes import Stroke
 from kernelscan.reading.texts import words
+from kernelscan.tolerances import Tolerances
 
-__all__ = ["DOOR", "GAP", "WALL", "WINDOW", "Segments", "Swing", "opening_code", "segments_of", "swings_of"]
+__all__ = [
+    "DOOR",
+    "GAP",
+    "WALL",
+    "WINDOW",
+    "Segments",
+    "Swing",
+    "are_leaves",
+    "opening_code",
+    "plug_strokes",
+    "segments_of",
+    "swings_of",
+]
 
 WALL, DOOR, WINDOW, GAP = 0, 1, 2, 3
 """What a piece is part of, as a number, for arrays; a gap is a piece that nobody drew."""
 
 SMALLEST_LEAF, LARGEST_LEAF = 0.4, 1.6
+LEAF_THICKNESS = 0.07
 WINDOW_TEXT = """
     window windows glaz glazing glass fenster fenetre fenetres finestra finestre ventana ventanas janela janelas raam
     ramen okno okna fonster vindu ikkuna pencere
@@ -119,3 +134,65 @@ def _circle_through(a: np.ndarray, b: np.ndarray, c: np.ndarray) -> tuple[np.nda
     x = (v[1] * (u @ u) - u[1] * (v @ v)) / cross
     y = (u[0] * (v @ v) - v[0] * (u @ u)) / cross
     return a + np.array((x, y)), float(np.hypot(x, y))
+
+
+def are_leaves(lines: Segments, swings: Sequence[Swing]) -> np.ndarray:
+    """Return which lines are door leaves: both ends at a swing's hinge or at its ends, but for a leaf's thickness."""
+    leaf = np.zeros(len(lines), dtype=bool)
+    if not swings or not len(lines):
+        return leaf
+    spots = np.array([(swing.hinge, *swing.ends) for swing in swings])
+    owner = np.repeat(np.arange(len(swings)), 3)
+    flat = spots.reshape(-1, 2)
+    ends = []
+    for points in (lines.a, lines.b):
+        k, i = lines_near(points, flat, flat, LEAF_THICKNESS)
+        ends.append(set(zip(k.tolist(), owner[i].tolist(), strict=True)))
+    both = [k for k, _ in ends[0] & ends[1]]
+    leaf[both] = True
+    return leaf
+
+
+def plug_strokes(strokes: Sequence[Stroke], metres: float, tolerances: Tolerances) -> set[int]:
+    """Return which strokes are doors or windows by content: narrow rectangles with a line's end at either short side.
+
+    Rectangles that follow each other are the bodies of walls instead: no line ends at them.
+    """
+    boxes, sides = [], []
+    for k, stroke in enumerate(strokes):
+        corners = _rectangle(stroke, metres)
+        if (
+            corners is not None
+            and corners[2] <= tolerances.thickest_wall
+            and corners[3] <= tolerances.widest_opening / 2
+        ):
+            boxes.append(k)
+            sides.append(corners[:2])
+    ends = [stroke.points[[0, -1]] * metres for stroke in strokes if not stroke.is_ring(0.0)]
+    if not boxes or not ends:
+        return set()
+    short = np.array(sides).reshape(-1, 2, 2)
+    _, i = lines_near(np.concatenate(ends), short[:, 0], short[:, 1], tolerances.snap)
+    met = np.zeros(len(short), dtype=bool)
+    met[i] = True
+    both = np.asarray(met.reshape(-1, 2).all(axis=1))
+    return {k for k, plugs in zip(boxes, both, strict=True) if plugs}
+
+
+def _rectangle(stroke: Stroke, metres: float) -> tuple[np.ndarray, np.ndarray, float, float] | None:
+    """Return a rectangle's two short sides, ``(2, 2)``, and its two lengths; ``None`` for any other stroke."""
+    points = stroke.points * metres
+    if len(points) == 5 and not np.any(points[0] != points[-1]):
+        points = points[:4]
+    if len(points) != 4 or not stroke.is_ring(0.0):
+        return None
+    steps = np.roll(points, -1, axis=0) - points
+    long = np.hypot(*steps.T)
+    if (
+        np.abs((steps * np.roll(steps, -1, axis=0)).sum(axis=1)).max() > 0.01 * long.max() ** 2
+        or long.min() < 1e-3
+    ):
+        return None
+    first = 0 if long[0] <= long[1] else 1
+    sides = [np.array((points[k], points[(k + 1) % 4])) for k in (first, first + 2)]
+    return sides[0], sides[1], float(long[first]), float(long[1 - first])
