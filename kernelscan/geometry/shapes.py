@@ -34,6 +34,7 @@ __all__ = [
     "lines_near",
     "meeting_lines",
     "nearest_point",
+    "neighbouring_lines",
     "noded_lines",
     "overlap_areas",
     "rings_around",
@@ -207,6 +208,15 @@ def lines_near(points: Floats, starts: Floats, ends: Floats, distance: float) ->
 def meeting_lines(starts: Floats, ends: Floats, others: tuple[Floats, Floats]) -> tuple[Indices, Indices]:
     """Return the pairs (k of the lines, i of the other lines, given by starts and ends) that meet."""
     k, i = shapely.STRtree(_lines(*others)).query(_lines(starts, ends), predicate="intersects")
+    return k, i
+
+
+def neighbouring_lines(
+    starts: Floats, ends: Floats, others: tuple[Floats, Floats], distance: float
+) -> tuple[Indices, Indices]:
+    """Return the pairs (k of the lines, i of the other lines) that are no farther apart than ``distance``."""
+    tree = shapely.STRtree(_lines(*others))
+    k, i = tree.query(_lines(starts, ends), predicate="dwithin", distance=distance)
     return k, i
 
 

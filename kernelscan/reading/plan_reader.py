@@ -14,6 +14,7 @@ import numpy as np
 from kernelscan.plan import Opening, Plan, Problem, Room, WallRef
 from kernelscan.plan.room import NameSource
 from kernelscan.reading.closed_rooms import FoundRoom, RoomEdge, chosen_outlines, with_obstacles
+from kernelscan.reading.drawn_openings import drawn_openings, with_drawn
 from kernelscan.reading.explode import drawing_contents
 from kernelscan.reading.files import open_drawing
 from kernelscan.reading.layers import LayerPatterns, LayerRole, layer_role
@@ -140,7 +141,7 @@ def read_plan(
         file=file.name,
         unit=said[0],
         unit_from=said[1],
-        rooms=_rooms(found, contents, said[0].metres),
+        rooms=_rooms(found, reading, said[0].metres),
         room_rule=rule,
         problems=(*repairs, *contents.problems, *checked, *problems),
         linework=_linework(contents, said[0].metres),
@@ -157,9 +158,11 @@ def _roles(contents: Contents, patterns: LayerPatterns) -> dict[str, LayerRole]:
     return roles | {layer: layer_role(layer, patterns) for layer in contents.layers()}
 
 
-def _rooms(found: Sequence[FoundRoom], contents: Contents, metres: float) -> tuple[Room, ...]:
+def _rooms(found: Sequence[FoundRoom], reading: _Reading, metres: float) -> tuple[Room, ...]:
     rings = [room.outline.ring for room in found]
+    contents, thickest = reading.contents, reading.tolerances.thickest_wall
     labels = labels_in_rings(rings, contents.labels, metres)
+    drawn = drawn_openings(rings, contents.strokes, reading.roles, metres, reading.tolerances)
     on_layer = Counter(room.outline.stroke.layer for room in found)
     rooms = []
     for number, (room, inside) in enumerate(zip(found, labels, strict=True), 1):
@@ -167,7 +170,8 @@ def _rooms(found: Sequence[FoundRoom], contents: Contents, metres: float) -> tup
         alone = on_layer[outline.stroke.layer] == 1 and room.closed_by == "outline"
         own_layer = outline.stroke.layer if alone else ""
         x, y = outline.centre
-        openings = _openings(outline.ring, room.edges)
+        known = _openings(outline.ring, room.edges)
+        openings = with_drawn(known, drawn[number - 1], outline.ring, thickest)
         name, name_from = _name(number, room_label(inside, (x / metres, y / metres)), own_layer)
         rooms.append(
             Room(
