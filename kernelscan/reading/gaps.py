@@ -201,20 +201,34 @@ def _what_stands_there(
     reach = tolerances.widest_opening / 2 + tolerances.thickest_wall
     gap_middle = (a + b) / 2
     k, i = lines_near(gap_middle, oa, ob, reach)
-    covered = {DOOR: np.zeros(len(a)), WINDOW: np.zeros(len(a))}
     width = np.hypot(*(b - a).T)
     along = (b - a) / width[:, None]
     normal = np.column_stack((-along[:, 1], along[:, 0]))
     p, q = (((end[i] - a[k]) * along[k]).sum(axis=1) for end in (oa, ob))
     off = np.maximum(*(np.abs(((end[i] - a[k]) * normal[k]).sum(axis=1)) for end in (oa, ob)))
-    share = np.clip(np.minimum(np.maximum(p, q), width[k]) - np.maximum(np.minimum(p, q), 0.0), 0.0, None)
-    good = off <= tolerances.thickest_wall
-    for kind, total in covered.items():
+    low = np.maximum(np.minimum(p, q), 0.0)
+    high = np.minimum(np.maximum(p, q), width[k])
+    good = (off <= tolerances.thickest_wall) & (high > low)
+    for kind in (WINDOW, DOOR):
         these = good & (kinds[i] == kind)
-        np.add.at(total, k[these], share[these])
-    best = np.where(covered[DOOR] >= covered[WINDOW], DOOR, WINDOW)
-    most = np.maximum(covered[DOOR], covered[WINDOW])
-    return np.where(most >= COVERED * width, best, code)
+        covered = _covered(k[these], low[these], high[these], len(a))
+        code[covered >= COVERED * width] = kind
+    return code
+
+
+def _covered(owner: np.ndarray, low: np.ndarray, high: np.ndarray, count: int) -> np.ndarray:
+    """Return for each owner how much its intervals cover together."""
+    order = np.lexsort((low, owner))
+    total = np.zeros(count)
+    at = -1
+    reach = 0.0
+    for k, start, end in zip(owner[order].tolist(), low[order].tolist(), high[order].tolist(), strict=True):
+        if k != at:
+            at, reach = k, start
+        if end > reach:
+            total[k] += end - max(start, reach)
+            reach = end
+    return total
 
 
 def _barriers(openings: Segments, swings: list[Swing]) -> tuple[np.ndarray, np.ndarray, np.ndarray]:
