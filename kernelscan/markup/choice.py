@@ -8,8 +8,8 @@
    least 30 mm across.
 3. Else the first paper of all wins that is legible; else the one with the largest scale, and of several the smallest.
 4. Where the scale that was asked for does not fit, or none that fits is legible, the plan is shown in parts: an
-   overview at the scale that fits, and a sheet for each part at the scale that was asked for, or at the smallest one
-   that is legible, on the same paper.
+   overview at the scale that fits, and a sheet for each part on the same paper, at the scale that was asked for or at
+   the smallest legible one; where that would take more than 24 parts, at the next smaller ones.
 """
 
 from collections.abc import Iterator, Sequence
@@ -40,7 +40,7 @@ __all__ = ["Choice", "Parts", "chosen"]
 
 LEGIBLE = 30.0
 """How wide a room of the mean area shall at least be on paper, in millimetres."""
-MOST_PARTS = 200
+MOST_PARTS, MOST_PARTS_UNASKED = 200, 24
 
 
 @dataclass(frozen=True, slots=True)
@@ -88,7 +88,7 @@ def chosen(
     Raises
     ------
     InputError
-        When a paper or a scale does not exist, or the parts would be more than 200 sheets.
+        When a paper or a scale does not exist, or the scale that was asked for would take more than 200 parts.
     """
     asked = scale_by_text(options.scale) if options.scale else None
     width = float(np.sqrt(np.mean([room.area for room in rooms]))) if rooms else inf
@@ -101,8 +101,15 @@ def chosen(
     handy = [each for each in fitting[:2] if each in good and _holds_all(each.layout, schedule)]
     if handy or good:
         return (handy or good)[0]
-    wanted = asked or list(takewhile(lambda scale: scale.mm_per_metre >= least, usual_scales(imperial)))[-1]
-    return _in_parts(extent, schedule, extra, options, imperial, wanted)
+    overviews = [
+        _best_on(paper, extent, schedule, extra, None, imperial) for paper in _papers(options, imperial)
+    ]
+    overview = min(filter(None, overviews), key=lambda choice: choice.scale.denominator, default=None)
+    if overview is None:
+        raise InputError(f"paper: {options.paper} has no room for the plan beside its title block")
+    if asked:
+        return replace(overview, parts=_asked_parts(overview.layout.paper, extent, schedule, extra, asked))
+    return replace(overview, parts=_legible_parts(overview, extent, schedule, extra, least, imperial))
 
 
 def _papers(options: SheetOptions, imperial: bool) -> tuple[Paper, ...]:
@@ -141,28 +148,32 @@ def _fits(size: tuple[float, float], choice: Choice) -> bool:
     return all(each * mm <= room + 1e-9 for each, room in zip(size, choice.layout.space, strict=True))
 
 
-def _in_parts(
-    extent: Box,
-    schedule: Schedule,
-    extra: Sequence[str],
-    options: SheetOptions,
-    imperial: bool,
-    wanted: Scale,
-) -> Choice:
-    """Return an overview and its parts, on the paper with the largest overview or the one that was given."""
-    overviews = [
-        _best_on(paper, extent, schedule, extra, None, imperial) for paper in _papers(options, imperial)
-    ]
-    overview = min(filter(None, overviews), key=lambda choice: choice.scale.denominator, default=None)
-    if overview is None:
-        raise InputError(f"paper: {options.paper} has no room for the plan beside its title block")
-    parts = min(_divisions(overview.layout.paper, extent, schedule, extra, wanted), key=_sheets)
+def _asked_parts(paper: Paper, extent: Box, schedule: Schedule, extra: Sequence[str], scale: Scale) -> Parts:
+    parts = _fewest_parts(paper, extent, schedule, extra, scale)
     if _sheets(parts) > MOST_PARTS:
         raise InputError(
-            f"scale: at {wanted.text} the plan ({extent.width:.1f} by {extent.height:.1f} m) needs {_sheets(parts)} "
-            f"sheets of {overview.layout.paper.name}; give a smaller scale or a larger paper"
+            f"scale: at {scale.text} the plan ({extent.width:.1f} by {extent.height:.1f} m) needs {_sheets(parts)} "
+            f"sheets of {paper.name}; give a smaller scale or a larger paper"
         )
-    return replace(overview, parts=parts)
+    return parts
+
+
+def _legible_parts(
+    overview: Choice, extent: Box, schedule: Schedule, extra: Sequence[str], least: float, imperial: bool
+) -> Parts | None:
+    """Return parts at the smallest legible scale, or at the next smaller ones until they are few; else none."""
+    larger = takewhile(lambda scale: scale.denominator < overview.scale.denominator, usual_scales(imperial))
+    scales = list(larger)
+    legible = sum(scale.mm_per_metre >= least for scale in scales)
+    for scale in scales[max(legible - 1, 0) :]:
+        parts = _fewest_parts(overview.layout.paper, extent, schedule, extra, scale)
+        if _sheets(parts) <= MOST_PARTS_UNASKED:
+            return parts
+    return None
+
+
+def _fewest_parts(paper: Paper, extent: Box, schedule: Schedule, extra: Sequence[str], scale: Scale) -> Parts:
+    return min(_divisions(paper, extent, schedule, extra, scale), key=_sheets)
 
 
 def _sheets(parts: Parts) -> int:

@@ -1,12 +1,13 @@
 """The tags of the plan: letters at the points and at the walls in conflict, and one tag a room.
 
-A room's tag says as much as its room holds: number, name, area and kernel; else number, name and kernel; else number
-and kernel; else the number. Where not even that fits, the tag stands outside at the end of a leader line. What finds
-no place at all is returned by name, so that the sheet can say so.
+A room's tag says as much as its room holds: number, name, area and kernel; else without the area; else number and
+name; else the number, and always that no point sees every wall where that is so. Where not even that fits, the tag
+stands outside at the end of a leader line. What finds no place at all is returned by name, so that the sheet can say
+so.
 """
 
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -203,16 +204,15 @@ def _place_letter(letter: Label, at: Point, needed: bool, place: _Place, tags: T
 
 
 def _variants(zones: RoomZones, custom: Custom) -> Iterator[Label]:
-    """Yield a room's tag, the fullest first."""
-    number = Line(zones.room.id, bold=True)
-    name = _name_lines(zones)
+    """Yield a room's tag, the fullest first; that no point sees every wall is never left out."""
+    number, name = Line(zones.room.id, bold=True), _name_lines(zones)
     area = Line(f"{custom.area(zones.room.area)} {custom.area_unit}")
     kernel = _kernel_line(zones, custom)
+    needed = (kernel,) if zones.kernel.kind == "empty" else ()
     yield Label((number, *name, area, kernel))
     yield Label((number, *name, kernel))
-    yield Label((number, kernel))
-    if zones.kernel.kind != "empty":
-        yield Label((number,))
+    yield Label((number, *name, *needed))
+    yield Label((number, *needed))
 
 
 def _kernel_line(zones: RoomZones, custom: Custom) -> Line:
@@ -228,7 +228,7 @@ def _name_lines(zones: RoomZones) -> tuple[Line, ...]:
 
 
 def _has_room(place: _Place, custom: Custom, tags: Tags) -> bool:
-    """Whether a room holds more than its number beside its symbols."""
+    """Whether a room holds more than its number and name beside its symbols."""
     _, label, *_ = _variants(place.zones, custom)
     return any(tags.taken.takes(box) for box in _inner_boxes(place, label, EDGE))
 
@@ -255,9 +255,8 @@ def _place_inside(place: _Place, custom: Custom, tags: Tags) -> bool:
 
 def _place_outside(place: _Place, custom: Custom, outlines: np.ndarray, tags: Tags) -> None:
     """Place a tag at the end of a leader: clear of every room if it can, else on a room, else note it as missing."""
-    zones = place.zones
-    lines = (Line(zones.room.id, bold=True), *_name_lines(zones), _kernel_line(zones, custom))
-    label = Label(lines, framed=True)
+    *_, with_name, _ = _variants(place.zones, custom)
+    label = replace(with_name, framed=True)
     second: tuple[Box, Point] | None = None
     feet = _feet(place, tags)
     for foot in feet:
@@ -270,7 +269,7 @@ def _place_outside(place: _Place, custom: Custom, outlines: np.ndarray, tags: Ta
     if second is not None:
         tags.put(label, *second)
     elif feet:
-        tags.missing.append(zones.room.id)
+        tags.missing.append(place.zones.room.id)
 
 
 def _feet(place: _Place, tags: Tags) -> list[Point]:
