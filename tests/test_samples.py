@@ -8,7 +8,11 @@ from itertools import pairwise
 from math import atan, pi, sin, sqrt, tan
 from pathlib import Path
 
+import ezdxf
+import numpy as np
 import pytest
+from ezdxf.disassemble import recursive_decompose
+from ezdxf.math import Vec2
 
 from kernelscan import Plan, Room, read_plan, verify_kernel, visibility_kernel
 from kernelscan.coverage import room_zones
@@ -221,6 +225,105 @@ def test_kernel_under_a_wall_that_curves_inward(plans: dict[str, Plan]) -> None:
 def test_round_column_leaves_no_point(plans: dict[str, Plan]) -> None:
     room = room_named(plans["library-wing"], "Map room")
     assert visibility_kernel(room.outline, room.holes).kind == "empty"
+
+
+# By hand from the lists in the script: each room's doors and windows. Both rooms beside a wall have its door.
+OPENINGS = {
+    "workshop-ground-floor": {
+        "Reading room": (1, 4), "Workshop": (4, 2), "Entrance hall": (4, 0), "Office": (1, 1),
+        "Materials store": (2, 0), "Plant room": (1, 0), "Tool store": (1, 0),
+    },
+    "library-wing": {
+        "Gallery": (5, 3), "Archive": (1, 1), "Study": (1, 0), "Map room": (1, 1), "Reading bay": (2, 0),
+        "Quiet room": (1, 0),
+    },
+    "annex-feet-and-inches": {
+        "Wood shop": (3, 2), "Finishing room": (3, 1), "Glue-up room": (1, 1), "Tool crib": (1, 0),
+        "Timber rack": (1, 0),
+    },
+    "studios-in-blocks": {f"Studio {n}": (1, 2) for n in range(1, 7)},
+    "mezzanine": {"Crossing": (2, 2), "Landing": (2, 2), "Room 3": (1, 0)},
+    "pavilion-on-survey-grid": {"Garden room": (1, 1), "Grotto Room": (0, 0)},
+}  # fmt: skip
+
+
+@pytest.mark.parametrize("name", NAMES)
+def test_rooms_have_the_doors_and_windows_drawn_in_their_walls(name: str, plans: dict[str, Plan]) -> None:
+    kinds = {room.name: [opening.kind for opening in room.openings] for room in plans[name].rooms}
+    found = {room: (kinds[room].count("door"), kinds[room].count("window")) for room in OPENINGS[name]}
+    assert found == OPENINGS[name]
+    assert {kind for each in kinds.values() for kind in each} <= {"door", "window"}
+
+
+# The oval's end has the radius b^2 / a. The line's ends lie 0.02 m behind the wall and go to it along its normals, 0.005 m
+# nearer to the axis; an arc of chord c and rise h is c (1 + 8 h^2 / 3 c^2) long.
+OVAL_RISE = 0.435**2 / 2 / (2.75**2 / 4)
+OVAL_DOOR = 0.87 * (1 + 8 / 3 * (OVAL_RISE / 0.87) ** 2)
+
+
+@pytest.mark.parametrize(("name", "width"), [("Drum", 2 * 3 * atan(0.5 / 2.98)), ("Oval", OVAL_DOOR)])
+def test_doors_in_round_walls_lie_on_several_of_their_chords(
+    name: str, width: float, plans: dict[str, Plan]
+) -> None:
+    doors = room_named(plans["pavilion-on-survey-grid"], name).openings
+    assert len(doors) > 5
+    assert sum(door.width for door in doors) == pytest.approx(width, abs=0.003)
+
+
+def glass_and_doors(path: Path, metres: float) -> np.ndarray:
+    """Return what a device must not be fixed to, straight from the drawing: panes, door lines, leaves open and shut."""
+    found = []
+    for entity in recursive_decompose(ezdxf.readfile(path).modelspace()):
+        layer, kind = entity.dxf.layer, entity.dxftype()
+        if layer in {"A-GLAZ", "A-DOOR"} and kind == "LINE":
+            found.append((Vec2(entity.dxf.start), Vec2(entity.dxf.end)))
+        elif layer == "A-DOOR" and kind == "ARC":
+            hinge = Vec2(entity.ocs().to_wcs(entity.dxf.center))
+            found += [(hinge, Vec2(entity.start_point)), (hinge, Vec2(entity.end_point))]
+    return np.array([[(p.x, p.y) for p in pair] for pair in found]) * metres
+
+
+@pytest.mark.parametrize("name", NAMES)
+def test_no_device_is_recommended_on_a_door_or_window(
+    name: str, sample_plans: Path, plans: dict[str, Plan]
+) -> None:
+    plan = plans[name]
+    lines = glass_and_doors(sample_plans / f"{name}.dxf", plan.unit.metres)
+    spots = [spot for room in plan.rooms for spot in room_zones(room).recommended if spot.mount != "ceiling"]
+    assert spots
+    for spot in spots:
+        assert not _in_front_of(spot.point, lines).any(), spot
+
+
+@pytest.mark.parametrize("name", NAMES)
+def test_no_wall_zone_runs_over_a_window(name: str, sample_plans: Path, plans: dict[str, Plan]) -> None:
+    plan = plans[name]
+    lines = glass_and_doors(sample_plans / f"{name}.dxf", plan.unit.metres)
+    for room in plan.rooms:
+        for zone in room_zones(room).walls:
+            for start, end in pairwise(zone.path):
+                way = (end - start) / np.hypot(*(end - start))
+                along = (lines[:, 1] - lines[:, 0]) @ way
+                parallel = np.abs(along) > 0.999 * np.hypot(*(lines[:, 1] - lines[:, 0]).T)
+                for share in np.linspace(0.01, 0.99, 50):
+                    assert not _in_front_of(start + share * (end - start), lines[parallel]).any()
+
+
+def _in_front_of(point: np.ndarray, lines: np.ndarray) -> np.ndarray:
+    """Whether a point lies between the ends of lines, no farther off than the samples' thickest wall, 0.3 m."""
+    way = lines[:, 1] - lines[:, 0]
+    length = np.hypot(*way.T)
+    to = point - lines[:, 0]
+    along = (to * way).sum(axis=1) / length
+    apart = np.abs(to[:, 0] * way[:, 1] - to[:, 1] * way[:, 0]) / length
+    return np.asarray((along > 1e-6) & (along < length - 1e-6) & (apart < 0.301))
+
+
+def test_glass_in_front_of_a_point_is_noticed(sample_plans: Path) -> None:
+    lines = glass_and_doors(sample_plans / "workshop-ground-floor.dxf", 0.001)
+    assert _in_front_of(np.array([13.4, 0.3]), lines).any()
+    assert _in_front_of(np.array([0.3, 2.8]), lines).any()
+    assert not _in_front_of(np.array([11.7, 0.3]), lines).any()
 
 
 @pytest.mark.parametrize("name", NAMES)
