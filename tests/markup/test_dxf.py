@@ -11,6 +11,7 @@ from markup.hostile import HOSTILE, hostile_answers, hostile_plan
 
 from kernelscan.errors import InputError
 from kernelscan.markup.dxf import zones_dxf
+from kernelscan.markup.sheet import SheetOptions, compose_zone_sheets
 from kernelscan.units import HEADER_UNITS
 
 
@@ -117,3 +118,23 @@ def test_braces_and_backslashes_are_read_back_as_they_were() -> None:
     answers = [moved(1, "a\\b{c}", L, [(0, 0), (3, 0), (3, 3), (0, 3)])]
     texts = [text.plain_text() for text in drawn(answers).modelspace().query("MTEXT")]
     assert any("a\\b{c}" in text for text in texts)
+
+
+def test_the_mark_up_lines_up_with_the_sheet() -> None:
+    """One scale and one shift take every outline and zone of the drawing to where the sheet has it."""
+    answers = [*classics()[:2], classics()[3]]
+    model = drawn(answers, "mm").modelspace()
+    sheet = compose_zone_sheets(plan_of(answers), answers, SheetOptions(scale="1:100", paper="A3"))[0]
+    on_paper = [np.array(item.points) for item in sheet.group("rooms").items]
+    in_cad = [np.array(each.get_points("xy")) for each in model.query('LWPOLYLINE[layer=="A-KSCN-ROOM"]')]
+    shift = on_paper[0][0] - in_cad[0][0] / 100
+    for paper, cad in zip(on_paper, in_cad, strict=True):
+        assert cad / 100 + shift == pytest.approx(paper, abs=0.01)
+    zones = {
+        tuple(np.round(np.array(item.points), 2).ravel())
+        for item in sheet.group("zones").items
+        if hasattr(item, "points")
+    }
+    ceilings = [np.array(each.get_points("xy")) for each in model.query('LWPOLYLINE[layer=="A-KSCN-CEIL"]')]
+    assert len(ceilings) == 2
+    assert all(tuple(np.round(cad / 100 + shift, 2).ravel()) in zones for cad in ceilings)
