@@ -23,15 +23,8 @@ from kernelscan.cli.progress import with_progress
 from kernelscan.cli.writing import write_folder
 
 if TYPE_CHECKING:
-    import numpy as np
-    import numpy.typing as npt
-
-    from kernelscan.coverage import RoomZones
-    from kernelscan.coverage.device_spots import DeviceAnswer
-    from kernelscan.plan import Device, Plan, Room
-
-    Point = npt.NDArray[np.float64]
-    Answer = tuple[RoomZones, tuple[DeviceAnswer, ...]]
+    from kernelscan.coverage import RoomAnswer
+    from kernelscan.plan import Plan
 
 __all__ = ["zones"]
 
@@ -50,60 +43,63 @@ def zones(
         str | None,
         typer.Option("--towards", metavar="ROOM", help="Prefer spots near the middle of this room."),
     ] = None,
+    ignore_depth: Annotated[
+        float,
+        typer.Option(
+            "--ignore-depth",
+            metavar="METRES",
+            min=0.0,
+            max=2.0,
+            help="Leave out pilasters, niches and the like up to so deep.",
+        ),
+    ] = 0.0,
     room: RoomNames = [],  # noqa: B006 - typer copies it
     room_layer: RoomLayers = [],  # noqa: B006
     obstacle_layer: ObstacleLayers = [],  # noqa: B006
     quiet: Quiet = False,
 ) -> None:
     """Find from where every wall of each room is seen; write the report and sheets."""
+    from kernelscan.coverage import room_answer
     from kernelscan.reading import read_devices
 
     wanted = read_devices(devices) if devices is not None else ()
     whole = read_drawing(plan_file, unit, room_layer, obstacle_layer)
     spot = wanted_spot(whole, near, towards)
     plan = with_rooms(whole, room)
-    answers = [_answer(each, wanted, spot) for each in with_progress(plan.rooms, "rooms", quiet)]
+    answers = [
+        room_answer(each, wanted, ignore_depth=ignore_depth, near=spot)
+        for each in with_progress(plan.rooms, "rooms", quiet)
+    ]
     outdated = write_folder(out, _files(plan, answers), SHEET_NAMES)
     if not quiet:
         _print(plan, answers, out, outdated)
 
 
-def _answer(room: "Room", devices: Sequence["Device"], near: "Point | None") -> "Answer":
-    """Return the answers for one room, after the exact checker has passed the kernel."""
-    from kernelscan.coverage import room_zones
-    from kernelscan.coverage.device_answers import device_answer
-    from kernelscan.geometry.certificate import verify_kernel
-
-    zones = room_zones(room)
-    verify_kernel(room.outline, zones.kernel, room.holes)
-    return zones, tuple(device_answer(room, zones.kernel, device, near=near) for device in devices)
-
-
-def _files(plan: "Plan", answers: Sequence["Answer"]) -> dict[str, bytes]:
+def _files(plan: "Plan", answers: Sequence["RoomAnswer"]) -> dict[str, bytes]:
     from kernelscan.markup.dxf import zones_dxf
     from kernelscan.markup.sheet import SheetOptions, compose_zone_sheets
     from kernelscan.markup.svg import svg_text
     from kernelscan.report.document import report_text, zones_report
     from kernelscan.report.schedule import schedule_csv
 
-    zones, of_devices = [zones for zones, _ in answers], [devices for _, devices in answers]
+    zones = [answer.zones for answer in answers]
     sheets = compose_zone_sheets(plan, zones, SheetOptions(date=date.today().isoformat()))
     return {
-        "report.json": report_text(zones_report(plan, zones, of_devices)).encode(),
-        "schedule.csv": schedule_csv(plan, zones, of_devices),
+        "report.json": report_text(zones_report(plan, answers)).encode(),
+        "schedule.csv": schedule_csv(plan, answers),
         "markup.dxf": zones_dxf(plan, zones).encode(),
         **{f"sheet-{number:02}.svg": svg_text(sheet).encode() for number, sheet in enumerate(sheets, 1)},
     }
 
 
-def _print(plan: "Plan", answers: Sequence["Answer"], out: Path, outdated: Sequence[str]) -> None:
+def _print(plan: "Plan", answers: Sequence["RoomAnswer"], out: Path, outdated: Sequence[str]) -> None:
     from kernelscan.coverage.cautions import CAUTIONS
     from kernelscan.report.device_choices import print_device_choices
-    from kernelscan.report.tables import print_problems, print_zones
+    from kernelscan.report.tables import print_problems, print_reasons, print_zones
 
-    print_zones(plan, [zones for zones, _ in answers], sys.stdout)
-    if any(devices for _, devices in answers):
-        print_device_choices(plan, [devices for _, devices in answers], sys.stdout)
+    print_zones(plan, answers, sys.stdout)
+    print_reasons(plan, answers, sys.stdout)
+    print_device_choices(plan, answers, sys.stdout)
     print_problems(plan, sys.stdout)
     if outdated:
         print(f"Removed from an earlier run: {', '.join(outdated)}")

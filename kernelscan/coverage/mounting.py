@@ -10,7 +10,7 @@ fixed to: along those it slides.
 
 from collections.abc import Iterable, Iterator
 from itertools import pairwise
-from math import atan2, pi
+from math import atan2, inf, pi
 
 import numpy as np
 
@@ -111,25 +111,25 @@ def _deepest(vertices: np.ndarray) -> np.ndarray:
 
 
 def _wall_spot(room: Room, zone: WallZone, lines: np.ndarray) -> Spot:
-    """The spot of a stretch that may be missed by most: never by more than the way to the stretch's nearer end."""
+    """The spot of a stretch that may be missed by most, without leaving the kernel or coming onto an opening."""
     others = lines[~walls_along(room, zone.walls, lines)]
-    if len(others) == 0:
-        # The room is round and all of its wall is one zone: any place is as good as another, and the device may be
-        # off by as much as leaves it on its own side of the room.
-        wall, point, clearance = (
-            zone.walls[0],
-            zone.path[:2].mean(axis=0),
-            deepest_point([room.outline]).radius,
-        )
-    else:
-        found = (
-            deepest_along(start, end, lambda points: line_depths(points, others).min(axis=1))
-            for start, end in pairwise(zone.path)
-        )
-        clearance, point, wall = max(
-            ((_clearance(point, others), point, wall) for point, wall in zip(found, zone.walls, strict=True)),
-            key=lambda each: round(each[0], 6),
-        )
+    # A round room is one zone along all of its wall: then the device is to stay on its own side of it.
+    most = inf if len(others) else deepest_point([room.outline]).radius
+    best: tuple[float, np.ndarray, WallRef] | None = None
+    for wall, (start, end) in zip(zone.walls, pairwise(zone.path), strict=True):
+        openings = [room.opening_ends(each) for each in room.openings if each.wall == wall]
+
+        def depth(points: np.ndarray, openings: list[np.ndarray] = openings) -> np.ndarray:
+            off = [np.hypot(*(points - ends[k]).T) for ends in openings for k in (0, 1)]
+            depths = line_depths(points, others).min(axis=1, initial=most)
+            return np.asarray(np.min([depths, *off], axis=0))
+
+        point = deepest_along(start, end, depth)
+        clearance = max(0.0, float(depth(point[None])[0]))
+        if best is None or round(clearance, 6) > round(best[0], 6):
+            best = clearance, point, wall
+    assert best is not None  # a zone has a wall at least
+    clearance, point, wall = best
     start, end = room.wall_ends(wall)
     bearing = atan2(*(end - start)[::-1]) + pi / 2
     return Spot("wall", point, pi, bearing, _farthest(room, point), clearance, (wall,))

@@ -4,6 +4,7 @@ from collections.abc import Sequence
 from math import degrees
 from typing import TextIO
 
+from kernelscan.coverage import RoomAnswer
 from kernelscan.coverage.device_spots import DeviceAnswer, DeviceSpot, cheapest
 from kernelscan.coverage.setting_out import SettingOut
 from kernelscan.coverage.sides import face_name
@@ -27,8 +28,10 @@ OBSTRUCTIONS = {
 """Why a device does not cover a room, as a person says it."""
 
 
-def print_device_choices(plan: Plan, answers: Sequence[Sequence[DeviceAnswer]], out: TextIO) -> None:
+def print_device_choices(plan: Plan, answers: Sequence[RoomAnswer], out: TextIO) -> None:
     """Print for each room and device the spot that covers the room, or what the device falls short by."""
+    if not any(answer.devices for answer in answers):
+        return
     unit = plain_text(plan.unit.name)
     table = table_of(
         "room",
@@ -43,8 +46,8 @@ def print_device_choices(plan: Plan, answers: Sequence[Sequence[DeviceAnswer]], 
         "set out, or why not",
     )
     for of_room in answers:
-        best = cheapest(of_room)
-        for number, answer in enumerate(of_room):
+        best = cheapest(of_room.devices)
+        for number, answer in enumerate(of_room.devices):
             head = [answer.room.id, cell(answer.room.name)] if number == 0 else ["", ""]
             name = plain_text(answer.device.name, 30) + (" (cheapest)" if answer is best else "")
             table.add_row(*head, cell(name), *_cells(plan, answer))

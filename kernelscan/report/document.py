@@ -14,9 +14,10 @@ from typing import Any, NotRequired, TypedDict
 
 import numpy as np
 
-from kernelscan.coverage import RoomZones, Spot
+from kernelscan.coverage import RoomAnswer, RoomZones, Spot, TolerantAnswer
 from kernelscan.coverage.cautions import CAUTIONS
-from kernelscan.coverage.device_spots import DeviceAnswer
+from kernelscan.coverage.hidden import Hidden
+from kernelscan.coverage.reasons import Reasons
 from kernelscan.geometry.kernel import Kernel
 from kernelscan.plan import Plan, Problem, Room
 from kernelscan.report.device_entries import DeviceEntry, device_entries
@@ -79,6 +80,63 @@ class ZonesEntry(TypedDict):
     corners: list[SpotEntry]
 
 
+class PatchEntry(TypedDict):
+    """A patch of floor that is not seen: a point well inside it, and its area."""
+
+    at: Position
+    area: float
+
+
+class HiddenStretchEntry(TypedDict):
+    """A stretch of wall that is not seen."""
+
+    wall: Wall
+    ends: list[Position]
+
+
+class HiddenEntry(TypedDict):
+    """What a point does not see of the exact room."""
+
+    floor: float
+    wall: float
+    patches: list[PatchEntry]
+    stretches: list[HiddenStretchEntry]
+
+
+class WhyNotEntry(TypedDict):
+    """Why no point sees every wall, and the best of the points tried."""
+
+    because: list[str]
+    shortfall: float
+    blame: str
+    ignore_depth: float | None
+    best_tried: Position
+    tried: int
+    hidden: HiddenEntry
+
+
+class FeatureEntry(TypedDict):
+    """A small feature that was left out."""
+
+    kind: str
+    depth: float
+    width: float
+    middle: Position
+    walls: list[Wall]
+
+
+class TolerantEntry(TypedDict):
+    """The answer without small features."""
+
+    ignore_depth: float
+    outline: list[Position]
+    features: list[FeatureEntry]
+    kernel: KernelEntry
+    zones: ZonesEntry
+    recommended: list[SpotEntry]
+    hidden: list[HiddenEntry | None]
+
+
 class OpeningEntry(TypedDict):
     """A door, a window or a gap, and where along its wall it lies, from 0 to 1."""
 
@@ -103,6 +161,8 @@ class RoomEntry(TypedDict):
     kernel: NotRequired[KernelEntry]
     zones: NotRequired[ZonesEntry]
     recommended: NotRequired[list[SpotEntry]]
+    why_not: NotRequired[WhyNotEntry]
+    tolerant: NotRequired[TolerantEntry]
     devices: NotRequired[list[DeviceEntry]]
 
 
@@ -132,18 +192,9 @@ def rooms_report(plan: Plan) -> Report:
     return _report(plan, [_room(room) for room in plan.rooms])
 
 
-def zones_report(
-    plan: Plan, answers: Sequence[RoomZones], devices: Sequence[Sequence[DeviceAnswer]] = ()
-) -> Report:
-    """Return the report of every answered room, as the ``zones`` command writes it.
-
-    ``devices`` holds, room by room, what each device can do there; it may be left out.
-    """
-    rooms = [_answered(zones) for zones in answers]
-    for entry, of_room in zip(rooms, devices or [()] * len(rooms), strict=True):
-        if of_room:
-            entry["devices"] = device_entries(of_room)
-    return _report(plan, rooms)
+def zones_report(plan: Plan, answers: Sequence[RoomAnswer]) -> Report:
+    """Return the report of every answered room, as the ``zones`` command writes it."""
+    return _report(plan, [_answered(answer) for answer in answers])
 
 
 def report_text(report: Report) -> str:
@@ -198,10 +249,22 @@ def _room(room: Room) -> RoomEntry:
     }
 
 
-def _answered(zones: RoomZones) -> RoomEntry:
-    entry = _room(zones.room)
-    entry["kernel"] = _kernel(zones.kernel)
-    entry["zones"] = {
+def _answered(answer: RoomAnswer) -> RoomEntry:
+    entry = _room(answer.room)
+    entry["kernel"] = _kernel(answer.zones.kernel)
+    entry["zones"] = _zones(answer.zones)
+    entry["recommended"] = [_spot(spot) for spot in answer.zones.recommended]
+    if answer.reasons is not None:
+        entry["why_not"] = _why_not(answer.reasons)
+    if answer.tolerant is not None:
+        entry["tolerant"] = _tolerant(answer.tolerant)
+    if answer.devices:
+        entry["devices"] = device_entries(answer.devices)
+    return entry
+
+
+def _zones(zones: RoomZones) -> ZonesEntry:
+    return {
         "ceiling": [] if zones.ceiling is None else _positions(zones.ceiling.vertices),
         "walls": [
             {
@@ -213,8 +276,51 @@ def _answered(zones: RoomZones) -> RoomEntry:
         ],
         "corners": [_spot(zone.spot) for zone in zones.corners],
     }
-    entry["recommended"] = [_spot(spot) for spot in zones.recommended]
-    return entry
+
+
+def _why_not(reasons: Reasons) -> WhyNotEntry:
+    return {
+        "because": list(reasons.because),
+        "shortfall": reasons.shortfall,
+        "blame": reasons.blame,
+        "ignore_depth": None if reasons.least is None else reasons.least.depth,
+        "best_tried": reasons.best.point.tolist(),
+        "tried": reasons.best.tried,
+        "hidden": _hidden(reasons.hidden),
+    }
+
+
+def _tolerant(tolerant: TolerantAnswer) -> TolerantEntry:
+    without = tolerant.simplified
+    return {
+        "ignore_depth": without.depth,
+        "outline": _positions(without.room.outline),
+        "features": [
+            {
+                "kind": feature.kind,
+                "depth": feature.depth,
+                "width": feature.width,
+                "middle": feature.middle.tolist(),
+                "walls": [list(wall) for wall in feature.walls],
+            }
+            for feature in without.features
+        ],
+        "kernel": _kernel(tolerant.zones.kernel),
+        "zones": _zones(tolerant.zones),
+        "recommended": [_spot(spot) for spot in tolerant.zones.recommended],
+        "hidden": [None if hidden is None else _hidden(hidden) for hidden in tolerant.hidden],
+    }
+
+
+def _hidden(hidden: Hidden) -> HiddenEntry:
+    return {
+        "floor": hidden.floor_hidden,
+        "wall": hidden.wall_hidden,
+        "patches": [{"at": list(patch.middle), "area": patch.area} for patch in hidden.patches],
+        "stretches": [
+            {"wall": list(stretch.wall), "ends": _positions(stretch.ends)} for stretch in hidden.stretches
+        ],
+    }
 
 
 def _kernel(kernel: Kernel) -> KernelEntry:

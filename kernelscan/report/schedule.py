@@ -7,7 +7,7 @@ from math import ceil, degrees, floor
 
 import numpy as np
 
-from kernelscan.coverage import RoomZones
+from kernelscan.coverage import RoomAnswer, RoomZones
 from kernelscan.coverage.device_spots import DeviceAnswer
 from kernelscan.coverage.wording import Custom
 from kernelscan.plain_text import plain_text
@@ -43,21 +43,23 @@ SLACK = 1e-6
 """In the last place: what is whole but for its rounding is not pushed over."""
 
 
-def schedule_csv(
-    plan: Plan, answers: Sequence[RoomZones], devices: Sequence[Sequence[DeviceAnswer]] = ()
-) -> bytes:
+def schedule_csv(plan: Plan, answers: Sequence[RoomAnswer]) -> bytes:
     """Return ``schedule.csv``, in UTF-8 with a byte-order mark, so that spreadsheet programs read names right.
 
-    ``devices`` holds, room by room, what each device can do there; it may be left out. Ranges are rounded up and
-    tolerances down, to the millimetre.
+    Ranges are rounded up and tolerances down, to the millimetre.
     """
     text = io.StringIO(newline="")
     writer = csv.writer(text, lineterminator="\r\n")
     writer.writerow(SCHEDULE_COLUMNS)
-    for zones, of_room in zip(answers, devices or [()] * len(answers), strict=True):
-        writer.writerows(_rows(plan, zones))
-        for answer in of_room:
-            writer.writerows(_device_rows(plan, zones, answer))
+    for answer in answers:
+        writer.writerows(_rows(plan, answer.zones, ""))
+        if answer.tolerant is not None:
+            depth = answer.tolerant.simplified.depth
+            writer.writerows(
+                _rows(plan, answer.tolerant.zones, f"small features up to {depth:.3g} m left out")
+            )
+        for of_device in answer.devices:
+            writer.writerows(_device_rows(plan, answer.zones, of_device))
     return text.getvalue().encode("utf-8-sig")
 
 
@@ -73,7 +75,7 @@ def _head(zones: RoomZones, device: str) -> list[str]:
     ]
 
 
-def _rows(plan: Plan, zones: RoomZones) -> Iterator[list[str]]:
+def _rows(plan: Plan, zones: RoomZones, remark: str) -> Iterator[list[str]]:
     """The recommended spots without any device file, or the reason why there is none."""
     for spot in zones.recommended:
         yield [
@@ -86,10 +88,14 @@ def _rows(plan: Plan, zones: RoomZones) -> Iterator[list[str]]:
             _down(spot.tolerance, 3),
             "",
             "",
-            "",
+            remark,
         ]
     if not zones.recommended:
-        yield [*_head(zones, ""), *[""] * 11, kernel_or_reason(plan, zones)]
+        yield [
+            *_head(zones, ""),
+            *[""] * 11,
+            "; ".join(filter(None, (remark, kernel_or_reason(plan, zones)))),
+        ]
 
 
 def _device_rows(plan: Plan, zones: RoomZones, answer: DeviceAnswer) -> Iterator[list[str]]:

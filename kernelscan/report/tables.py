@@ -3,12 +3,14 @@
 from collections.abc import Sequence
 from typing import TextIO
 
+from rich.table import Table
 from rich.text import Text
 
-from kernelscan.coverage import RoomZones, Spot
+from kernelscan.coverage import RoomAnswer, RoomZones, Spot
 from kernelscan.coverage.wording import Custom, angle_in_words
 from kernelscan.plain_text import plain_text
 from kernelscan.plan import Plan, Problem, Room
+from kernelscan.report.reason_lines import feature_lines, reason_lines
 from kernelscan.report.terminal import cell, print_parts, table_of
 from kernelscan.report.wording import (
     drawn_coordinate,
@@ -18,7 +20,7 @@ from kernelscan.report.wording import (
     tolerance_in_words,
 )
 
-__all__ = ["print_problems", "print_rooms", "print_zones"]
+__all__ = ["print_problems", "print_reasons", "print_rooms", "print_zones"]
 
 
 def print_rooms(plan: Plan, out: TextIO) -> None:
@@ -37,7 +39,7 @@ def print_rooms(plan: Plan, out: TextIO) -> None:
     print_parts(out, _heading(plan), table)
 
 
-def print_zones(plan: Plan, answers: Sequence[RoomZones], out: TextIO) -> None:
+def print_zones(plan: Plan, answers: Sequence[RoomAnswer], out: TextIO) -> None:
     """Print for each room the kernel and the recommended spot of each mount, or why there is none."""
     unit = plain_text(plan.unit.name)
     table = table_of(
@@ -52,13 +54,32 @@ def print_zones(plan: Plan, answers: Sequence[RoomZones], out: TextIO) -> None:
         "range",
         "may be off by",
     )
-    for zones in answers:
-        room = zones.room
-        head: list[str | Text] = [room.id, cell(room.name), _area(plan, room), kernel_or_reason(plan, zones)]
-        for spot in zones.recommended or (None,):
-            table.add_row(*head, *(["–"] * 6 if spot is None else _spot_cells(plan, spot)))
-            head = ["", "", "", ""]
+    for answer in answers:
+        room = answer.room
+        head: list[str | Text] = [room.id, cell(room.name), _area(plan, room)]
+        _add_spots(table, plan, head, answer.zones, "")
+        if answer.tolerant is not None:
+            depth = tolerance_in_words(plan, answer.tolerant.simplified.depth)
+            _add_spots(table, plan, ["", "", ""], answer.tolerant.zones, f"without features to {depth}: ")
     print_parts(out, _heading(plan), table)
+
+
+def _add_spots(table: Table, plan: Plan, head: list[str | Text], zones: RoomZones, kind: str) -> None:
+    """Add a row for each recommended spot, or one that says why there is none."""
+    what = kind + kernel_or_reason(plan, zones)
+    for spot in zones.recommended or (None,):
+        table.add_row(*head, what, *(["–"] * 6 if spot is None else _spot_cells(plan, spot)))
+        head, what = ["", "", ""], ""
+
+
+def print_reasons(plan: Plan, answers: Sequence[RoomAnswer], out: TextIO) -> None:
+    """Print for each room that no point sees whole why that is, and what could be done; and what was left out."""
+    for answer in answers:
+        lines = [*reason_lines(plan, answer), *feature_lines(plan, answer)]
+        if lines:
+            print_parts(
+                out, f"{answer.room.id} {plain_text(answer.room.name)}:", *(f"  {line}" for line in lines)
+            )
 
 
 def print_problems(plan: Plan, out: TextIO) -> None:

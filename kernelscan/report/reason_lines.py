@@ -1,0 +1,74 @@
+"""Why no point sees a room whole, and what small features were left out, in lines for a person."""
+
+from collections.abc import Iterator
+
+from kernelscan.coverage import RoomAnswer
+from kernelscan.coverage.features import Feature
+from kernelscan.coverage.hidden import Hidden
+from kernelscan.coverage.wording import Custom
+from kernelscan.plan import Plan
+from kernelscan.report.wording import drawn_position, tolerance_in_words
+
+__all__ = ["feature_lines", "reason_lines"]
+
+PATCHES = 3
+"""How many hidden patches are told one by one."""
+
+
+def reason_lines(plan: Plan, answer: RoomAnswer) -> Iterator[str]:
+    """Yield why no point of a room sees every wall, what would help, and the best point tried."""
+    reasons = answer.reasons
+    if reasons is None:
+        return
+    yield from reasons.because
+    yield f"It falls short by {_up_in_words(plan, reasons.shortfall)}: so far would every wall have to give way."
+    if reasons.least is not None and reasons.least.depth > 0:
+        depth = reasons.least.depth
+        yield f"With --ignore-depth {_advice(depth)} the outline would have points that see all the rest of it."
+    yield (
+        f"The {reasons.best.words} is {drawn_position(plan, reasons.best.point.tolist())}; "
+        f"{_hidden(plan, reasons.hidden)}."
+    )
+
+
+def _advice(depth: float) -> str:
+    """A depth in metres, rounded up to the millimetre, as the option takes it."""
+    return f"{-(-depth // 0.001) * 0.001 + 0.0:.3f}"
+
+
+def feature_lines(plan: Plan, answer: RoomAnswer) -> Iterator[str]:
+    """Yield the small features that were left out, and what they hide from each recommended spot."""
+    tolerant = answer.tolerant
+    if tolerant is None or not tolerant.simplified.features:
+        return
+    for feature in tolerant.simplified.features:
+        yield f"Left out: {_feature(plan, feature)}."
+    for spot, hidden in zip(tolerant.zones.recommended, tolerant.hidden, strict=True):
+        place = f"From the {spot.mount} spot {drawn_position(plan, spot.point.tolist())}"
+        if hidden is None:
+            yield f"{place}: it lies on a feature that was left out; choose another."
+        else:
+            yield f"{place}: {_hidden(plan, hidden)}."
+
+
+def _feature(plan: Plan, feature: Feature) -> str:
+    custom = Custom(plan.unit.imperial)
+    where = drawn_position(plan, feature.middle.tolist())
+    return f"a {feature.kind} {custom.length(feature.width)} wide and {custom.length(feature.depth)} deep at {where}"
+
+
+def _hidden(plan: Plan, hidden: Hidden) -> str:
+    """What is not seen: floor, wall, and where the largest patches are."""
+    custom = Custom(plan.unit.imperial)
+    if not hidden.patches and not hidden.stretches:
+        return "nothing is hidden"
+    where = ", ".join(drawn_position(plan, patch.middle) for patch in hidden.patches[:PATCHES])
+    patches = f", most of it at {where}" if where else ""
+    return (
+        f"it does not see {custom.area(hidden.floor_hidden)} {custom.area_unit} of the floor{patches}, "
+        f"and {custom.length(hidden.wall_hidden)} of the walls"
+    )
+
+
+def _up_in_words(plan: Plan, metres: float) -> str:
+    return tolerance_in_words(plan, metres + (0.0254 / 16 if plan.unit.imperial else 0.001))
