@@ -28,7 +28,7 @@ Source
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
-from itertools import pairwise
+from itertools import accumulate, pairwise
 from math import dist, hypot, inf, sin
 from typing import Literal
 
@@ -105,6 +105,10 @@ class StraightWalls:
         self.lengths = [hypot(*way) for way in ways]
         self.units = [(x / size, y / size) for (x, y), size in zip(ways, self.lengths, strict=True)]
         self.one_line, self.smooth = tolerances.chord, sin(tolerances.smooth)
+        turns = [d[0] * e[1] - d[1] * e[0] for d, e in pairwise([*self.units, self.units[0]])]
+        # How many sharp turns there are before each wall, and in all.
+        self._lefts = [0, *accumulate(turn >= self.smooth for turn in turns)]
+        self._rights = [0, *accumulate(turn <= -self.smooth for turn in turns)]
 
     def __len__(self) -> int:
         """How many there are."""
@@ -174,28 +178,30 @@ class StraightWalls:
         chain = self._between(a, b)
         chain = (*([m] if beyond < -ROUNDING else []), *chain, *([m] if before < -ROUNDING else []))
         # The cheap tests come first: few chains pass them.
-        if _height(chain, path, limit) == inf or _height([m], chain, limit) == inf:
-            return None
         shape = self._shape(a, b, chain)
-        return _joint(a, b, shape, path, chain, _deviation(chain, path), limit) if shape else None
+        if shape is None or _height(chain, path, limit) == inf or _height([m], chain, limit) == inf:
+            return None
+        return _joint(a, b, shape, path, chain, _deviation(chain, path), limit)
 
     def _shape(self, a: int, b: int, chain: Sequence[Point]) -> Shape | None:
-        if self._is_step(a, b, chain):
+        if self._turns_both_ways(a, b) and self._runs_along(chain, a, b):
             return "step"
         return "cut" if dist(chain[0], chain[-1]) < min(self.lengths[a], self.lengths[b]) - ROUNDING else None
 
-    def _is_step(self, a: int, b: int, chain: Sequence[Point]) -> bool:
-        """Whether the chain turns sharply both ways, and its longest piece runs along one of the two walls."""
-        count = len(self)
-        units = [self.units[k % count] for k in range(a, (b if b > a else b + count) + 1)]
-        turns = [d[0] * e[1] - d[1] * e[0] for d, e in pairwise(units)]
-        if min(turns) > -self.smooth or max(turns) < self.smooth:
-            return False
+    def _turns_both_ways(self, a: int, b: int) -> bool:
+        """Whether the outline turns sharply to the left and to the right somewhere from wall a to wall b."""
+        return all(
+            turns[b] > turns[a] if b > a else turns[-1] + turns[b] > turns[a]
+            for turns in (self._lefts, self._rights)
+        )
+
+    def _runs_along(self, chain: Sequence[Point], *walls: int) -> bool:
+        """Whether the longest piece of a chain runs along one of the walls, in its direction."""
         (px, py), (qx, qy) = max(pairwise(chain), key=lambda ends: dist(*ends))
         way, size = (qx - px, qy - py), dist((px, py), (qx, qy))
         return any(
             abs(d[0] * way[1] - d[1] * way[0]) < SQUARE * size and d[0] * way[0] + d[1] * way[1] > 0
-            for d in (self.units[a], self.units[b])
+            for d in (self.units[wall] for wall in walls)
         )
 
     def _between(self, a: int, b: int) -> tuple[Point, ...]:

@@ -4,8 +4,9 @@ Method
     All joints within a limit are found once and put in order: by depth, then by the length of wall left out for each
     wall saved, then those that make the room smaller, then by place. Each has one chance, in its turn. It is taken if
     both its walls still stand, neither runs on into the chain, both keep some length in their own direction, and the
-    outline is still a ring around the room's obstacles. Since no step undoes another, a higher limit only adds steps
-    at the end.
+    outline is still a ring around the room's obstacles. Where it would be none, the two walls stay for good: beside a
+    niche that must stay, since a column stands in it, the wall is no jog. Since no step undoes another, a higher limit
+    only adds steps at the end.
 Cost
     The search for joints, and one check of the ring for each step that is tried.
 """
@@ -65,6 +66,7 @@ class LeavingOut:
         self.joints: dict[int, Joint] = {}
         self._limit = limit
         self._standing = list(range(len(self.walls)))
+        self._held: set[int] = set()
 
     def levels(self) -> Iterator[float]:
         """Take all steps; yield, before the first and after the last of each depth, the depth taken so far."""
@@ -94,21 +96,28 @@ class LeavingOut:
         dropped = turned[1 : turned.index(joint.b)]
         if not dropped or any(_is_one_line(joints.get(wall)) for wall in (joint.a, dropped[-1])):
             return None
+        if not self._held.isdisjoint(dropped):
+            return None
         standing = [wall for wall in standing if wall not in dropped]
         joints = {wall: each for wall, each in joints.items() if wall in standing} | {joint.a: joint}
         pieces = self._pieces(standing, joints)
-        rings = _rings(pieces, self.rings[1:]) if pieces is not None else None
-        return (standing, joints, pieces, rings) if pieces is not None and rings is not None else None
+        if not pieces:
+            return None
+        rings = _rings(pieces, self.rings[1:])
+        if rings is None:
+            self._held |= {joint.a, joint.b}
+            return None
+        return standing, joints, pieces, rings
 
-    def _pieces(self, standing: list[int], joints: dict[int, Joint]) -> list[Piece] | None:
-        """The outline's edges, or ``None`` if a wall would be left without length."""
+    def _pieces(self, standing: list[int], joints: dict[int, Joint]) -> list[Piece]:
+        """The outline's edges; none at all if a wall would be left without length."""
         pieces: list[Piece] = []
         for k, wall in enumerate(standing):
             before, after = joints.get(standing[k - 1]), joints.get(wall)
             start = before.path[-1] if before else self.walls.starts[wall]
             end = after.path[0] if after else self.walls.ends[wall]
             if self.walls.along(wall, end) - self.walls.along(wall, start) <= ROUNDING:
-                return None
+                return []
             pieces += self._of_wall(wall, start, end)
             if after:
                 pieces += [Piece(point, None, after) for point in after.path[:-1]]
