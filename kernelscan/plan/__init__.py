@@ -1,7 +1,7 @@
 """What a building is: frozen values with their rules, and nothing about files, questions or paper."""
 
 from kernelscan.plan.device import Clearances, Device, Fixing, Projection
-from kernelscan.plan.plan import Plan, Problem
+from kernelscan.plan.plan import LayerUse, Plan, Problem, View
 from kernelscan.plan.room import Fixture, Obstacle, Opening, Room, Source, WallRef
 
 __all__ = [
@@ -9,6 +9,7 @@ __all__ = [
     "Device",
     "Fixing",
     "Fixture",
+    "LayerUse",
     "Obstacle",
     "Opening",
     "Plan",
@@ -16,5 +17,6 @@ __all__ = [
     "Projection",
     "Room",
     "Source",
+    "View",
     "WallRef",
 ]

@@ -7,10 +7,21 @@ import numpy as np
 
 from kernelscan.geometry.rings import Ring, signed_area
 
-__all__ = ["Fixture", "NameSource", "Obstacle", "Opening", "OpeningKind", "Room", "Source", "WallRef"]
+__all__ = [
+    "Closing",
+    "Fixture",
+    "NameSource",
+    "Obstacle",
+    "Opening",
+    "OpeningKind",
+    "Room",
+    "Source",
+    "WallRef",
+]
 
 NameSource = Literal["label", "layer", "number"]
 OpeningKind = Literal["door", "window", "gap"]
+Closing = Literal["outline", "walls"]
 
 
 class WallRef(NamedTuple):
@@ -90,6 +101,8 @@ class Room:
         Layer and handle of the outline.
     fixtures
         What is drawn in it as a named block; it blocks no sight.
+    closed_by
+        Whether the drawing outlines the room, or walls enclose it.
     """
 
     id: str
@@ -100,6 +113,7 @@ class Room:
     name_from: NameSource = "number"
     source: Source = Source()
     fixtures: tuple[Fixture, ...] = ()
+    closed_by: Closing = "outline"
 
     @property
     def holes(self) -> tuple[Ring, ...]:

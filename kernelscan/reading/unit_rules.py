@@ -4,7 +4,7 @@ A header is wrong more often than not in drawings that people exchange, so its w
 median room smaller than a cupboard or larger than a stadium, that is a problem of the plan.
 """
 
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from statistics import median
 
 from ezdxf.document import Drawing
@@ -12,64 +12,72 @@ from ezdxf.document import Drawing
 from kernelscan.errors import InputError
 from kernelscan.plan import Problem
 from kernelscan.plan.plan import UnitSource
+from kernelscan.reading.interpretation import Interpretation
+from kernelscan.reading.unit_proposal import PROPOSED, UnitProposal, proposed_unit
 from kernelscan.units import HEADER_UNITS, OPTION_UNITS, Unit, unit_by_name
 
 __all__ = ["absurd_unit", "drawing_unit", "no_unit"]
 
-PROPOSED = ("mm", "cm", "m", "in", "ft")
 SMALLEST_MEDIAN, LARGEST_MEDIAN = 0.5, 5000.0
 
 
 def drawing_unit(drawing: Drawing, option: str | None) -> tuple[Unit, UnitSource] | None:
-    """Return the unit and who said so; ``None`` when nobody does.
+    """Return the unit and who said so; ``None`` when nobody does, or when it is to be found out.
 
     Raises
     ------
     InputError
         If the option names no unit.
     """
+    if option == "auto":
+        return None
     if option is not None:
         if option not in OPTION_UNITS:
-            raise InputError(f"--unit: got {option!r}, expected one of {', '.join(OPTION_UNITS)}")
+            raise InputError(f"--unit: got {option!r}, expected auto or one of {', '.join(OPTION_UNITS)}")
         return unit_by_name(option), "option"
     code = drawing.header.get("$INSUNITS", 0)
     unit = HEADER_UNITS.get(code) if isinstance(code, int) else None
     return (unit, "header") if unit else None
 
 
-def no_unit(file: str, code: object, areas_in: Callable[[float], Sequence[float]]) -> InputError:
-    """Return the error for a drawing without a unit: what its rooms would measure under each likely one.
+def no_unit(file: str, code: object, reading: Interpretation, proposal: UnitProposal | None) -> InputError:
+    """Return the error for a drawing without a unit: what its rooms would measure under each likely one."""
+    valid = isinstance(code, int) and code in HEADER_UNITS
+    said = "says no unit" if code in (0, None) or valid else f"says unit {code!r}, which does not exist"
+    lead = (
+        f"{file}: no unit can be found out from the drawing"
+        if valid
+        else f"{file}: the header ($INSUNITS) {said}"
+    )
+    seems = (
+        f"; it seems to be {proposal.unit.name} ({proposal.reason}): --unit auto accepts that"
+        if proposal
+        else ""
+    )
+    return InputError(f"{lead}; {_choices(reading)}; give --unit{seems}")
 
-    Parameters
-    ----------
-    file
-        The drawing's name.
-    code
-        What its header says.
-    areas_in
-        Gives the rooms' areas in square metres for a number of metres per drawing unit.
-    """
-    said = "says no unit" if code in (0, None) else f"says unit {code!r}, which does not exist"
-    return InputError(f"{file}: the header ($INSUNITS) {said}; {_choices(areas_in)}; give --unit")
 
-
-def absurd_unit(
-    areas: Sequence[float], unit: Unit, areas_in: Callable[[float], Sequence[float]]
-) -> list[Problem]:
-    """Return a problem if the header's unit makes the median room under 0.5 m2 or over 5,000 m2."""
-    if not areas or SMALLEST_MEDIAN <= median(areas) <= LARGEST_MEDIAN:
+def absurd_unit(areas: Sequence[float], unit: Unit, reading: Interpretation) -> list[Problem]:
+    """Return a problem if the header's unit makes the median room under 0.5 m2 or over 5,000 m2, or finds none."""
+    if areas and SMALLEST_MEDIAN <= median(areas) <= LARGEST_MEDIAN:
         return []
+    proposal = proposed_unit(reading)
+    if not areas and (proposal is None or proposal.unit == unit):
+        return []
+    makes = (
+        f"makes the median room {_square_metres(median(areas))}" if areas else "leaves no room of any size"
+    )
+    seems = f"; it seems to be {proposal.unit.name} ({proposal.reason})" if proposal else ""
     text = (
-        f"the header's unit, {unit.name}, makes the median room {_square_metres(median(areas))}; "
-        f"{_choices(areas_in)}; give the right one by --unit"
+        f"the header's unit, {unit.name}, {makes}; {_choices(reading)}{seems}; give the right one by --unit"
     )
     return [Problem("absurd-unit", text)]
 
 
-def _choices(areas_in: Callable[[float], Sequence[float]]) -> str:
+def _choices(reading: Interpretation) -> str:
     parts = []
     for name in PROPOSED:
-        areas = areas_in(unit_by_name(name).metres)
+        areas = reading.areas(unit_by_name(name).metres)
         parts.append(f"{_square_metres(median(areas))} in {name}" if areas else f"no room in {name}")
     return "the median room would measure " + ", ".join(parts)
 
