@@ -98,7 +98,7 @@ def chosen(
     ]
     fitting = [each for each in found if each is not None]
     good = [each for each in fitting if asked or each.scale.mm_per_metre >= least]
-    handy = [each for each in fitting[:2] if each in good and _holds_all(each.layout, schedule)]
+    handy = [each for each in fitting[:2] if each in good and schedule.fits(each.layout.schedule)]
     if handy or good:
         return (handy or good)[0]
     overviews = [
@@ -136,11 +136,7 @@ def _best_on(
 
 def _merit(choice: Choice, schedule: Schedule) -> tuple[float, bool, float]:
     plan = choice.layout.plan
-    return choice.scale.denominator, not _holds_all(choice.layout, schedule), -plan.width * plan.height
-
-
-def _holds_all(layout: Layout, schedule: Schedule) -> bool:
-    return schedule.fitting(0, layout.schedule.height) == len(schedule.entries)
+    return choice.scale.denominator, not schedule.fits(choice.layout.schedule), -plan.width * plan.height
 
 
 def _fits(size: tuple[float, float], choice: Choice) -> bool:

@@ -10,7 +10,7 @@ from math import atan2, cos, dist, pi, sin
 
 import numpy as np
 
-from kernelscan.coverage import RoomZones
+from kernelscan.coverage import RoomZones, Spot
 from kernelscan.coverage.setting_out import setting_out
 from kernelscan.coverage.wording import Custom
 from kernelscan.markup.drawing import wall_normal
@@ -47,11 +47,20 @@ class Length:
 def lengths_to_set_out(zones: RoomZones) -> tuple[Length, ...]:
     """Return the lengths by which a fitter finds the recommended points of a room; a corner needs none."""
     return tuple(
-        Length(offset.start, spot.point, -wall_normal(zones.room, spot.walls[0]) if spot.walls else None)
+        Length(offset.start, spot.point, _away(zones, spot, offset.start))
         for spot in zones.recommended
         for offset in setting_out(zones.room, spot.point, spot.walls).offsets
         if offset.distance > SHORTEST
     )
+
+
+def _away(zones: RoomZones, spot: Spot, start: np.ndarray) -> np.ndarray | None:
+    """Return the direction out of the room for a length that runs along the wall of its point."""
+    for wall in spot.walls:
+        normal = wall_normal(zones.room, wall)
+        if abs(float((start - spot.point) @ normal)) < SHORTEST:
+            return -normal
+    return None
 
 
 @dataclass(frozen=True, slots=True)

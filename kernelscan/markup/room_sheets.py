@@ -1,17 +1,15 @@
 """A sheet for each room: at the largest scale that fits, with its setting-out dimensions and a key plan."""
 
 from collections.abc import Iterator, Sequence
-from dataclasses import replace
 from itertools import dropwhile, islice
 
 import numpy as np
 
 from kernelscan.coverage import RoomZones
 from kernelscan.coverage.wording import Custom
-from kernelscan.markup.choice import chosen
 from kernelscan.markup.dimensions import dimensions_on_paper, lengths_to_set_out
 from kernelscan.markup.drawing import linework_items
-from kernelscan.markup.layout import Layout
+from kernelscan.markup.layout import Layout, arrangements
 from kernelscan.markup.options import SheetOptions
 from kernelscan.markup.pages import (
     Page,
@@ -21,7 +19,7 @@ from kernelscan.markup.pages import (
     schedule_group,
     schedule_pages,
 )
-from kernelscan.markup.paper import Scale, largest_scale, scale_by_text, usual_scales
+from kernelscan.markup.paper import Scale, largest_scale, paper_by_name, scale_by_text, usual_scales
 from kernelscan.markup.plan_block import caption, room_groups, view_of
 from kernelscan.markup.scene import Box, Fill, Group, Item, Scene, Stroke, Text
 from kernelscan.markup.schedule import Schedule, schedule_of
@@ -73,7 +71,7 @@ def _pages(
 ) -> Iterator[Page]:
     """Yield the sheet of a room, and one for its schedule where that does not fit beside it."""
     schedule, extent = schedule_of([zones], custom), plan_extent(plan, [zones.room])
-    layout, scale = _layout(extent, zones, schedule, extra, options, custom.imperial)
+    layout, scale = _layout(extent, schedule, extra, options, custom.imperial)
     view = view_of(layout, scale, extent)
     key = _key_box(view, extent)
     holds = schedule.fitting(0, layout.schedule.height)
@@ -84,26 +82,35 @@ def _pages(
 
 
 def _layout(
-    extent: Box,
-    zones: RoomZones,
-    schedule: Schedule,
-    extra: Sequence[str],
-    options: SheetOptions,
-    imperial: bool,
+    extent: Box, schedule: Schedule, extra: Sequence[str], options: SheetOptions, imperial: bool
 ) -> tuple[Layout, Scale]:
-    """Return layout and scale: as asked where the room fits, else the largest scale on the smallest paper that does."""
+    """Return layout and scale: as asked where the room fits, else the largest scale on the smallest paper that does.
+
+    Of the arrangements, one that holds the room's schedule goes before one that does not.
+    """
     wanted = scale_by_text(options.scale) if options.scale else None
-    papers = (options.paper,) if options.paper else ("letter", "ANSI B") if imperial else ("A4", "A3")
-    for paper in papers:
-        asked = replace(options, paper=paper, scale=None)
-        layout = chosen(extent, [zones.room], schedule, extra, asked, imperial).layout
-        largest = largest_scale((extent.width, extent.height), layout.space, imperial)
-        if wanted is not None and wanted.denominator >= largest.denominator:
-            return layout, wanted
-        scale = _scale_beside_key(layout, largest, extent, imperial)
-        if scale.denominator <= WORKING_SCALE and wanted is None:
+    names = (options.paper,) if options.paper else ("letter", "ANSI B") if imperial else ("A4", "A3")
+    for paper in map(paper_by_name, names):
+        layouts = [
+            layout
+            for turned in (paper, paper.turned)
+            for layout in arrangements(turned, schedule, extra)
+            if min(layout.space) > 0
+        ]
+        sized = [(layout, _scale_on(layout, extent, wanted, imperial)) for layout in layouts]
+        layout, scale = min(
+            sized, key=lambda each: (not schedule.fits(each[0].schedule), each[1].denominator)
+        )
+        if scale == wanted or scale.denominator <= WORKING_SCALE:
             break
     return layout, scale
+
+
+def _scale_on(layout: Layout, extent: Box, wanted: Scale | None, imperial: bool) -> Scale:
+    largest = largest_scale((extent.width, extent.height), layout.space, imperial)
+    if wanted is not None and wanted.denominator >= largest.denominator:
+        return wanted
+    return _scale_beside_key(layout, largest, extent, imperial)
 
 
 def _scale_beside_key(layout: Layout, largest: Scale, extent: Box, imperial: bool) -> Scale:

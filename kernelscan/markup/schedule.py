@@ -86,6 +86,10 @@ class Schedule:
             count += 1
         return count
 
+    def fits(self, space: Box) -> bool:
+        """Whether a space holds the whole table."""
+        return self.fitting(0, space.height) == len(self.entries)
+
     def items(self, left: float, top: float, entries: Sequence[Entry]) -> Iterator[Item]:
         """Yield the table of these entries with its upper left corner at a point."""
         y = top - HEADING - 1.5
