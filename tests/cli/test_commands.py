@@ -11,7 +11,7 @@ import ezdxf
 import pytest
 from jsonschema import Draft202012Validator
 
-import kernelscan.cli.zones as zones_command
+from kernelscan import coverage
 from kernelscan.cli.app import run
 from kernelscan.errors import CertificateError
 from kernelscan.report.document import report_schema
@@ -182,21 +182,21 @@ def test_a_wrong_call_is_one_line_and_2(arguments, tmp_path, monkeypatch, capsys
 
 
 def test_nothing_is_written_when_the_checker_refuses(tmp_path, monkeypatch, capsys):
-    def refuse(*_):
+    def refuse(*_, **__):
         raise CertificateError("a wall cuts the kernel")
 
-    monkeypatch.setattr(zones_command, "_answer", refuse)
+    monkeypatch.setattr(coverage, "room_answer", refuse)
     assert run(["zones", str(draw(tmp_path / "p.dxf", [L_ROOM])), "--out", str(tmp_path / "out")]) == 70
     assert "a wall cuts the kernel" in capsys.readouterr().err
     assert not (tmp_path / "out").exists()
 
 
 def test_a_fault_of_the_program_is_one_line_and_70(tmp_path, monkeypatch, capsys):
-    def fail(*_):
+    def fail(*_, **__):
         raise ZeroDivisionError("by nothing")
 
     plan = draw(tmp_path / "p.dxf", [L_ROOM])
-    monkeypatch.setattr(zones_command, "_answer", fail)
+    monkeypatch.setattr(coverage, "room_answer", fail)
     assert run(["zones", str(plan), "--out", str(tmp_path / "out")]) == 70
     err = capsys.readouterr().err
     assert re.fullmatch(
@@ -208,10 +208,10 @@ def test_a_fault_of_the_program_is_one_line_and_70(tmp_path, monkeypatch, capsys
 
 
 def test_an_interruption_is_said_and_130(tmp_path, monkeypatch, capsys):
-    def interrupt(*_):
+    def interrupt(*_, **__):
         raise KeyboardInterrupt
 
-    monkeypatch.setattr(zones_command, "_answer", interrupt)
+    monkeypatch.setattr(coverage, "room_answer", interrupt)
     assert run(["zones", str(draw(tmp_path / "p.dxf", [L_ROOM])), "--out", str(tmp_path / "out")]) == 130
     assert capsys.readouterr().err == "kernelscan: stopped\n"
 
@@ -225,6 +225,74 @@ def test_help_and_version(capsys):
     assert re.fullmatch(r"kernelscan \d+\.\d+\.\d+\n", capsys.readouterr().out)
     assert run(["zones", "--help"]) == 0
     assert "--out" in capsys.readouterr().out
+
+
+DEVICES = """
+[[device]]
+name = "Wide corner"
+kind = "camera"
+fixed_to = ["corner", "wall"]
+horizontal_field_deg = 100
+farthest_m = 12
+cost = 90
+[[device]]
+name = "=Dome()"
+kind = "camera"
+fixed_to = ["ceiling"]
+horizontal_field_deg = 360
+farthest_m = 5
+pixels_across = 2000
+projection = "equidistant"
+height_m = 2.7
+vertical_field_deg = 180
+tilt_deg = 90
+cost = 60
+"""
+
+
+def test_zones_with_devices_and_without_small_features(tmp_path, capsys):
+    pilaster = [(0, 0), (2.8, 0), (2.8, 0.2), (3.2, 0.2), (3.2, 0), (6, 0), (6, 4), (0, 4)]
+    plan = draw(tmp_path / "p.dxf", [L_ROOM, pilaster, U_ROOM], ["Hall", "Store", "Yard"])
+    (tmp_path / "d.toml").write_text(DEVICES, encoding="utf-8")
+    out = tmp_path / "out"
+    options = ["--devices", str(tmp_path / "d.toml"), "--ignore-depth", "0.2", "--out", str(out)]
+    assert run(["zones", str(plan), *options]) == 0
+    printed = capsys.readouterr().out
+    assert "Wide corner" in printed
+    assert "Left out: a pilaster 0.40 m wide and 0.20 m deep" in printed
+    hall, store, yard = checked_report(out / "report.json")["rooms"]
+    assert [entry["covers"] for entry in hall["devices"]] == [True, False]
+    assert [entry["cheapest"] for entry in hall["devices"]] == [True, False]
+    assert hall["devices"][1]["obstruction"] == "reach"
+    assert hall["devices"][0]["spots"][0]["point"] == [0, 0]
+    assert (store["kernel"]["kind"], store["tolerant"]["kernel"]["kind"]) == ("empty", "area")
+    assert store["tolerant"]["kernel"]["area"] == pytest.approx(24)
+    assert [feature["kind"] for feature in store["tolerant"]["features"]] == ["pilaster"]
+    assert store["why_not"]["ignore_depth"] == pytest.approx(0.2)
+    assert [entry["cheapest"] for entry in store["devices"]] == [False, True]
+    assert yard["devices"][0]["obstruction"] == "sight"
+    table = (out / "schedule.csv").read_bytes().decode("utf-8-sig")
+    assert "'=Dome()" in table
+    assert not re.search(r'(?m)(^|,)"?[=+@]', table)
+
+
+def test_wanted_spots(tmp_path, capsys):
+    plan = draw(tmp_path / "p.dxf", [SQUARE, SQUARE], ["Hall", "Store"])
+    (tmp_path / "d.toml").write_text(DEVICES, encoding="utf-8")
+    base = ["zones", str(plan), "--devices", str(tmp_path / "d.toml"), "--out", str(tmp_path / "out"), "-q"]
+
+    def dome_of_the_hall():
+        hall, _ = checked_report(tmp_path / "out" / "report.json")["rooms"]
+        return hall["devices"][1]["spots"][0]["point"]
+
+    assert run([*base, "--near", "1,3"]) == 0
+    assert dome_of_the_hall() == pytest.approx([1, 3], abs=0.06)
+    assert run([*base, "--towards", "store"]) == 0
+    assert dome_of_the_hall()[0] > 2.5
+    assert run([*base, "--near", "1;3"]) == 2
+    assert "--near '1;3': expected two numbers" in capsys.readouterr().err
+    assert run([*base, "--near", "1,3", "--towards", "Store"]) == 2
+    assert "give one of them" in capsys.readouterr().err
 
 
 def test_heavy_libraries_wait_until_they_are_needed():
