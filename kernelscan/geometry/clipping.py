@@ -122,7 +122,15 @@ class ConvexRegion:
     @property
     def is_bounded(self) -> bool:
         """Whether no corner is at infinity."""
-        return INFINITE not in self.names
+        return not self.infinite_corners()
+
+    def infinite_corners(self) -> list[int]:
+        """Return which corners are at infinity: those on the line there, and where two antiparallel sides meet."""
+        names = self.corner_names()
+        return [k for k, (_, _, z) in enumerate(self.corners) if z < FILTER and self._is_infinite(names[k])]
+
+    def _is_infinite(self, name: tuple[int, int]) -> bool:
+        return INFINITE in name or turn(self.exact_line(name[0]), self.exact_line(name[1])) == 0
 
     def corner_names(self) -> list[tuple[int, int]]:
         """Return the two lines of each corner; the only names of a thin region."""
@@ -192,8 +200,9 @@ class ConvexRegion:
     def _collapse(self, i: int, signs: list[int]) -> None:
         """No corner is strictly inside: what is left is where the border touches the region."""
         count, names = len(signs), self.names
+        infinite = self.infinite_corners()
         touched = [k for k in range(count) if signs[k] == 0]
-        finite = [k for k in touched if INFINITE not in (names[k - 1], names[k])]
+        finite = [k for k in touched if k not in infinite]
         if not finite:
             self._empty(self._opponents(i))
         elif len(touched) == 1:
@@ -201,17 +210,23 @@ class ConvexRegion:
             self._become_point((names[k - 1], names[k]), (names[k - 1], names[k], i))
         else:
             k = touched[0] if (touched[0] + 1) % count == touched[1] else touched[1]
-            before, carrier, after = names[k - 1], names[k], names[(k + 1) % count]
-            self._become_segment(before, carrier, after, (carrier, i))
+            after = (k + 1) % count
+            ends = (
+                INFINITE if k in infinite else names[k - 1],
+                INFINITE if after in infinite else names[after],
+            )
+            self._become_segment(ends[0], names[k], ends[1], (names[k], i))
 
     def _opponents(self, i: int) -> tuple[int, ...]:
         """The lines of the region among which are those that exclude i: the ones at the corner nearest to it."""
         u, v, _ = self.exact_line(i)
         opposite = (-u, -v, 0)
         for g, h in self.corner_names():
-            if INFINITE in (g, h):
-                continue
-            if turn(self.exact_line(g), opposite) >= 0 and turn(opposite, self.exact_line(h)) >= 0:
+            if (
+                not self._is_infinite((g, h))
+                and turn(self.exact_line(g), opposite) >= 0
+                and turn(opposite, self.exact_line(h)) >= 0
+            ):
                 return g, h, i
         return (*(name for name in self.names if name != INFINITE), i)
 

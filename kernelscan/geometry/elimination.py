@@ -4,7 +4,7 @@ Problem
     Of many half-planes, more than are worth cutting by one at a time, find those that bound the intersection, in
     order; or two or three that exclude each other; or, if the intersection is thin, three that show it.
 Method
-    The half-planes are sorted by way around the full turn; of several in the same way the tightest stays. Let l, i, r
+    The half-planes are sorted by way around the full turn; of several in the same way the tightest stays. Let f, i, r
     be neighbours with turns f -> i and i -> r of less than half a turn, and s the value of i, scaled, at the meeting
     of f and r. While s < 0, i has a side of positive length between the other two. Where s >= 0,
       - if r turns left from f by less than half a turn, i holds all that f and r have in common and is dropped;
@@ -58,6 +58,7 @@ class Sides(NamedTuple):
     conflict: tuple[int, ...] = ()
     thin: tuple[int, ...] = ()
     is_bounded: bool = True
+    is_strip: bool = False
 
 
 def sides_of(rows: Floats) -> Sides:
@@ -103,7 +104,8 @@ class _Elimination:
         between = value(h, _point_on(g)) if opposed else 1
         if between < 0:
             return Sides(order[:0], conflict=(first, last))
-        return Sides(order, thin=(first, last) if between == 0 else (), is_bounded=False)
+        thin = (first, last) if between == 0 else ()
+        return Sides(order, thin=thin, is_bounded=False, is_strip=opposed and len(order) == 2)
 
     def _judged(self, places: Indices) -> tuple[npt.NDArray[np.bool_], Sides | None]:
         """Return which of the places can be dropped, or what the search ends with."""

@@ -215,13 +215,14 @@ def _solved(region: ConvexRegion) -> Solution:
     """Return a region as a solution."""
     if region.shape == "empty":
         return Solution("empty", np.zeros(0, dtype=np.int64), region.conflict, ())
-    corners = [name for name in region.corner_names() if INFINITE not in name]
+    names, infinite = region.corner_names(), region.infinite_corners()
+    corners = [name for k, name in enumerate(names) if k not in infinite]
     if region.shape != "area":
-        return Solution(region.shape, np.array(region.proof), (), corners, region.is_bounded)
-    if region.is_bounded:
+        return Solution(region.shape, np.array(region.proof), (), corners, not infinite)
+    if not infinite:
         return Solution("area", np.array(region.names))
-    first = region.names.index(INFINITE) + 1
-    sides = [*region.names[first:], *region.names[: first - 1]]
+    first = max(infinite) if infinite != [0, len(names) - 1] else 0
+    sides = [name for name in (*region.names[first:], *region.names[:first]) if name != INFINITE]
     return Solution("area", np.array(sides), (), list(pairwise(sides)), is_bounded=False)
 
 
@@ -241,4 +242,5 @@ def _eliminated(source: HalfPlaneSource, numbers: Indices | None) -> Solution:
     sides = numbers[found.order]
     if found.is_bounded:
         return Solution("area", sides)
-    return Solution("area", sides, (), list(pairwise(sides.tolist())), is_bounded=False)
+    corners = [] if found.is_strip else list(pairwise(sides.tolist()))
+    return Solution("area", sides, (), corners, is_bounded=False)

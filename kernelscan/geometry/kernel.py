@@ -22,7 +22,7 @@ import numpy.typing as npt
 from kernelscan.geometry.areas import polygon_area, ring_area
 from kernelscan.geometry.clipping import Shape, region_of
 from kernelscan.geometry.convexity import is_surely_convex
-from kernelscan.geometry.halfplanes import wall_numbers, wall_rows
+from kernelscan.geometry.halfplanes import HalfPlanes, wall_numbers, wall_rows
 from kernelscan.geometry.intersection import FEW, Solution, corners_of, solve
 from kernelscan.geometry.predicates import Row, Triple, exact_line, meet, rounded
 from kernelscan.geometry.pruning import RingSource
@@ -75,6 +75,11 @@ class Kernel:
             region = region_of(dict(enumerate(rows)))
             triples = region.exact_corners() if region is not None else []
         return tuple((Fraction(x, w), Fraction(y, w)) for x, y, w in triples)
+
+    def half_planes(self) -> HalfPlanes:
+        """Return the half-planes of ``walls``: what they have in common is the kernel, unless it is empty."""
+        rows = [_wall_row(self._rings, ring, edge) for ring, edge in self.walls.tolist()]
+        return HalfPlanes(np.array(rows, dtype=np.float64).reshape(-1, 6), self.walls)
 
 
 def visibility_kernel(outline: npt.ArrayLike, holes: Iterable[npt.ArrayLike] = ()) -> Kernel:
