@@ -15,6 +15,7 @@ Source
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
 from fractions import Fraction
+from functools import lru_cache
 
 import numpy as np
 import numpy.typing as npt
@@ -148,8 +149,10 @@ def _corners_of_many(source: RingSource, solution: Solution) -> tuple[npt.NDArra
         return np.array([rounded(triple) for triple in triples]), 0.0
     before = np.roll(sides, 1, axis=0)
     vertices = sides[:, :2].copy()
-    for k in np.flatnonzero((before[:, 4:] != vertices).any(axis=1)).tolist():
-        vertices[k] = rounded(meet(exact_line(before[k].tolist()), exact_line(sides[k].tolist())))
+    apart = np.flatnonzero((before[:, 4:] != vertices).any(axis=1))
+    line = lru_cache(2)(exact_line)
+    pairs = zip(map(tuple, before[apart].tolist()), map(tuple, sides[apart].tolist()), strict=True)
+    vertices[apart] = np.array([rounded(meet(line(g), line(h))) for g, h in pairs]).reshape(-1, 2)
     return vertices, polygon_area(vertices.tolist(), lambda: _corners_around(sides.tolist()))
 
 
