@@ -255,8 +255,8 @@ def test_rooms_have_the_doors_and_windows_drawn_in_their_walls(name: str, plans:
     assert {kind for each in kinds.values() for kind in each} <= {"door", "window"}
 
 
-# The oval's end has the radius b^2 / a. The line's ends lie 0.02 m behind the wall and go to it along its normals, 0.005 m
-# nearer to the axis; an arc of chord c and rise h is c (1 + 8 h^2 / 3 c^2) long.
+# The oval's end has the radius b^2 / a. The line's ends lie 0.02 m behind the wall and go to it along its normals,
+# 0.005 m nearer to the axis; an arc of chord c and rise h is c (1 + 8 h^2 / 3 c^2) long.
 OVAL_RISE = 0.435**2 / 2 / (2.75**2 / 4)
 OVAL_DOOR = 0.87 * (1 + 8 / 3 * (OVAL_RISE / 0.87) ** 2)
 

@@ -40,9 +40,6 @@ __all__ = ["drawn_openings", "with_drawn"]
 INTO_ROOM = 0.15
 """Openings may be drawn this far into a room: some outlines run along the middle of the walls."""
 
-LEAST_SHARE, LEAST_OVERLAP = 0.5, 0.2
-"""A piece must cover this part of its length, or this much in metres, of a room's edges: neighbours' only touch."""
-
 LONG_SIDE = 0.4
 """Sides of a drawn opening that are shorter than this part of its longest side along any wall are its ends."""
 
@@ -106,7 +103,7 @@ def drawn_openings(
     pieces = _without_leaves(pieces, edges, jambs, tolerances)
     covers = _covers(pieces, edges, tolerances)
     covers = _uncovered(covers, edges, [ring - origin for ring in rings])
-    covers = _chosen(covers, pieces, edges)
+    covers = _chosen(covers, pieces)
     spans = _spans(covers, pieces, edges, tolerances.snap)
     return _openings(_to_jambs(spans, jambs, edges), edges, len(rings))
 
@@ -182,7 +179,6 @@ def _covers(pieces: Pieces, edges: WallEdges, tolerances: Tolerances) -> _Covers
     at_low, at_high = deep + (low - p) * slope, deep + (high - p) * slope
     good = high - low > np.minimum(tolerances.snap, edges.length[i] / 2)
     good &= np.minimum(at_low, at_high) >= -INTO_ROOM
-    good &= np.maximum(at_low, at_high) <= tolerances.thickest_wall + tolerances.snap
     return _Covers(k, i, low, high, (at_low + at_high) / 2).where(good)
 
 
@@ -197,20 +193,15 @@ def _uncovered(covers: _Covers, edges: WallEdges, rings: Sequence[np.ndarray]) -
     return covers.where(~(deep[: len(i)] | deep[len(i) :]))
 
 
-def _chosen(covers: _Covers, pieces: Pieces, edges: WallEdges) -> _Covers:
-    """Leave out the arcs whose closed door is found, the ends of drawn openings, and what only touches a room."""
+def _chosen(covers: _Covers, pieces: Pieces) -> _Covers:
+    """Leave out the arcs whose closed door is found, and the ends of drawn openings."""
     fits = np.zeros(pieces.swing.max(initial=NO_SWING) + 2, dtype=bool)  # the last for NO_SWING
     fits[pieces.swing[covers.piece[pieces.closed[covers.piece]]]] = True
     fits[NO_SWING] = False
     covers = covers.where(~fits[pieces.swing[covers.piece]] | pieces.closed[covers.piece])
     longest = np.zeros(pieces.stroke.max(initial=-1) + 1)
     np.maximum.at(longest, pieces.stroke[covers.piece], pieces.run[covers.piece])
-    covers = covers.where(pieces.run[covers.piece] >= LONG_SIDE * longest[pieces.stroke[covers.piece]])
-    pair = covers.piece * (edges.ring.max() + 1) + edges.ring[covers.edge]
-    _, of_pair = np.unique(pair, return_inverse=True)
-    covered = np.bincount(of_pair, covers.high - covers.low)[of_pair] if len(pair) else np.empty(0)
-    least = np.minimum(LEAST_OVERLAP, LEAST_SHARE * pieces.length[covers.piece])
-    return covers.where(np.asarray(covered >= least * (1 - 1e-9)))
+    return covers.where(pieces.run[covers.piece] >= LONG_SIDE * longest[pieces.stroke[covers.piece]])
 
 
 def _spans(covers: _Covers, pieces: Pieces, edges: WallEdges, snap: float) -> list[tuple[int, Span]]:

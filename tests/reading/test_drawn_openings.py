@@ -2,7 +2,7 @@
 
 from collections.abc import Callable, Sequence
 from itertools import pairwise
-from math import atan2, cos, degrees, pi, radians, sin
+from math import atan2, cos, degrees, pi, radians, sin, tan
 from pathlib import Path
 
 import numpy as np
@@ -13,8 +13,10 @@ from ezdxf.transform import inplace
 from reading.drawings import saved
 
 from kernelscan.coverage import room_zones
-from kernelscan.plan import Plan, Room
+from kernelscan.geometry.rings import as_ring
+from kernelscan.plan import Opening, Plan, Room, WallRef
 from kernelscan.reading import read_plan
+from kernelscan.reading.drawn_openings import with_drawn
 from kernelscan.reading.opening_spans import merged_spans
 from kernelscan.reading.segments import DOOR, WINDOW
 
@@ -173,6 +175,14 @@ WAYS = {
         ],
         [("door", (2, 0), (2.9, 0))],
     ),
+    "a leaf alone beside a window": (
+        [
+            line("A-DOOR", (2, 0), (2, 0.9)),
+            line("A-WALL", (2.9, 0), (2.9, -0.3)),
+            line("A-GLAZ", (4, -0.1), (5, -0.1)),
+        ],
+        [("door", (2, 0), (2.9, 0)), ("window", (4, 0), (5, 0))],
+    ),
     "names in other languages": (
         [line("FENSTER", (1, -0.1), (2, -0.1)), arc("Türen", (3, 0), 0.9, 0, 90)],
         [("window", (1, 0), (2, 0)), ("door", (3, 0), (3.9, 0))],
@@ -215,6 +225,10 @@ LEAVES = {
         [line("A-DOOR", (0, 0), (0, 0.9)), arc("A-DOOR", (0, 0), 0.9, 0, 90)],
         [("door", (0, 0), (0.9, 0))],
     ),
+    "hinge in the corner, leaf beside it": (
+        [line("A-DOOR", (0.04, 0), (0.04, 0.9)), arc("A-DOOR", (0, 0), 0.9, 0, 90)],
+        [("door", (0, 0), (0.9, 0))],
+    ),
 }
 
 
@@ -234,6 +248,7 @@ L_ROOM = [(0, 0), (6, 0), (6, 2), (3, 2), (3, 4), (0, 4)]
     "drawn",
     [
         pytest.param([box("A-DOOR", 3.1, 2, 4.0, 2.3)], id="rectangle"),
+        pytest.param([box("A-DOOR", 3.1, 2.08, 4.0, 2.25)], id="rectangle amid the wall"),
         pytest.param(
             [
                 line("A-DOOR", (3.1, 2), (3.1, 2.3)),
@@ -351,6 +366,26 @@ def test_straight_door_line_in_a_curved_wall(tmp_path: Path) -> None:
     assert (low, high) == pytest.approx((-degrees(0.5 / 3), degrees(0.5 / 3)), abs=0.3)
 
 
+def test_leaf_at_a_joint_of_a_curved_wall_is_no_opening_of_a_straight_one(tmp_path: Path) -> None:
+    half_round = [(-2, 0), (2, 0, 1)]
+    (plain,) = plan_of(tmp_path, [half_round]).rooms
+    x, y = plain.outline[np.hypot(*(plain.outline - (2, 0)).T).argsort()[1]].tolist()
+    assert 0.05 < y < 0.15
+    (room,) = plan_of(tmp_path, [half_round], line("A-DOOR", (x, y), (x - 0.9, y))).rooms
+    assert not room.openings
+
+
+def test_arc_beside_a_curved_wall_is_no_opening_of_it(tmp_path: Path) -> None:
+    east = [(4 * cos(radians(a)), 4 * sin(radians(a))) for a in (-60, 60)]
+    west = [(x * 3 / 4, y * 3 / 4) for x, y in east]
+    bulge = tan(radians(30))
+    corridor = [(*east[0], bulge), east[1], (*west[1], -bulge), west[0]]
+    (room,) = plan_of(tmp_path, [corridor], arc("A-DOOR", (4, 0), 0.9, 96, 180)).rooms
+    ends = np.concatenate([room.opening_ends(opening) for opening in room.openings])
+    assert sum(opening.width for opening in room.openings) == pytest.approx(0.9, abs=0.01)
+    assert np.hypot(*ends.T).min() > 3.99
+
+
 def test_window_in_a_turret_no_wider_than_a_door_swings(tmp_path: Path) -> None:
     circle = [(1.2, 0, 1), (-1.2, 0, 1)]
     (room,) = plan_of(tmp_path, [circle], arc("A-GLAZ", (0, 0), 1.35, -40, 40)).rooms
@@ -431,6 +466,15 @@ def test_walls_without_outlines_have_windows_too(tmp_path: Path) -> None:
 
     (room,) = read_plan(saved(tmp_path / "walls.dxf", draw)).rooms
     assert found_in(room) == [("window", (1, 4), (3, 4)), ("door", (2.1, 0), (3, 0))]
+
+
+def test_short_walls_beside_a_known_opening_are_its_jambs() -> None:
+    ring = as_ring([(0, 0), (2, 0), (2, -0.2), (3, -0.2), (3, 0), (6, 0), (6, 4), (0, 4)])
+    known = Opening(WallRef(0, 2), "door", 1.0)
+    window = Opening(WallRef(0, 6), "window", 2.0, (0.25, 0.5))
+    drawn = [Opening(WallRef(0, edge), "door", 0.2) for edge in (1, 2, 3)]
+    assert with_drawn([known], [*drawn, window], ring, 0.6) == (known, window)
+    assert with_drawn([], [*drawn, window], ring, 0.6) == (*drawn, window)
 
 
 @pytest.mark.parametrize(
