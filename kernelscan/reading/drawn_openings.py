@@ -97,13 +97,12 @@ def drawn_openings(
     if not drawn or not rings:
         return [()] * len(rings)
     origin = np.rint(rings[0][0])
-    edges = wall_edges(rings, origin, tolerances.smooth)
+    edges, floors = wall_edges(rings, origin, tolerances.smooth), [ring - origin for ring in rings]
     pieces = opening_pieces(drawn, metres, origin, tolerances.smooth)
+    pieces = _without_arcs(pieces, edges, floors, tolerances)
     jambs = jambs_of(strokes, roles, metres, origin, tolerances)
     pieces = _without_leaves(pieces, edges, jambs, tolerances)
-    covers = _covers(pieces, edges, tolerances)
-    covers = _uncovered(covers, edges, [ring - origin for ring in rings])
-    covers = _chosen(covers, pieces)
+    covers = _without_ends(_covers(pieces, edges, floors, tolerances), pieces)
     spans = _spans(covers, pieces, edges, tolerances.snap)
     return _openings(_to_jambs(spans, jambs, edges), edges, len(rings))
 
@@ -122,6 +121,16 @@ def with_drawn(
     return tuple(
         sorted((*known, *(o for o in drawn if o.wall.edge not in shut)), key=lambda o: (o.wall, o.span))
     )
+
+
+def _without_arcs(
+    pieces: Pieces, edges: WallEdges, floors: Sequence[np.ndarray], tolerances: Tolerances
+) -> Pieces:
+    """Leave out the arcs whose closed door lies in a wall; others may be the glass of a curved wall."""
+    doors = pieces.where(pieces.closed)
+    fits = np.zeros(doors.swing.max(initial=NO_SWING) + 2, dtype=bool)  # the last for NO_SWING
+    fits[doors.swing[_covers(doors, edges, floors, tolerances).piece]] = True
+    return pieces.where(pieces.closed | ~fits[pieces.swing])
 
 
 def _without_leaves(pieces: Pieces, edges: WallEdges, jambs: Jambs, tolerances: Tolerances) -> Pieces:
@@ -163,7 +172,9 @@ def _shut(leaves: Pieces, i: np.ndarray, hinge: np.ndarray, edges: WallEdges, ja
     )
 
 
-def _covers(pieces: Pieces, edges: WallEdges, tolerances: Tolerances) -> _Covers:
+def _covers(
+    pieces: Pieces, edges: WallEdges, floors: Sequence[np.ndarray], tolerances: Tolerances
+) -> _Covers:
     """Return which pieces run along which edges, within the thickness of their walls."""
     k, i = neighbouring_lines(pieces.a, pieces.b, (edges.a, edges.b), tolerances.thickest_wall)
     step, way = (pieces.b - pieces.a)[k], edges.way[i]
@@ -179,26 +190,23 @@ def _covers(pieces: Pieces, edges: WallEdges, tolerances: Tolerances) -> _Covers
     at_low, at_high = deep + (low - p) * slope, deep + (high - p) * slope
     good = high - low > np.minimum(tolerances.snap, edges.length[i] / 2)
     good &= np.minimum(at_low, at_high) >= -INTO_ROOM
-    return _Covers(k, i, low, high, (at_low + at_high) / 2).where(good)
+    covers = _Covers(k, i, low, high, (at_low + at_high) / 2).where(good)
+    return _uncovered(covers, edges, floors)
 
 
-def _uncovered(covers: _Covers, edges: WallEdges, rings: Sequence[np.ndarray]) -> _Covers:
+def _uncovered(covers: _Covers, edges: WallEdges, floors: Sequence[np.ndarray]) -> _Covers:
     """Keep what no room's floor lies in front of, or under: there is nothing but wall from the edge to the piece."""
     i, middle = covers.edge, (covers.low + covers.high) / 2
     points = np.concatenate([edges.points(i, middle, covers.depth * share) for share in (0.5, 1.0)])
-    inside = np.unique(rings_around(rings, points)[0])
+    inside = np.unique(rings_around(floors, points)[0])
     near = lines_near(points[inside], edges.a, edges.b, INTO_ROOM)[0]
     deep = np.zeros(2 * len(i), dtype=bool)
     deep[np.delete(inside, near)] = True
     return covers.where(~(deep[: len(i)] | deep[len(i) :]))
 
 
-def _chosen(covers: _Covers, pieces: Pieces) -> _Covers:
-    """Leave out the arcs whose closed door is found, and the ends of drawn openings."""
-    fits = np.zeros(pieces.swing.max(initial=NO_SWING) + 2, dtype=bool)  # the last for NO_SWING
-    fits[pieces.swing[covers.piece[pieces.closed[covers.piece]]]] = True
-    fits[NO_SWING] = False
-    covers = covers.where(~fits[pieces.swing[covers.piece]] | pieces.closed[covers.piece])
+def _without_ends(covers: _Covers, pieces: Pieces) -> _Covers:
+    """Leave out the short sides of drawn openings, by what runs along any wall."""
     longest = np.zeros(pieces.stroke.max(initial=-1) + 1)
     np.maximum.at(longest, pieces.stroke[covers.piece], pieces.run[covers.piece])
     return covers.where(pieces.run[covers.piece] >= LONG_SIDE * longest[pieces.stroke[covers.piece]])

@@ -104,7 +104,7 @@ class _Walk:
         for entity in drawing.modelspace():
             self._take(entity, whole, (), 0)
         self.contents.labels = whole.labels
-        self.contents.strokes = [stroke for part in whole.strokes if (stroke := self._flat(part)) is not None]
+        self.contents.strokes = self._flat(whole.strokes)
         self._report_counts()
 
     def _take(self, entity: DXFEntity, into: _Drawn, path: tuple[str, ...], fineness: int) -> None:
@@ -225,22 +225,27 @@ class _Walk:
         into.labels.extend(_carried(label, turn, shift, own) for label in drawn.labels)
         into.points += drawn.points
 
-    def _flat(self, part: _Spatial) -> Stroke | None:
-        points = np.ascontiguousarray(part.points[:, :2])
-        top = np.abs(points).max() if len(points) else 0.0
-        if not top < FARTHEST:
-            self.contents.problems.append(
-                Problem(
-                    "absurd-coordinates",
-                    f"{part.kind} at {top:.3g} drawing units or not a number; left out",
-                    None,
-                    Source(part.layer, part.handle),
-                )
-            )
-            return None
-        if len(points) < 2 or not np.any(points != points[0]):
-            return None
-        return Stroke(points, part.closed, part.kind, part.layer, part.handle, part.blocks)
+    def _flat(self, parts: list[_Spatial]) -> list[Stroke]:
+        """Return the strokes in plan, without those that have no extent there, or absurd coordinates."""
+        parts = [part for part in parts if len(part.points) > 1]
+        if not parts:
+            return []
+        counts = np.array([len(part.points) for part in parts])
+        ends = np.cumsum(counts)
+        points = np.ascontiguousarray(np.concatenate([part.points for part in parts])[:, :2])
+        low, high = (bound.reduceat(points, ends - counts) for bound in (np.minimum, np.maximum))
+        reach = np.maximum(np.abs(low), np.abs(high)).max(axis=1)
+        sound, flat = reach < FARTHEST, (high > low).any(axis=1)
+        for k in np.flatnonzero(~sound).tolist():
+            text = f"{parts[k].kind} at {reach[k]:.3g} drawing units or not a number; left out"
+            source = Source(parts[k].layer, parts[k].handle)
+            self.contents.problems.append(Problem("absurd-coordinates", text, None, source))
+        spans = zip(parts, (ends - counts).tolist(), ends.tolist(), (sound & flat).tolist(), strict=True)
+        return [
+            Stroke(points[start:end], part.closed, part.kind, part.layer, part.handle, part.blocks)
+            for part, start, end, kept in spans
+            if kept
+        ]
 
     def _say(self, code: str, message: str, entity: DXFEntity, once: str | None = None) -> None:
         if once is not None:

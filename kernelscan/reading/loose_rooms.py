@@ -42,7 +42,7 @@ from kernelscan.reading.segments import (
     segments_of,
     swings_of,
 )
-from kernelscan.reading.strokes import Label, Stroke
+from kernelscan.reading.strokes import Label, Stroke, stroke_boxes
 from kernelscan.tolerances import Tolerances
 
 __all__ = ["Barriers", "barriers_by_content", "barriers_by_name", "loose_rooms"]
@@ -122,7 +122,8 @@ def loose_rooms(
     named = _named(faces, labels, metres, origin)
     solid = _solid_faces(faces, barriers, metres, origin)
     rooms = [f for f in _room_faces(faces, named, tolerances) if f not in solid]
-    found = [_found(faces[f], origin, strokes, lines, tolerances) for f in rooms]
+    bounding = _bounding_strokes([faces[f] for f in rooms], strokes, lines)
+    found = [_found(faces[f], origin, stroke, tolerances) for f, stroke in zip(rooms, bounding, strict=True)]
     found.sort(key=_reading_order)
     walls = lines.where((lines.code == WALL) & (lines.stroke >= 0))
     if found and _bounded_length(faces, rooms) < tolerances.least_closed * float(walls.length.sum()):
@@ -139,8 +140,8 @@ def _middle(strokes: Sequence[Stroke], metres: float) -> np.ndarray:
 
 def _reach(strokes: Sequence[Stroke], metres: float) -> float:
     """Return the longer side of the box around all strokes."""
-    points = np.concatenate([stroke.points for stroke in strokes])
-    return float(np.ptp(points, axis=0).max() * metres)
+    low, high = stroke_boxes(strokes)
+    return float((high.max(axis=0) - low.min(axis=0)).max() * metres)
 
 
 def _within(barriers: Barriers, metres: float, origin: np.ndarray) -> tuple[Barriers, list[Problem]]:
@@ -148,15 +149,15 @@ def _within(barriers: Barriers, metres: float, origin: np.ndarray) -> tuple[Barr
     problems: list[Problem] = []
 
     def near(strokes: Sequence[Stroke]) -> list[Stroke]:
-        kept = []
-        for stroke in strokes:
-            if np.abs(stroke.points * metres - origin).max() <= FARTHEST:
-                kept.append(stroke)
-            else:
-                at = (float(stroke.points[0, 0] * metres), float(stroke.points[0, 1] * metres))
-                text = f"{stroke.kind} lies over {FARTHEST / 1000:g} km from the rest; left out"
-                problems.append(Problem("far-off", text, at, Source(stroke.layer, stroke.handle)))
-        return kept
+        low, high = stroke_boxes(strokes)
+        reach = np.maximum(np.abs(low * metres - origin), np.abs(high * metres - origin)).max(
+            axis=1, initial=0.0
+        )
+        for k in np.flatnonzero(reach > FARTHEST).tolist():
+            text = f"{strokes[k].kind} lies over {FARTHEST / 1000:g} km from the rest; left out"
+            at = (float(low[k, 0] * metres), float(low[k, 1] * metres))
+            problems.append(Problem("far-off", text, at, Source(strokes[k].layer, strokes[k].handle)))
+        return [stroke for stroke, off in zip(strokes, reach.tolist(), strict=True) if off <= FARTHEST]
 
     return replace(barriers, walls=near(barriers.walls), openings=near(barriers.openings)), problems
 
@@ -264,9 +265,7 @@ def _is_frame(face: Face, has_name: bool) -> bool:
     return alone and not (has_name and face.area > signed_area(face.rings[0]) / 2)
 
 
-def _found(
-    face: Face, origin: np.ndarray, strokes: Sequence[Stroke], lines: Segments, tolerances: Tolerances
-) -> FoundRoom:
+def _found(face: Face, origin: np.ndarray, stroke: Stroke, tolerances: Tolerances) -> FoundRoom:
     """Return a face as a room: its corners cleaned, its holes obstacles, its openings kept."""
     ring, codes = clean_ring(face.rings[0], face.codes[0], tolerances.snap, STRAIGHT)
     try:
@@ -274,7 +273,6 @@ def _found(
     except GeometryError:
         ring, codes = face.rings[0], face.codes[0]
         outline = as_ring(ring + origin)
-    stroke = _bounding_stroke(face, strokes, lines)
     source = Source(stroke.layer, stroke.handle)
     obstacles = []
     for hole, kinds in zip(face.rings[1:], face.codes[1:], strict=True):
@@ -290,13 +288,18 @@ def _found(
     return FoundRoom(Outline(outline, area, stroke), tuple(obstacles), edges, "walls")
 
 
-def _bounding_stroke(face: Face, strokes: Sequence[Stroke], lines: Segments) -> Stroke:
-    ring = face.rings[0]
-    long = int(np.argmax(np.hypot(*np.diff(ring, axis=0, append=ring[:1]).T)))
-    middle = (ring[long] + ring[(long + 1) % len(ring)]) / 2
+def _bounding_strokes(faces: Sequence[Face], strokes: Sequence[Stroke], lines: Segments) -> list[Stroke]:
+    """Return for each face the stroke that its longest edge lies on."""
+    middles = np.array([_middle_of_longest(face.rings[0]) for face in faces]).reshape(-1, 2)
     drawn = np.flatnonzero(lines.stroke >= 0)
-    _, i = lines_near(middle[None], lines.a[drawn], lines.b[drawn], 10 * GRID)
-    return strokes[int(lines.stroke[drawn[i[0]]])] if len(i) else strokes[0]
+    k, i = lines_near(middles, lines.a[drawn], lines.b[drawn], 10 * GRID)
+    owner = dict(zip(k.tolist(), lines.stroke[drawn[i]].tolist(), strict=True))
+    return [strokes[owner.get(f, 0)] for f in range(len(faces))]
+
+
+def _middle_of_longest(ring: np.ndarray) -> np.ndarray:
+    long = int(np.argmax(np.hypot(*np.diff(ring, axis=0, append=ring[:1]).T)))
+    return np.asarray((ring[long] + ring[(long + 1) % len(ring)]) / 2)
 
 
 def _reading_order(room: FoundRoom) -> tuple[float, float]:

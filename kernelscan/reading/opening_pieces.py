@@ -138,8 +138,9 @@ def opening_pieces(strokes: Sequence[Stroke], metres: float, origin: np.ndarray,
     smooth
         Pieces that meet at less than this turn go on as one run, in radians.
     """
-    codes = [opening_code(stroke.layer, stroke.blocks) for stroke in strokes]
-    lines = segments_of(strokes, codes, metres, origin)
+    names = [(stroke.layer, stroke.blocks) for stroke in strokes]
+    code_of = {name: opening_code(*name) for name in set(names)}
+    lines = segments_of(strokes, [code_of[name] for name in names], metres, origin)
     if not len(lines):
         none = np.empty(0, dtype=int)
         return Pieces(lines.a, lines.b, none, none, np.empty(0), none, np.empty(0, dtype=bool))

@@ -1,13 +1,13 @@
 """What a drawing holds for us, as plain values: strokes, labels and measured dimensions, all in drawing units."""
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, field
 
 import numpy as np
 
 from kernelscan.plan import Problem
 
-__all__ = ["Contents", "Label", "MeasuredDimension", "Stroke"]
+__all__ = ["Contents", "Label", "MeasuredDimension", "Stroke", "stroke_boxes"]
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -84,3 +84,13 @@ class Contents:
     def layers(self) -> Iterator[str]:
         """Return every layer that something was found on, each once, in the order met."""
         return iter(dict.fromkeys([s.layer for s in self.strokes] + [t.layer for t in self.labels]))
+
+
+def stroke_boxes(strokes: Sequence[Stroke]) -> tuple[np.ndarray, np.ndarray]:
+    """Return the low and the high corner of each stroke's box, ``(n, 2)`` each, in drawing units."""
+    if not strokes:
+        return np.empty((0, 2)), np.empty((0, 2))
+    counts = np.array([len(stroke.points) for stroke in strokes])
+    points = np.concatenate([stroke.points for stroke in strokes])
+    starts = np.cumsum(counts) - counts
+    return np.minimum.reduceat(points, starts), np.maximum.reduceat(points, starts)

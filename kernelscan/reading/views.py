@@ -13,7 +13,7 @@ import numpy as np
 from kernelscan.plan import Problem, Room, View
 from kernelscan.reading.layers import LayerRole
 from kernelscan.reading.segments import WALL, segments_of
-from kernelscan.reading.strokes import Contents, Label, Stroke
+from kernelscan.reading.strokes import Contents, Label, Stroke, stroke_boxes
 from kernelscan.reading.texts import words
 
 __all__ = ["told_apart"]
@@ -75,8 +75,7 @@ def _drawn(strokes: Sequence[Stroke], roles: Mapping[str, LayerRole], metres: fl
     kept = [s for s in strokes if roles[s.layer].role in {"wall", "opening", "room", "unknown", "obstacle"}]
     if not kept:
         return []
-    low = np.array([s.points.min(axis=0) for s in kept])
-    high = np.array([s.points.max(axis=0) for s in kept])
+    low, high = stroke_boxes(kept)
     whole = np.percentile(high, 98, axis=0) - np.percentile(low, 2, axis=0)
     frame = ((high - low) >= FRAME * whole).all(axis=1) & ((high - low) * metres > 10).all(axis=1)
     outlined = np.array([s.is_ring(0.0) and len(s.points) <= 5 for s in kept])
@@ -120,22 +119,29 @@ def _outermost(boxes: list[Box]) -> list[Box]:
 
 
 def _components(cells: np.ndarray) -> np.ndarray:
-    """Return the number of the connected group, corners included, that each cell belongs to."""
-    known = {(x, y): k for k, (x, y) in enumerate(cells.tolist())}
-    group = np.full(len(cells), -1)
-    for first in range(len(cells)):
-        if group[first] >= 0:
-            continue
-        group[first] = first
-        waiting = [first]
-        while waiting:
-            x, y = cells[waiting.pop()].tolist()
-            for there in ((x + i, y + j) for i in (-1, 0, 1) for j in (-1, 0, 1)):
-                k = known.get(there)
-                if k is not None and group[k] < 0:
-                    group[k] = first
-                    waiting.append(k)
-    return group
+    """Return the number of the connected group, corners included, that each cell belongs to.
+
+    Each cell takes the lowest number among its neighbours, and that one's number in turn, until nothing changes.
+    """
+    low = cells.min(axis=0) - 1
+    wide = int(np.ptp(cells[:, 1])) + 3
+    keys = (cells[:, 0] - low[0]) * wide + cells[:, 1] - low[1]
+    first, second = [], []
+    for step in (1, wide - 1, wide, wide + 1):
+        place = np.minimum(np.searchsorted(keys, keys + step), len(keys) - 1)
+        meets = keys[place] == keys + step
+        first.append(np.flatnonzero(meets))
+        second.append(place[meets])
+    i, j = np.concatenate(first), np.concatenate(second)
+    group = np.arange(len(keys))
+    while True:
+        lowest = np.minimum(group[i], group[j])
+        before = group.copy()
+        np.minimum.at(group, group[i], lowest)
+        np.minimum.at(group, group[j], lowest)
+        group = group[group]
+        if (group == before).all():
+            return group
 
 
 def _title(
