@@ -9,10 +9,10 @@ import numpy as np
 
 from kernelscan.coverage import RoomAnswer, RoomZones
 from kernelscan.coverage.device_spots import DeviceAnswer
+from kernelscan.coverage.device_words import set_out_in_words, shortfall_in_words
 from kernelscan.coverage.wording import Custom
 from kernelscan.plain_text import plain_text
 from kernelscan.plan import Plan
-from kernelscan.report.device_choices import set_out_in_words, shortfall_in_words
 from kernelscan.report.wording import kernel_or_reason
 
 __all__ = ["SCHEDULE_COLUMNS", "schedule_csv"]
