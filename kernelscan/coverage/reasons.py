@@ -118,7 +118,8 @@ def why_no_point(room: Room, kernel: Kernel, tolerances: Tolerances = Tolerances
     alone = replace(room, obstacles=(), openings=tuple(each for each in room.openings if each.wall.ring == 0))
     outline_kernel = kernel_of_rings(alone.rings) if room.obstacles else None
     least = least_simplified(alone, tolerances=tolerances)
-    features = least.features if least and least.features else simplified(alone, SMALL, tolerances).features
+    named = least if least is not None and least.features else simplified(alone, SMALL, tolerances)
+    features = tuple(feature for feature in named.features if feature.depth <= SMALL)
     deepest = deepest_point(room.rings)
     best = best_point(room, _likely_points(deepest.point, least))
     return Reasons(
