@@ -13,6 +13,7 @@ from kernelscan.geometry.shapes import (
     faces_of_lines,
     interior_point,
     intersection,
+    neighbouring_lines,
     noded_lines,
     union,
 )
@@ -107,3 +108,14 @@ def test_lines_are_cut_where_they_meet_and_close_faces() -> None:
     assert len(noded) == 4 + 9
     assert sorted(area(face) for face in faces_of_lines(noded)) == [4, 4]
     assert faces_of_lines(lines) == []
+
+
+def test_neighbouring_lines_are_those_no_farther_off() -> None:
+    starts, ends = np.array([(0.0, 0), (0, 5)]), np.array([(4.0, 0), (4, 5)])
+    others = np.array([(1.0, 0.5), (3, -2), (5, 0)]), np.array([(2.0, 0.5), (3, 2), (6, 0)])
+    k, i = neighbouring_lines(starts, ends, others, 0.5)
+    assert sorted(zip(k.tolist(), i.tolist(), strict=True)) == [(0, 0), (0, 1)]
+    k, i = neighbouring_lines(starts, ends, others, 1.0)
+    assert sorted(zip(k.tolist(), i.tolist(), strict=True)) == [(0, 0), (0, 1), (0, 2)]
+    none = np.empty((0, 2))
+    assert [len(part) for part in neighbouring_lines(none, none, others, 1.0)] == [0, 0]
