@@ -6,7 +6,7 @@ double wall) leads to two and stays.
 """
 
 from collections import defaultdict
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -134,26 +134,41 @@ def _linked(patches: Sequence[Patch], lines: Segments, grid: float) -> list[Face
 
 
 def _joined(faces: Sequence[Face], is_small: SmallFace) -> list[list[int]]:
-    """Return the groups of faces that are one: each niche and leaf with its only neighbour."""
-    home = list(range(len(faces)))
+    """Return the groups of faces that are one: small faces open to each other and to one large face only, with it."""
     openings = frozenset({GAP, DOOR, WINDOW, DOOR + DRAWN_OPENING, WINDOW + DRAWN_OPENING})
-    certain = frozenset({DOOR, WINDOW})
-    dropped = set()
-    for f, face in enumerate(faces):
-        if not is_small(face):
-            continue
-        ways = face.neighbours(openings)
-        if len(ways) == 1 and not face.neighbours(certain):
-            (way,) = ways
-            if way == OUTSIDE:
-                dropped.add(f)
-            elif not is_small(faces[way]):
-                home[f] = way
+    small = {f for f, face in enumerate(faces) if is_small(face)}
+    ways = {f: faces[f].neighbours(openings) for f in small}
+    home = {f: f for f in range(len(faces)) if f not in small}
+    for cluster in _clusters(ways, small):
+        beyond = set().union(*(ways[f] for f in cluster)) - set(cluster)
+        if len(beyond) == 1 and not any(faces[f].neighbours(frozenset({DOOR, WINDOW})) for f in cluster):
+            home.update(dict.fromkeys(cluster, beyond.pop()))
+        else:
+            home.update({f: f for f in cluster})
     groups = defaultdict(list)
-    for f, to in enumerate(home):
-        if f not in dropped:
+    for f, to in home.items():
+        if to != OUTSIDE:
             groups[to].append(f)
-    return [sorted(group, key=lambda f: f != to) for to, group in groups.items()]
+    return [sorted(groups[to], key=lambda f: f != to) for to in sorted(groups)]
+
+
+def _clusters(ways: Mapping[int, set[int]], small: set[int]) -> list[list[int]]:
+    """Return the small faces in clusters of those that are open to each other."""
+    seen: set[int] = set()
+    clusters = []
+    for first in sorted(small):
+        if first in seen:
+            continue
+        cluster, waiting = [], [first]
+        seen.add(first)
+        while waiting:
+            f = waiting.pop()
+            cluster.append(f)
+            fresh = (ways[f] & small) - seen
+            seen |= fresh
+            waiting += fresh
+        clusters.append(cluster)
+    return clusters
 
 
 def _merged(faces: Sequence[Face], group: Sequence[int], lines: Segments, grid: float) -> Face:

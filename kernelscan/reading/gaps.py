@@ -27,6 +27,9 @@ __all__ = ["Gaps", "closing_lines", "connectors", "wall_gaps"]
 SAME_DIRECTION = 2e-3
 SHORTEST_PIECE = 0.02
 TOUCHING = 1e-9
+LEAST_SLENDER = 1.5
+"""A wall is longer than it is thick; what is not is a column, and has no head."""
+
 STEEP = 0.5
 """The sine of the smallest angle at which a wall stops a threshold."""
 
@@ -293,7 +296,7 @@ def _heads(
     head = np.zeros(2 * n, dtype=bool)
     short = (walls.length <= tolerances.thickest_wall) & (walls.length > 2 * tolerances.snap)
     corner = short[i] & (np.abs((away[k] * (walls.b - walls.a)[i]).sum(axis=1)) < 0.2 * walls.length[i])
-    corner &= length[k] > walls.length[i] * 0.9
+    corner &= length[k] > LEAST_SLENDER * walls.length[i]
     at_a = np.hypot(*(walls.a[i] - points[k]).T) <= tolerances.snap
     at_b = np.hypot(*(walls.b[i] - points[k]).T) <= tolerances.snap
     by_cap: dict[int, list[tuple[int, bool]]] = {}

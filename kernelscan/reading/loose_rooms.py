@@ -47,6 +47,9 @@ from kernelscan.tolerances import Tolerances
 
 __all__ = ["Barriers", "barriers_by_content", "barriers_by_name", "loose_rooms"]
 
+CORNER = 1.5
+"""Two lines that each stop short of a corner by the snap distance end this many times as far from each other."""
+
 GRID = 1e-5
 FARTHEST = 5000.0
 SMALLEST_PLAN = 1.0
@@ -58,11 +61,12 @@ KINDS: dict[int, OpeningKind] = {DOOR: "door", WINDOW: "window", GAP: "gap"}
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Barriers:
-    """The strokes that bound rooms, those that are doors and windows, and the layers on which outlines are solid."""
+    """What bounds rooms: walls, doors and windows, layers with solid outlines, and whether names say so."""
 
     walls: Sequence[Stroke]
     openings: Sequence[Stroke]
     bodies: frozenset[str] = frozenset()
+    by_name: bool = False
 
 
 def barriers_by_name(strokes: Sequence[Stroke], roles: Mapping[str, LayerRole]) -> Barriers:
@@ -72,7 +76,7 @@ def barriers_by_name(strokes: Sequence[Stroke], roles: Mapping[str, LayerRole]) 
         for s in strokes
         if roles[s.layer].role == "wall" or (roles[s.layer].role == "room" and not s.closed)
     ]
-    return Barriers(walls, [s for s in strokes if roles[s.layer].role == "opening"])
+    return Barriers(walls, [s for s in strokes if roles[s.layer].role == "opening"], by_name=True)
 
 
 def barriers_by_content(
@@ -121,7 +125,7 @@ def loose_rooms(
     faces = faces_of(lines, GRID, SmallFace(tolerances.smallest_room, tolerances.thickest_wall))
     named = _named(faces, labels, metres, origin)
     solid = _solid_faces(faces, barriers, metres, origin)
-    rooms = [f for f in _room_faces(faces, named, tolerances) if f not in solid]
+    rooms = [f for f in _room_faces(faces, named, barriers.by_name, tolerances) if f not in solid]
     bounding = _bounding_strokes([faces[f] for f in rooms], strokes, lines)
     found = [_found(faces[f], origin, stroke, tolerances) for f, stroke in zip(rooms, bounding, strict=True)]
     found.sort(key=_reading_order)
@@ -195,7 +199,7 @@ def _closed_lines(barriers: Barriers, metres: float, origin: np.ndarray, toleran
     gaps = wall_gaps(walls, openings, swings, tolerances)
     closing = openings.where(closing_lines(openings, walls, tolerances))
     drawn = walls.plus(closing.a, closing.b, closing.code + DRAWN_OPENING)
-    starts, ends = connectors(drawn, tolerances.snap)
+    starts, ends = connectors(drawn, CORNER * tolerances.snap)
     joined = drawn.plus(starts, ends, np.full(len(starts), WALL))
     return joined.plus(gaps.a, gaps.b, gaps.code)
 
@@ -217,7 +221,8 @@ def _solid_faces(faces: Sequence[Face], barriers: Barriers, metres: float, origi
     return set(rings_around(bodies, points)[0].tolist())
 
 
-def _room_faces(faces: Sequence[Face], named: set[int], tolerances: Tolerances) -> list[int]:
+def _room_faces(faces: Sequence[Face], named: set[int], by_name: bool, tolerances: Tolerances) -> list[int]:
+    """Return the faces that are rooms: large and wide enough or named, no frame, and not just standing in a room."""
     rooms = [
         f
         for f, face in enumerate(faces)
@@ -228,46 +233,43 @@ def _room_faces(faces: Sequence[Face], named: set[int], tolerances: Tolerances) 
     if not holes:
         return rooms
     points = inner_points([faces[f].rings[0] for f in rooms])
-    inner, of_hole = rings_around([hole for _, hole in holes], points)
-    free = {rooms[k] for k in inner.tolist() if not _is_entered(faces[rooms[k]]) and rooms[k] not in named}
-    held: dict[int, float] = {}
-    for k, h in zip(inner.tolist(), of_hole.tolist(), strict=True):
-        if rooms[k] not in free:
-            held[holes[h][0]] = held.get(holes[h][0], 0.0) + faces[rooms[k]].area
-    frames = {f for f in held if _is_frame(faces[f], f in named)}
+    held: dict[int, set[int]] = {}
+    around: dict[int, set[int]] = {}
+    for k, h in zip(
+        *(pairs.tolist() for pairs in rings_around([hole for _, hole in holes], points)), strict=True
+    ):
+        held.setdefault(holes[h][0], set()).add(rooms[k])
+        around.setdefault(rooms[k], set()).add(holes[h][0])
+    frames = {
+        f for f, inner in held.items() if _is_frame(faces[f], [faces[i] for i in inner], f in named, by_name)
+    }
     return [
         f
         for f in rooms
-        if f not in frames and (f not in free or _in_frames(f, rooms, inner, of_hole, holes, frames))
+        if f not in frames and (f in named or _is_entered(faces[f]) or not around.get(f, set()) - frames)
     ]
-
-
-def _in_frames(
-    f: int,
-    rooms: list[int],
-    inner: np.ndarray,
-    of_hole: np.ndarray,
-    holes: list[tuple[int, np.ndarray]],
-    frames: set[int],
-) -> bool:
-    """Whether a face stands free only in frames, which are no rooms, so that it is no obstacle of one."""
-    around = {holes[h][0] for k, h in zip(inner.tolist(), of_hole.tolist(), strict=True) if rooms[k] == f}
-    return around <= frames
 
 
 def _is_entered(face: Face) -> bool:
     return any((codes != WALL).any() for codes in face.codes)
 
 
-def _is_frame(face: Face, has_name: bool) -> bool:
-    """Whether a face that holds rooms opens to nothing outside; with a name in it, only if it holds mostly others."""
+def _is_frame(face: Face, held: Sequence[Face], has_name: bool, by_name: bool) -> bool:
+    """Whether a face is a sheet's frame or a plot: it opens to nothing outside and holds a building of several rooms.
+
+    What is drawn on wall layers is so only around a building of three rooms or more, and if it is mostly empty.
+    A name in it makes it a room, unless it is mostly filled with others.
+    """
     alone = bool((face.beyond[0] == OUTSIDE).all() and (face.codes[0] == WALL).all())
-    return alone and not (has_name and face.area > signed_area(face.rings[0]) / 2)
+    whole = abs(signed_area(face.rings[0]))
+    if not alone or (has_name and face.area > whole / 2):
+        return False
+    return len(held) >= 3 and face.area > whole / 2 if by_name else len(held) >= 2
 
 
 def _found(face: Face, origin: np.ndarray, stroke: Stroke, tolerances: Tolerances) -> FoundRoom:
     """Return a face as a room: its corners cleaned, its holes obstacles, its openings kept."""
-    ring, codes = clean_ring(face.rings[0], face.codes[0], tolerances.snap, STRAIGHT)
+    ring, codes = clean_ring(face.rings[0], face.codes[0], CORNER * tolerances.snap, STRAIGHT)
     try:
         outline = as_ring(ring + origin)
     except GeometryError:
@@ -276,7 +278,7 @@ def _found(face: Face, origin: np.ndarray, stroke: Stroke, tolerances: Tolerance
     source = Source(stroke.layer, stroke.handle)
     obstacles = []
     for hole, kinds in zip(face.rings[1:], face.codes[1:], strict=True):
-        cleaned, _ = clean_ring(hole, kinds, tolerances.snap, STRAIGHT)
+        cleaned, _ = clean_ring(hole, kinds, CORNER * tolerances.snap, STRAIGHT)
         if (kinds == WALL).any() and len(cleaned) > 2:
             obstacles.append(Obstacle(as_ring(cleaned + origin, hole=True), source))
     edges = tuple(

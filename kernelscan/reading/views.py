@@ -38,21 +38,19 @@ def told_apart(
     rooms: Sequence[Room], contents: Contents, roles: Mapping[str, LayerRole], metres: float
 ) -> tuple[tuple[Room, ...], tuple[View, ...], list[Problem]]:
     """Return the rooms without those of side views, the views, and a problem for each view without a room."""
+    kept, views, problems = list(rooms), [], []
     boxes = _boxes(_drawn(contents.strokes, roles, metres), metres)
-    if len(boxes) < 2:
-        return tuple(rooms), tuple(View(1, "", *box, tuple(r.id for r in rooms)) for box in boxes), []
-    kept, views, problems = [], [], []
     for number, (low, high) in enumerate(boxes, 1):
         inside = [room for room in rooms if _holds(low, high, room)]
         title = _title(contents.labels, low, high, metres)
-        aside = bool(SIDE_VIEWS & set(words(title)))
-        if not inside or aside:
+        aside = len(boxes) > 1 and bool(SIDE_VIEWS & set(words(title)))
+        if len(boxes) > 1 and (aside or not inside):
             problems.append(_no_floor(number, title, low, high, aside))
-        views.append(View(number, title, low, high, () if aside else tuple(room.id for room in inside)))
-        kept += [] if aside else [room.id for room in inside]
-    known = {room_id for view in views for room_id in view.rooms}
-    dropped = {room.id for room in rooms if any(_holds(low, high, room) for low, high in boxes)} - known
-    return tuple(room for room in rooms if room.id not in dropped), tuple(views), problems
+        if aside:
+            gone = {room.id for room in inside}
+            kept, inside = [room for room in kept if room.id not in gone], []
+        views.append(View(number, title, low, high, tuple(room.id for room in inside)))
+    return tuple(kept), tuple(views), problems
 
 
 def _no_floor(
