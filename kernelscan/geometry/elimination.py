@@ -40,7 +40,7 @@ import numpy.typing as npt
 
 from kernelscan.geometry.predicates import Line, exact_line, meet, same_way, sign, turn, value
 
-__all__ = ["Sides", "sides_of"]
+__all__ = ["Sides", "angle_keys", "sides_of"]
 
 Floats = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.int64]
@@ -48,7 +48,7 @@ Signs = npt.NDArray[np.int8]
 
 UNIT = 2.0**-53
 TINY = 2.0**-1000
-FEW = 64
+FEW = 256
 
 
 class Sides(NamedTuple):
@@ -140,7 +140,7 @@ class _Elimination:
         self.alive[gone] = False
         self.after[before], self.before[after] = after, before
         touched = np.concatenate([before, after, useless[~going]])
-        if 16 * len(touched) < len(self.order):
+        if len(touched) < FEW:
             return np.unique(touched)
         marked = np.zeros(len(self.order), dtype=bool)
         marked[touched] = True
@@ -175,7 +175,7 @@ class _Elimination:
 
     def _sorted_by_way(self, numbers: Indices) -> Indices:
         """Sort by way, exactly, and keep the tightest of each way."""
-        keys = _angle_keys(self.d[numbers])
+        keys = angle_keys(self.d[numbers])
         if not np.isfinite(keys).all():
             return self._exactly_sorted(numbers.tolist())
         order = numbers[np.argsort(keys, kind="stable")]
@@ -245,7 +245,7 @@ def _tightest_along_axes(a: Floats, d: Floats) -> Indices:
     return np.concatenate(numbers)
 
 
-def _angle_keys(d: Floats) -> Floats:
+def angle_keys(d: Floats) -> Floats:
     """Return numbers that grow with the way from straight down, once around to it."""
     t = d[:, 1] / (np.abs(d[:, 0]) + np.abs(d[:, 1]))
     keys: Floats = np.where(d[:, 0] >= 0, t, 2 - t)

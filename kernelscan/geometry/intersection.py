@@ -8,8 +8,8 @@ Method
     first. If nothing is left of it, nothing is left of all; so, too, for the first few, since walls that
     follow each other often exclude each other. Else one pass drops every half-plane that holds what
     the sample leaves (:mod:`~kernelscan.geometry.pruning`); the rest is sampled again, and so on until few are left.
-    Where a pass drops too little, because the intersection has very many sides, the sides are found by local
-    elimination (:mod:`~kernelscan.geometry.elimination`).
+    Where a pass drops too little, because the intersection has very many sides, a larger sample and those
+    that cut deepest make one more pass, and the sides are found by local elimination (:mod:`~kernelscan.geometry.elimination`).
 Exactness
     Signs come from floats with proven bounds or else from integers, for the six doubles of each half-plane as they are
     stored. Corners are named by two half-planes and rounded once, at the end.
@@ -35,12 +35,15 @@ from kernelscan.geometry.clipping import INFINITE, ConvexRegion, Shape, region_o
 from kernelscan.geometry.elimination import sides_of
 from kernelscan.geometry.halfplanes import HalfPlanes
 from kernelscan.geometry.predicates import Row, Triple, exact_line, meet, rounded
-from kernelscan.geometry.pruning import HalfPlaneSource, Indices, Outline, RowSource, survivors
+from kernelscan.geometry.pruning import HalfPlaneSource, Indices, Outline, RowSource, most_cutting, survivors
 
 __all__ = ["FEW", "Intersection", "Solution", "corners_of", "intersect", "solve"]
 
 FEW = 64
 SAMPLE = 48
+LARGE_SAMPLE = 1024
+MANY = 8192
+VERY_MANY = 100_000
 HEADS = (16, 128, 1024)
 HEAD_SHARE = 64
 GOLDEN = 0.6180339887498949
@@ -157,7 +160,7 @@ def solve(source: HalfPlaneSource) -> Solution:
         head = solve(RowSource(source.rows(np.arange(size))))
         if head.kind == "empty":
             return head
-    return _sampled(source, _spread(count))
+    return _sampled(source, _spread(count, SAMPLE if count < VERY_MANY else 5 * SAMPLE))
 
 
 def _sampled(source: HalfPlaneSource, sample: Indices) -> Solution:
@@ -174,9 +177,32 @@ def _sampled(source: HalfPlaneSource, sample: Indices) -> Solution:
             _cut(region, source, pool)
             break
         if 2 * len(pool) > before:
-            return _eliminated(source, np.concatenate([region.names, pool]))
+            return _many_sided(source, np.array(region.names), pool, outline)
         _cut(region, source, pool[_spread(len(pool))])
     return _eliminated(source, pool) if region is None else _solved(region)
+
+
+def _many_sided(source: HalfPlaneSource, own: Indices, pool: Indices, outline: Outline | None) -> Solution:
+    """Find the sides of a region that has many; if the pool is large, with the help of a large sample of it."""
+    if outline is not None and len(pool) > MANY:
+        rows = source.rows(pool)
+        cutting = most_cutting(rows, outline, SAMPLE)
+        sample = _together(len(source), own, pool[_spread(len(pool), LARGE_SAMPLE)], pool[cutting])
+        rough = _eliminated(source, sample)
+        if rough.kind == "empty":
+            return rough
+        if rough.kind == "area" and rough.is_bounded:
+            own = rough.sides
+            pool = pool[survivors(RowSource(rows), Outline.of_sides(source.rows(own)))]
+    return _eliminated(source, _together(len(source), own, pool))
+
+
+def _together(count: int, *numbers: Indices) -> Indices:
+    """Return the numbers below ``count`` that are in any of the sets, ascending."""
+    marked = np.zeros(count, dtype=bool)
+    for some in numbers:
+        marked[some] = True
+    return np.flatnonzero(marked)
 
 
 def _survivors(source: HalfPlaneSource, pool: Indices | None, outline: Outline | None) -> Indices:
@@ -196,9 +222,9 @@ def _without(numbers: Indices, region: ConvexRegion) -> Indices:
     return np.delete(numbers, places[numbers[places] == np.array(own)[known]])
 
 
-def _spread(count: int) -> Indices:
+def _spread(count: int, size: int = SAMPLE) -> Indices:
     """Return some numbers below count, far from each other and from any period."""
-    places: Indices = np.unique((np.arange(1, SAMPLE + 1) * GOLDEN % 1 * count).astype(np.int64))
+    places: Indices = np.unique((np.arange(1, size + 1) * GOLDEN % 1 * count).astype(np.int64))
     return places
 
 

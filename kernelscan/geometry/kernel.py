@@ -15,7 +15,6 @@ Source
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
 from fractions import Fraction
-from functools import lru_cache
 
 import numpy as np
 import numpy.typing as npt
@@ -23,6 +22,7 @@ import numpy.typing as npt
 from kernelscan.geometry.areas import polygon_area, ring_area
 from kernelscan.geometry.clipping import Shape, region_of
 from kernelscan.geometry.convexity import is_surely_convex
+from kernelscan.geometry.corners import corners_between
 from kernelscan.geometry.halfplanes import HalfPlanes, wall_numbers, wall_rows
 from kernelscan.geometry.intersection import FEW, Solution, corners_of, solve
 from kernelscan.geometry.predicates import Row, Triple, exact_line, meet, rounded
@@ -150,9 +150,7 @@ def _corners_of_many(source: RingSource, solution: Solution) -> tuple[npt.NDArra
     before = np.roll(sides, 1, axis=0)
     vertices = sides[:, :2].copy()
     apart = np.flatnonzero((before[:, 4:] != vertices).any(axis=1))
-    line = lru_cache(2)(exact_line)
-    pairs = zip(map(tuple, before[apart].tolist()), map(tuple, sides[apart].tolist()), strict=True)
-    vertices[apart] = np.array([rounded(meet(line(g), line(h))) for g, h in pairs]).reshape(-1, 2)
+    vertices[apart] = corners_between(before[apart], sides[apart])
     return vertices, polygon_area(vertices.tolist(), lambda: _corners_around(sides.tolist()))
 
 

@@ -7,7 +7,8 @@ Method
     With c a double near the region and q its corners as seen from c, a half-plane with border point p and way d has
     at a corner the value d x (c - p) + d x q. The least of these over a box |q_x| <= r_x, |q_y| <= r_y is
     d x (c - p) - |d_x| r_y - |d_y| r_x: a few array operations, in portions that stay in the cache. The
-    half-planes that do not hold the box are asked about the corners themselves, all at once as a matrix product.
+    half-planes that do not hold the box are asked about the corners themselves: all at once as a matrix product if
+    they are few, and of many the one where the ways of the sides pass d, found by angle, with its two neighbours.
 Exactness
     What is dropped is surely held. With e = 2**-53: c - p errs by a part e, d by a part e, the two products each by a
     part 3 e more, so d x (c - p) is off by less than 5 e (|d_x| |c_y - p_y| + |d_y| |c_x - p_x|), which is bounded with
@@ -26,10 +27,11 @@ import numpy as np
 import numpy.typing as npt
 
 from kernelscan.geometry.clipping import ConvexRegion
-from kernelscan.geometry.predicates import rounded
+from kernelscan.geometry.elimination import angle_keys
+from kernelscan.geometry.predicates import exact_line, meet, rounded
 from kernelscan.geometry.rings import Ring
 
-__all__ = ["HalfPlaneSource", "Outline", "RingSource", "RowSource", "survivors"]
+__all__ = ["HalfPlaneSource", "Outline", "RingSource", "RowSource", "most_cutting", "survivors"]
 
 Floats = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.int64]
@@ -38,6 +40,8 @@ Flags = npt.NDArray[np.bool_]
 UNIT = 2.0**-53
 TINY = 2.0**-1000
 PORTION = 1 << 14
+FEW = 24
+WAY_OF_ROW = np.array([[0, 0], [0, 0], [-1, 0], [0, -1], [1, 0], [0, 1]])
 
 
 class HalfPlaneSource(Protocol):
@@ -152,12 +156,16 @@ class Outline:
         How far off the coordinates of q are, in x and in y.
     limits
         ``(2, 2)``: the exact least and greatest x, and y, of a thin region; NaN where they are no doubles.
+    ways
+        ``(2, k)``: of a region with an area, the way of the side from each corner, in the order of their
+        :func:`~kernelscan.geometry.elimination.angle_keys`.
     """
 
     centre: tuple[float, float]
     corners: Floats
     error: tuple[float, float]
     limits: Floats | None = None
+    ways: Floats | None = None
 
     @property
     def reach(self) -> Floats:
@@ -175,13 +183,28 @@ class Outline:
         lowest = min(z for _, _, z in region.corners)
         if lowest < 2.0**-40:
             return None
-        x, y = np.array([(x / z, y / z) for x, y, z in region.corners]).T
+        ways = np.array([region.rows[name] for name in region.names]) @ WAY_OF_ROW
+        first = int(angle_keys(ways).argmin())
+        corners = region.corners[first:] + region.corners[:first]
+        x, y = np.array([(x / z, y / z) for x, y, z in corners]).T
         ox, oy = region.origin
         lx, ly = (float(x.max()) + float(x.min())) / 2, (float(y.max()) + float(y.min())) / 2
         cx, cy = ox + lx, oy + ly
-        corners = np.array([x - (cx - ox), y - (cy - oy)])
+        around = np.array([x - (cx - ox), y - (cy - oy)])
         error = 80 * UNIT * region.reach / lowest**2 + TINY
-        return Outline((cx, cy), corners, (error, error))
+        return Outline((cx, cy), around, (error, error), ways=np.roll(ways, -first, axis=0).T)
+
+    @staticmethod
+    def of_sides(sides: Floats) -> "Outline":
+        """Return the outline of a bounded region with many sides, given in order as ``(k, 6)`` rows."""
+        sides = np.roll(sides, -int(angle_keys(sides @ WAY_OF_ROW).argmin()), axis=0)
+        lines = [exact_line(row) for row in sides.tolist()]
+        points = np.array([rounded(meet(lines[k - 1], line)) for k, line in enumerate(lines)]).T
+        centre = points.mean(axis=1)
+        corners = points - centre[:, None]
+        error = 4 * UNIT * (np.abs(points).max(axis=1) + np.abs(corners).max(axis=1)) + TINY
+        place, off = (float(centre[0]), float(centre[1])), (float(error[0]), float(error[1]))
+        return Outline(place, corners, off, ways=(sides @ WAY_OF_ROW).T)
 
     @staticmethod
     def _of_thin(region: ConvexRegion) -> "Outline":
@@ -210,7 +233,8 @@ def survivors(source: HalfPlaneSource, outline: Outline) -> Indices:
         for first, p, d in source.portions():
             left = np.flatnonzero(~_held_by_box(p, d, outline))
             if len(left):
-                left = left[~_held_by_corners(p[:, left], d[:, left], outline)]
+                held = _held_by_corners if outline.corners.shape[1] <= FEW else _held_by_angle
+                left = left[~held(p[:, left], d[:, left], outline)]
                 found.append(left + first)
     return np.concatenate(found) if found else np.zeros(0, dtype=np.int64)
 
@@ -241,6 +265,40 @@ def _held_by_corners(p: Floats, d: Floats, outline: Outline) -> Flags:
     if outline.limits is not None:
         held |= _along(p, d, outline.limits)
     return np.asarray(held)
+
+
+def _held_by_angle(p: Floats, d: Floats, outline: Outline) -> Flags:
+    """Ask about the corner where the sides' ways pass d, and its neighbours, if the sides beyond surely turn away."""
+    assert outline.ways is not None
+    count = outline.ways.shape[1]
+    near = np.searchsorted(angle_keys(outline.ways.T), angle_keys(d.T))
+    left, right = d[0] * (outline.centre[1] - p[1]), d[1] * (outline.centre[0] - p[0])
+    q_x, q_y = np.abs(outline.corners).max(axis=1)
+    bound = 8 * UNIT * (np.abs(left) + np.abs(right)) + TINY
+    bound += np.abs(d[0]) * (8 * UNIT * q_y + outline.error[1]) + np.abs(d[1]) * (
+        8 * UNIT * q_x + outline.error[0]
+    )
+    held = np.ones(len(near), dtype=bool)
+    for shift in (-1, 0, 1):
+        x, y = outline.corners[:, (near + shift) % count]
+        held &= left - right + (d[0] * y - d[1] * x) > bound
+    before, after = outline.ways[:, (near - 2) % count], outline.ways[:, (near + 1) % count]
+    return np.asarray(held & _surely_left(before, d) & _surely_left(d, after))
+
+
+def _surely_left(d: Floats, e: Floats) -> Flags:
+    """Which ways e surely turn left from d by less than half a turn."""
+    left, right = d[0] * e[1], d[1] * e[0]
+    return np.asarray(left - right > 8 * UNIT * (np.abs(left) + np.abs(right)) + TINY)
+
+
+def most_cutting(rows: Floats, outline: Outline, count: int) -> Indices:
+    """Return which of ``(m, 6)`` rows have the centre of a region least deep inside, or farthest outside."""
+    ways = rows[:, 4:] - rows[:, 2:4]
+    offsets = np.array(outline.centre) - rows[:, :2]
+    with np.errstate(over="ignore", invalid="ignore", under="ignore", divide="ignore"):
+        depths = (ways[:, 0] * offsets[:, 1] - ways[:, 1] * offsets[:, 0]) / np.hypot(ways[:, 0], ways[:, 1])
+    return np.argpartition(depths, min(count, len(rows) - 1))[:count]
 
 
 def _along(p: Floats, d: Floats, limits: Floats) -> Flags:

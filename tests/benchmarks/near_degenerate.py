@@ -3,7 +3,8 @@
     python tests/benchmarks/near_degenerate.py            230,000 rooms, of which some 203,000 are not refused
     python tests/benchmarks/near_degenerate.py --count 5000
 
-One in 4,000 has some 4,400 walls. The seed is fixed: every run of the same count asks about the same rooms. The exit code is 1 if one is misjudged.
+One in 4,000 has some 4,400 walls. The seed is fixed: every run of the same count asks about the same rooms. The exit
+code is 1 if one is misjudged.
 """
 
 import argparse
