@@ -4,7 +4,7 @@ from math import degrees
 
 from kernelscan.coverage.device_spots import DeviceAnswer, DeviceSpot
 from kernelscan.coverage.setting_out import SettingOut
-from kernelscan.coverage.sides import face_name
+from kernelscan.coverage.wall_names import face_name
 from kernelscan.coverage.wording import Custom
 from kernelscan.plan import Room
 
@@ -44,8 +44,8 @@ def shortfall_in_words(answer: DeviceAnswer) -> str:
 def set_out_in_words(room: Room, plan: SettingOut, custom: Custom) -> str:
     """Return the two setting-out distances, from named faces or from the corners where named walls begin."""
     return ", ".join(
-        f"{_tape(offset.distance, custom)} from the "
-        + ("" if plan.by == "faces" else "first corner of the ")
+        f"{_tape(offset.distance, custom)} from "
+        + ("" if plan.by == "faces" else "the first corner of ")
         + face_name(room, offset.wall, custom)
         for offset in plan.offsets
     )

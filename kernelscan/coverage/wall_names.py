@@ -16,9 +16,10 @@ import numpy.typing as npt
 from kernelscan.coverage.depth import line_depths
 from kernelscan.coverage.features import Feature
 from kernelscan.coverage.joints import SQUARE
+from kernelscan.coverage.wording import Custom
 from kernelscan.plan import Room, WallRef
 
-__all__ = ["WallName", "joined", "wall_names"]
+__all__ = ["WallName", "face_name", "joined", "wall_names"]
 
 Floats = npt.NDArray[np.float64]
 
@@ -53,6 +54,16 @@ def wall_names(room: Room, walls: Sequence[WallRef], features: Sequence[Feature]
         else name
         for name, wall, twice in zip(names, walls, alike, strict=True)
     ]
+
+
+def face_name(room: Room, wall: WallRef, custom: Custom) -> str:
+    """Return what to measure from: a wall's name, with its length where another wall of the outline has the same."""
+    name = str(_name(room, wall, ()))
+    alike = [edge for edge in range(len(room.outline)) if str(_name(room, WallRef(0, edge), ())) == name]
+    if len(alike) < 2:
+        return name
+    start, end = room.wall_ends(wall)
+    return f"{name} of {custom.length(float(np.hypot(*(end - start))))}"
 
 
 def joined(names: Sequence[WallName]) -> str:
