@@ -6,7 +6,7 @@ A range is rounded up and a tolerance down, so that what is printed is never kin
 from dataclasses import dataclass
 from math import ceil, degrees, floor, isclose
 
-from kernelscan.coverage import RoomZones
+from kernelscan.coverage.zones import RoomZones
 from kernelscan.units import feet_and_inches
 
 __all__ = ["Custom", "angle_in_words", "kernel_in_words"]
