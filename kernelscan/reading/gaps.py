@@ -42,11 +42,15 @@ COVERED = 0.7
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Gaps:
-    """Straight thresholds: ``a`` and ``b`` are their ends, ``(n, 2)``; ``code`` is DOOR, WINDOW or GAP."""
+    """Straight thresholds: ``a`` and ``b`` are their ends, ``(n, 2)``; ``code`` is DOOR, WINDOW or GAP.
+
+    ``wide`` holds the gaps between free wall ends that were too wide to close, ``(m, 2, 2)``.
+    """
 
     a: np.ndarray
     b: np.ndarray
     code: np.ndarray
+    wide: np.ndarray
 
 
 def connectors(walls: Segments, snap: float) -> tuple[np.ndarray, np.ndarray]:
@@ -101,18 +105,18 @@ def wall_gaps(walls: Segments, openings: Segments, swings: list[Swing], toleranc
         a, b = _uncrossed(a, b, walls)
     tips, outward = _wall_ends(walls, tolerances)
     code = _what_stands_there(a, b, openings, swings, tolerances)
-    limit = tolerances.door_gap * np.where(
-        _near(a, tips, tolerances) & _near(b, tips, tolerances), FREE_ENDS, 1.0
-    )
+    free = _near(a, tips, tolerances) & _near(b, tips, tolerances)
+    limit = tolerances.door_gap * np.where(free, FREE_ENDS, 1.0)
     kept = (code != GAP) | (np.hypot(*(b - a).T) <= limit * (1 + 1e-6))
+    wide = np.stack((a, b), axis=1)[free & ~kept]
     a, b, code = a[kept], b[kept], code[kept]
     unmet = ~_near(tips, np.concatenate((a, b)), tolerances)
     ea, eb = _ends_facing_walls(walls, tips[unmet], outward[unmet], tolerances)
     ends_code = _what_stands_there(ea, eb, openings, swings, tolerances)
     kept = (ends_code != GAP) | (np.hypot(*(eb - ea).T) <= tolerances.door_gap * (1 + 1e-6))
-    return Gaps(
-        np.concatenate((a, ea[kept])), np.concatenate((b, eb[kept])), np.concatenate((code, ends_code[kept]))
-    )
+    both = zip((a, b, code), (ea, eb, ends_code), strict=True)
+    start, end, kind = (np.concatenate((first, second[kept])) for first, second in both)
+    return Gaps(start, end, kind, wide)
 
 
 def _near(points: np.ndarray, others: np.ndarray, tolerances: Tolerances) -> np.ndarray:

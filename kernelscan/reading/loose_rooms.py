@@ -121,7 +121,7 @@ def loose_rooms(
     strokes = [*barriers.walls, *barriers.openings]
     if not strokes or _reach(strokes, metres) < SMALLEST_PLAN:
         return [], far
-    lines = _closed_lines(barriers, metres, origin, tolerances)
+    lines, wide = _closed_lines(barriers, metres, origin, tolerances)
     faces = faces_of(lines, GRID, SmallFace(tolerances.smallest_room, tolerances.thickest_wall))
     named = _named(faces, labels, metres, origin)
     solid = _solid_faces(faces, barriers, metres, origin)
@@ -132,7 +132,7 @@ def loose_rooms(
     walls = lines.where((lines.code == WALL) & (lines.stroke >= 0))
     if found and _bounded_length(faces, rooms) < tolerances.least_closed * float(walls.length.sum()):
         return [], [*far, *(_pocket(room) for room in found)]
-    return found, far
+    return found, [*far, *_wide_gaps(wide + origin)]
 
 
 def _middle(strokes: Sequence[Stroke], metres: float) -> np.ndarray:
@@ -176,6 +176,16 @@ def _bounded_length(faces: Sequence[Face], rooms: Sequence[int]) -> float:
     return total
 
 
+def _wide_gaps(wide: np.ndarray) -> list[Problem]:
+    """Return a problem for each gap between free wall ends that is wider than a door, with its size and place."""
+    widths = np.hypot(*(wide[:, 1] - wide[:, 0]).T)
+    middles = wide.mean(axis=1)
+    return [
+        Problem("wide-gap", f"a gap of {width:.2f} m between two wall ends is left open", (x, y))
+        for width, (x, y) in zip(widths.tolist(), middles.tolist(), strict=True)
+    ]
+
+
 def _pocket(room: FoundRoom) -> Problem:
     text = (
         f"{room.outline.area:.2f} m2 are enclosed here, but hardly any other wall of the drawing encloses anything: "
@@ -184,8 +194,10 @@ def _pocket(room: FoundRoom) -> Problem:
     return Problem("open-plan", text, room.outline.centre, room.outline.source)
 
 
-def _closed_lines(barriers: Barriers, metres: float, origin: np.ndarray, tolerances: Tolerances) -> Segments:
-    """Return the walls, the openings' lines and the thresholds that together close the rooms."""
+def _closed_lines(
+    barriers: Barriers, metres: float, origin: np.ndarray, tolerances: Tolerances
+) -> tuple[Segments, np.ndarray]:
+    """Return the walls, openings' lines and thresholds that close the rooms, and the gaps too wide to be closed."""
     strokes = [*barriers.walls, *barriers.openings]
     swinging = swings_of(strokes, metres, origin)
     arcs = {k for k, _ in swinging}
@@ -201,7 +213,7 @@ def _closed_lines(barriers: Barriers, metres: float, origin: np.ndarray, toleran
     drawn = walls.plus(closing.a, closing.b, closing.code + DRAWN_OPENING)
     starts, ends = connectors(drawn, CORNER * tolerances.snap)
     joined = drawn.plus(starts, ends, np.full(len(starts), WALL))
-    return joined.plus(gaps.a, gaps.b, gaps.code)
+    return joined.plus(gaps.a, gaps.b, gaps.code), gaps.wide
 
 
 def _named(faces: Sequence[Face], labels: Sequence[Label], metres: float, origin: np.ndarray) -> set[int]:

@@ -75,14 +75,16 @@ def test_pieces_copies_and_overlaps_are_one_wall(tmp_path: Path) -> None:
 @pytest.mark.parametrize(("gap", "closed"), [(0.8, True), (1.3, True), (1.6, True), (1.7, False)])
 def test_a_bare_gap_between_free_ends(tmp_path: Path, gap: float, closed: bool) -> None:
     """Between two free ends in one line 1.25 times the door gap is closed: a double door."""
-    wall = [[(4, 0), (4, 1)], [(4, 1 + gap), (4, 3)]]
+    wall = [[(4, 0), (4, 0.6)], [(4, 0.6 + gap), (4, 3)]]
     plan = plan_of(tmp_path, box(0, 0, 8, 3), *wall)
     assert areas(plan) == ([12, 12] if closed else [24])
+    left = [(problem.message, problem.at) for problem in plan.problems if problem.code == "wide-gap"]
+    assert left == ([] if closed else [("a gap of 1.70 m between two wall ends is left open", (4, 1.45))])
     if closed:
         for room in plan.rooms:
             (opening,) = room.openings
             assert (opening.kind, round(opening.width, 6)) == ("gap", gap)
-            assert sorted(y for _, y in room.opening_ends(opening).tolist()) == pytest.approx([1, 1 + gap])
+            assert sorted(y for _, y in room.opening_ends(opening).tolist()) == pytest.approx([0.6, 0.6 + gap])
 
 
 def test_the_door_gap_is_a_tolerance(tmp_path: Path) -> None:
