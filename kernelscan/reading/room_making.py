@@ -9,6 +9,7 @@ from kernelscan.plan import Opening, Problem, Room, WallRef
 from kernelscan.plan.room import NameSource
 from kernelscan.reading.closed_rooms import FoundRoom, RoomEdge
 from kernelscan.reading.drawn_openings import drawn_openings, with_drawn
+from kernelscan.reading.fixtures import fixtures_in_rings
 from kernelscan.reading.interpretation import Interpretation
 from kernelscan.reading.names import RoomLabel, labels_in_rings, room_label
 
@@ -36,6 +37,7 @@ def made_rooms(
     contents, thickest = reading.contents, reading.tolerances.thickest_wall
     labels = labels_in_rings(rings, contents.labels, metres)
     drawn = drawn_openings(rings, contents.strokes, reading.roles, metres, reading.tolerances)
+    fixtures = fixtures_in_rings(rings, contents.strokes, metres)
     on_layer = Counter(room.outline.stroke.layer for room in found)
     rooms: list[Room] = []
     problems: list[Problem] = []
@@ -55,6 +57,7 @@ def made_rooms(
                 outline.ring,
                 obstacles=room.obstacles,
                 openings=openings,
+                fixtures=fixtures[number - 1],
                 name_from=name_from,
                 source=outline.source,
                 closed_by=room.closed_by,
