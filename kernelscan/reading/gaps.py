@@ -36,6 +36,9 @@ STEEP = 0.5
 FREE_ENDS = 1.25
 """Between two free wall ends in one line a bare gap may be this many times as wide as elsewhere: a double door."""
 
+DOUBTFUL = 2.0
+"""A bare gap up to this many times as wide as a door is reported; beyond, walls that end are just walls that end."""
+
 COVERED = 0.7
 """This part of a wide gap must be covered by the door or window drawn in it."""
 
@@ -108,7 +111,8 @@ def wall_gaps(walls: Segments, openings: Segments, swings: list[Swing], toleranc
     free = _near(a, tips, tolerances) & _near(b, tips, tolerances)
     limit = tolerances.door_gap * np.where(free, FREE_ENDS, 1.0)
     kept = (code != GAP) | (np.hypot(*(b - a).T) <= limit * (1 + 1e-6))
-    wide = np.stack((a, b), axis=1)[free & ~kept]
+    doubtful = np.hypot(*(b - a).T) <= DOUBTFUL * tolerances.door_gap
+    wide = np.stack((a, b), axis=1)[free & ~kept & doubtful]
     a, b, code = a[kept], b[kept], code[kept]
     unmet = ~_near(tips, np.concatenate((a, b)), tolerances)
     ea, eb = _ends_facing_walls(walls, tips[unmet], outward[unmet], tolerances)

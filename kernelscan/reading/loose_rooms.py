@@ -132,7 +132,8 @@ def loose_rooms(
     walls = lines.where((lines.code == WALL) & (lines.stroke >= 0))
     if found and _bounded_length(faces, rooms) < tolerances.least_closed * float(walls.length.sum()):
         return [], [*far, *(_pocket(room) for room in found)]
-    return found, [*far, *_wide_gaps(wide + origin)]
+    loose = _free_walls([faces[f] for f in rooms], walls, origin, strokes, tolerances)
+    return found, [*far, *_wide_gaps(wide + origin), *loose]
 
 
 def _middle(strokes: Sequence[Stroke], metres: float) -> np.ndarray:
@@ -184,6 +185,37 @@ def _wide_gaps(wide: np.ndarray) -> list[Problem]:
         Problem("wide-gap", f"a gap of {width:.2f} m between two wall ends is left open", (x, y))
         for width, (x, y) in zip(widths.tolist(), middles.tolist(), strict=True)
     ]
+
+
+def _free_walls(
+    rooms: Sequence[Face],
+    walls: Segments,
+    origin: np.ndarray,
+    strokes: Sequence[Stroke],
+    tolerances: Tolerances,
+) -> list[Problem]:
+    """Return a problem for each wall line that stands in a room and bounds nothing: it hides nothing there."""
+    long = np.flatnonzero(walls.length >= tolerances.thickest_wall / 2)
+    if not rooms or not len(long):
+        return []
+    middles = (walls.a[long] + walls.b[long]) / 2
+    rings = [ring for room in rooms for ring in room.rings]
+    a, b = np.concatenate(rings), np.concatenate([np.roll(ring, -1, axis=0) for ring in rings])
+    inside = np.zeros(len(long), dtype=np.int64)
+    np.add.at(inside, rings_around([room.rings[0] for room in rooms], middles)[0], 1)
+    holes = [ring for room in rooms for ring in room.rings[1:]]
+    if holes:
+        np.add.at(inside, rings_around(holes, middles)[0], -1)
+    inside[lines_near(middles, a, b, tolerances.snap)[0]] = 0
+    problems = []
+    for k in np.flatnonzero(inside > 0).tolist():
+        stroke = strokes[int(walls.stroke[long[k]])]
+        x, y = (middles[k] + origin).tolist()
+        text = (
+            f"a wall line of {walls.length[long[k]]:.2f} m stands free in a room and hides nothing; close it"
+        )
+        problems.append(Problem("free-wall", text, (x, y), Source(stroke.layer, stroke.handle)))
+    return problems
 
 
 def _pocket(room: FoundRoom) -> Problem:

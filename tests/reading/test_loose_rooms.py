@@ -84,7 +84,9 @@ def test_a_bare_gap_between_free_ends(tmp_path: Path, gap: float, closed: bool) 
         for room in plan.rooms:
             (opening,) = room.openings
             assert (opening.kind, round(opening.width, 6)) == ("gap", gap)
-            assert sorted(y for _, y in room.opening_ends(opening).tolist()) == pytest.approx([0.6, 0.6 + gap])
+            assert sorted(y for _, y in room.opening_ends(opening).tolist()) == pytest.approx(
+                [0.6, 0.6 + gap]
+            )
 
 
 def test_the_door_gap_is_a_tolerance(tmp_path: Path) -> None:
@@ -237,3 +239,11 @@ def test_the_family_home_measures_what_its_labels_say(shared_plans: Path) -> Non
     assert all(room.name_from == "label" for room in plan.rooms)
     assert len(wrong) <= 1
     assert all("GREAT ROOM" in text for text in wrong)
+
+
+def test_a_single_line_that_stands_free_is_named(tmp_path: Path) -> None:
+    plan = plan_of(tmp_path, box(0, 0, 8, 6), box(3, 3, 2, 1.5), [(6, 0), (6, 3)])
+    (problem,) = [p for p in plan.problems if p.code == "free-wall"]
+    assert problem.at == (6, 1.5)
+    assert "3.00 m" in problem.message
+    assert problem.source.handle
