@@ -7,7 +7,7 @@ conditions leave of the line along which the lens slides; a corner is one lens p
 """
 
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fnmatch import fnmatchcase
 from math import atan2, hypot, inf, pi
 
@@ -17,7 +17,8 @@ import numpy.typing as npt
 from kernelscan.coverage.depth import deepest_along, line_depths
 from kernelscan.coverage.limits import Limits
 from kernelscan.coverage.surfaces import corners, runs, solid_spans, walls_along, without
-from kernelscan.geometry.halfplanes import HalfPlanes, wall_half_planes
+from kernelscan.geometry.halfplanes import HalfPlanes, half_planes, wall_half_planes
+from kernelscan.geometry.intersection import intersect
 from kernelscan.plan import Fixing, Room, WallRef
 
 __all__ = [
@@ -70,6 +71,19 @@ class Conditions:
         """Return by how much each point of fixing, ``(m, 2)``, is clear of what it must stay away from."""
         distances = _distances_to_segments(points, self.keep_out)
         return np.asarray((distances - self.margins).min(axis=1, initial=inf))
+
+    def common_corners(self) -> Floats:
+        """Return the corners of what lies left of all the lines, ``(k, 2)``."""
+        start, end = self.lines[:, 0], self.lines[:, 1]
+        return intersect(half_planes(np.column_stack([start, end - start]))).vertices
+
+    def moved_in(self, depth: float) -> "Conditions":
+        """Return the conditions that positions fulfil with so much to spare, in metres."""
+        ways = self.lines[:, 1] - self.lines[:, 0]
+        ways = ways / np.hypot(ways[:, 0], ways[:, 1])[:, None]
+        inward = depth * np.column_stack([-ways[:, 1], ways[:, 0]])
+        lines = self.lines + inward[:, None]
+        return replace(self, lines=lines, reach=self.reach - depth, margins=self.margins + depth)
 
     def binding(self, lens: Floats) -> tuple[WallRef, ...]:
         """Return the walls that come nearest to ruling a lens position out, to a millimetre."""

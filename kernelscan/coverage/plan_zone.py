@@ -6,10 +6,16 @@ from math import acos, ceil, cos, hypot, inf, pi
 import numpy as np
 import numpy.typing as npt
 
-from kernelscan.coverage.device_zones import Conditions, free_conditions, strict_half_planes
+from kernelscan.coverage.device_zones import Conditions, free_conditions
 from kernelscan.coverage.limits import Limits
-from kernelscan.geometry.intersection import intersect
-from kernelscan.geometry.shapes import Patch, deepest_point, difference, intersection, nearest_point
+from kernelscan.geometry.shapes import (
+    Patch,
+    covers_points,
+    deepest_point,
+    difference,
+    intersection,
+    nearest_point,
+)
 from kernelscan.plan import Room
 
 __all__ = ["PlanZone", "plan_zone"]
@@ -42,11 +48,23 @@ class PlanZone:
     corners: Floats
 
     def best(self) -> Floats:
-        """Return the position that may be missed by most, ``(2,)``, to a millimetre of depth."""
+        """Return the position that may be missed by most, ``(2,)``, to a few millimetres of depth.
+
+        Where a long zone has many such positions, it is the middle of them.
+        """
         if not self.pieces:
             return np.asarray(self.corners.mean(axis=0))
         points = np.array([deepest_point(piece, DEPTH_ERROR) for piece in self.pieces])
-        return np.asarray(points[self.tolerances(points).argmax()])
+        depths = self.tolerances(points)
+        point, depth = points[depths.argmax()], float(depths.max()) - 2 * DEPTH_ERROR
+        if depth <= 0:
+            return np.asarray(point)
+        deeper = self.conditions.moved_in(depth)
+        for piece in _flattened(deeper, deeper.common_corners()):
+            middle = np.asarray(piece.outline, dtype=np.float64).mean(axis=0)
+            if covers_points(piece, point)[0] and self.tolerances(middle[None])[0] >= depth:
+                return np.asarray(middle)
+        return np.asarray(point)
 
     def nearest(self, wanted: Floats) -> Floats:
         """Return the position nearest to a wanted spot, ``(2,)``."""
@@ -63,7 +81,7 @@ class PlanZone:
 def plan_zone(room: Room, limits: Limits) -> PlanZone | None:
     """Return where a lens that sees all round covers the room, or ``None`` if nowhere."""
     needed = free_conditions(room, limits)
-    corners = intersect(strict_half_planes(room, limits)).vertices
+    corners = needed.common_corners()
     if len(corners) == 0:
         return None
     zone = PlanZone(needed, tuple(_flattened(needed, corners)), corners)

@@ -35,8 +35,8 @@ def fixtures_in_rings(
     found = [fixture for copy in _copies(strokes) if (fixture := _fixture(copy, metres)).radius <= LARGEST]
     inside: list[list[Fixture]] = [[] for _ in rings]
     if found and len(rings):
-        fixture, ring = rings_around(rings, np.array([each.centre for each in found]))
-        for k, i in sorted(zip(fixture.tolist(), ring.tolist(), strict=True)):
+        numbers, holders = rings_around(rings, np.array([each.centre for each in found]))
+        for k, i in sorted(zip(numbers.tolist(), holders.tolist(), strict=True)):
             inside[i].append(found[k])
     return [tuple(each) for each in inside]
 
