@@ -306,14 +306,14 @@ def test_same_answer_wherever_the_room_lies(points, move):
 
 def test_random_rooms_stray_by_no_more_than_asked():
     rng, seen = np.random.default_rng(4), 0
-    for exact in families(400):
+    for exact in families(240):
         depth = float(rng.choice([0.02, 0.1, 0.3, 0.6, 1.0]))
         plain = simplified(exact, depth)
         seen += len(plain.features)
         assert strays(exact.outline, plain.room.outline) <= depth + 2e-6
         as_rings(plain.room.outline, plain.room.holes)
         assert all(each.depth <= depth for each in plain.features)
-    assert seen > 300
+    assert seen > 200
 
 
 def test_random_rooms_keep_their_walls_on_their_lines():
@@ -362,7 +362,7 @@ def test_least_depth_by_hand():
 
 def test_least_depth_is_the_least():
     rng, found = np.random.default_rng(6), 0
-    for exact in families(300):
+    for exact in families(120):
         least = least_simplified(exact)
         if least is None or least.depth == 0:
             continue
@@ -370,9 +370,9 @@ def test_least_depth_is_the_least():
         assert kernel_of_rings(least.room.rings).kind != "empty"
         again = simplified(exact, least.depth)
         assert again.room.outline.tolist() == least.room.outline.tolist()
-        for depth in (*rng.uniform(0, least.depth, 5), least.depth - 1e-6):
+        for depth in (*rng.uniform(0, least.depth, 3), least.depth - 1e-6):
             assert kernel_of_rings(simplified(exact, depth).room.rings).kind == "empty"
-    assert found > 30
+    assert found > 12
 
 
 def test_hostile_rooms():

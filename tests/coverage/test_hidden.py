@@ -9,6 +9,7 @@ import pytest
 from kernelscan.coverage.hidden import hidden_from
 from kernelscan.errors import GeometryError
 from kernelscan.geometry.rings import as_rings
+from kernelscan.geometry.shapes import are_simple
 from kernelscan.geometry.visible import view_from
 from kernelscan.plan import Obstacle, Room, WallRef
 
@@ -153,6 +154,30 @@ def test_far_from_the_origin():
     assert len(there.patches) == len(here.patches)
 
 
+def test_a_region_that_rounding_makes_cross_itself():
+    # Four blades of a pinwheel far from the origin; the eye is on a wall in line with the tip of another.
+    of = room([
+        (-3141913.290284154, -3367835.5436676578),
+        (-3141913.4804830467, -3367833.5527321035),
+        (-3141910.0320815123, -3367833.223297958),
+        (-3141910.994253875, -3367832.7839392624),
+        (-3141911.8513817256, -3367832.3925472535),
+        (-3141910.4124792977, -3367829.2414268493),
+        (-3141912.0415806184, -3367830.4016116993),
+        (-3141913.5875332914, -3367828.230825258),
+        (-3141914.051079725, -3367827.5799254407),
+        (-3141913.860880832, -3367829.570860995),
+        (-3141917.3092823667, -3367829.9002951407),
+        (-3141915.4899821533, -3367830.731045845),
+        (-3141916.928884581, -3367833.882166249),
+        (-3141915.2997832606, -3367832.721981399),
+    ])  # fmt: skip
+    eye = of.outline[3]
+    assert not are_simple([view_from(of.rings, eye).region]).any()
+    hidden = hidden_from(of, eye)
+    assert hidden.floor_fraction == pytest.approx(view_from(of.rings, eye).floor_fraction, abs=1e-6)
+
+
 def random_rooms(count):
     rng = np.random.default_rng(8)
     makers = [polygons.mixed, lambda rng: polygons.untangled(rng, 12), lambda rng: polygons.polyomino(rng, 9)]
@@ -165,7 +190,7 @@ def random_rooms(count):
 
 
 def test_random_rooms_agree_with_single_views():
-    for of, points in random_rooms(120):
+    for of, points in random_rooms(80):
         for eye in [*points[:2], of.outline[0]]:
             hidden, view = hidden_from(of, eye), view_from(of.rings, eye)
             assert hidden.floor_fraction == pytest.approx(view.floor_fraction, abs=1e-6)
