@@ -22,7 +22,7 @@ from kernelscan.coverage.hidden import Hidden, hidden_from
 from kernelscan.coverage.wall_names import WallName, joined, wall_names
 from kernelscan.errors import GeometryError
 from kernelscan.geometry.kernel import Kernel, kernel_of_rings
-from kernelscan.geometry.linear_programs import deepest_point
+from kernelscan.geometry.linear_programs import deepest_point, least_slack
 from kernelscan.plan import Room, WallRef
 from kernelscan.tolerances import Tolerances
 
@@ -120,13 +120,13 @@ def why_no_point(room: Room, kernel: Kernel, tolerances: Tolerances = Tolerances
     least = least_simplified(alone, tolerances=tolerances)
     named = least if least is not None and least.features else simplified(alone, SMALL, tolerances)
     features = tuple(feature for feature in named.features if feature.depth <= SMALL)
-    deepest = deepest_point(room.rings)
-    best = best_point(room, _likely_points(deepest.point, least))
+    nearest = least_slack(room.rings)
+    best = best_point(room, _likely_points(nearest.point, least))
     return Reasons(
         room,
         tuple(_conflict_walls(room, kernel, features)),
         tuple(_sentences(room, kernel, outline_kernel, features)),
-        max(0.0, -deepest.radius),
+        nearest.slack,
         "outline" if outline_kernel is None or outline_kernel.kind == "empty" else "obstacles",
         outline_kernel,
         least,
