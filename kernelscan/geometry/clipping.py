@@ -100,12 +100,17 @@ class ConvexRegion:
 
     def cut_by_all(self, numbers: Iterable[int]) -> None:
         """Cut by the half-planes in turn, and stop as soon as nothing is left."""
+        rows, (ox, oy) = self.rows, self.origin
         for i in numbers:
-            line = u, v, w = self._float_line(i)
+            px, py, tx, ty, hx, hy = rows[i]
+            u, v = ty - hy, hx - tx
+            scale = abs(u) + abs(v)
+            u, v = u / scale, v / scale
+            w = u * (ox - px) + v * (oy - py)
             values = [u * x + v * y + w * z for x, y, z in self.corners]
             if min(values) > self.bound:
                 continue
-            self._cut(i, line, self._signs(i, values))
+            self._cut(i, (u, v, w), self._signs(i, values))
             if self.shape == "empty":
                 return
 
@@ -165,26 +170,22 @@ class ConvexRegion:
 
     def _signs(self, i: int, values: list[float]) -> list[int]:
         bound = self.bound
-        names = self.corner_names()
-        return [
-            1
-            if s > bound
-            else -1
-            if s < -bound
-            else sign(value(self.exact_line(i), self.exact_corner(names[k])))
-            for k, s in enumerate(values)
-        ]
+        signs = [(s > bound) - (s < -bound) for s in values]
+        if 0 in signs:
+            names, line = self.corner_names(), self.exact_line(i)
+            return [
+                s or sign(value(line, self.exact_corner(name))) for s, name in zip(signs, names, strict=True)
+            ]
+        return signs
 
     def _cut_area(self, i: int, line: Floats, signs: list[int]) -> None:
         if max(signs) <= 0:
             self._collapse(i, signs)
             return
-        if signs[0] <= 0 or signs[-1] <= 0:
-            first = signs.index(1)
-        else:
-            first = len(signs) - next(k for k, s in enumerate(reversed(signs)) if s <= 0)
+        inside = [s > 0 for s in signs]
+        first = len(signs) - inside[::-1].index(False) if inside[0] and inside[-1] else inside.index(True)
         self._turn_to(first)
-        after = next(k for k, s in enumerate(signs[first:] + signs[:first]) if s <= 0)
+        after = (inside[first:] + inside[:first]).index(False)
         names, lines, corners = self.names, self.lines, self.corners
         self.names = [names[-1], *names[:after], i]
         self.corners = [_cross(line, lines[-1]), *corners[:after], _cross(lines[after - 1], line)]

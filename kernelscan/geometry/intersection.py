@@ -5,11 +5,11 @@ Problem
     half-planes that exclude each other.
 Method
     Few half-planes cut a region one after the other (:mod:`~kernelscan.geometry.clipping`). Of many, a sample is cut
-    first. If nothing is left of it, nothing is left of all; so, too, for the first few, since walls that
-    follow each other often exclude each other. Else one pass drops every half-plane that holds what
-    the sample leaves (:mod:`~kernelscan.geometry.pruning`); the rest is sampled again, and so on until few are left.
-    Where a pass drops too little, because the intersection has very many sides, a larger sample and those
-    that cut deepest make one more pass, and the sides are found by local elimination (:mod:`~kernelscan.geometry.elimination`).
+    first. If nothing is left of it, nothing is left of all; so, too, for the first few, since walls that follow each
+    other often exclude each other. Else one pass drops every half-plane that holds what the sample leaves
+    (:mod:`~kernelscan.geometry.pruning`); the rest is sampled again, and so on until few are left. Where a pass drops
+    too little, because the intersection has very many sides, a larger sample and those that cut deepest make one
+    more pass, and the sides are found by local elimination (:mod:`~kernelscan.geometry.elimination`).
 Exactness
     Signs come from floats with proven bounds or else from integers, for the six doubles of each half-plane as they are
     stored. Corners are named by two half-planes and rounded once, at the end.
@@ -40,12 +40,13 @@ from kernelscan.geometry.pruning import HalfPlaneSource, Indices, Outline, RowSo
 __all__ = ["FEW", "Intersection", "Solution", "corners_of", "intersect", "solve"]
 
 FEW = 64
+FINISH = 200
 SAMPLE = 48
 LARGE_SAMPLE = 1024
 MANY = 8192
 VERY_MANY = 100_000
 HEADS = (16, 128, 1024)
-HEAD_SHARE = 64
+HEAD_SHARE = 1000
 GOLDEN = 0.6180339887498949
 
 
@@ -173,7 +174,7 @@ def _sampled(source: HalfPlaneSource, sample: Indices) -> Solution:
             return _eliminated(source, pool)
         before = len(source) if pool is None else len(pool)
         pool = _without(_survivors(source, pool, outline), region)
-        if len(pool) <= FEW or region.shape != "area":
+        if len(pool) <= FINISH or region.shape != "area":
             _cut(region, source, pool)
             break
         if 2 * len(pool) > before:

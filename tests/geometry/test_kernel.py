@@ -199,7 +199,7 @@ rooms = st.builds(
     st.integers(0, 10**6),
     st.sampled_from([on_grid, general, starlike, orthogonal, rotated]),
 )
-fair = settings(max_examples=50, deadline=None, suppress_health_check=[HealthCheck.too_slow])
+fair = settings(max_examples=40, deadline=None, suppress_health_check=[HealthCheck.too_slow])
 
 
 def corners(outline: np.ndarray) -> tuple[str, set]:
