@@ -152,9 +152,15 @@ def crossing_place(ring: Floats) -> tuple[float, float] | None:
 
 
 def overlap_areas(first: Sequence[Floats], second: Sequence[Floats]) -> tuple[Indices, Indices, Floats]:
-    """Return the pairs (i of the first, j of the second) of simple rings that overlap, and the area they share."""
-    ours, theirs = _polygons(first), _polygons(second)
+    """Return the pairs (i of the first, j of the second) of simple rings that overlap, and the area they share.
+
+    Where both are the same sequence, only pairs i < j are returned.
+    """
+    ours = _polygons(first)
+    theirs = ours if second is first else _polygons(second)
     i, j = shapely.STRtree(theirs).query(ours)
+    if second is first:
+        i, j = i[i < j], j[i < j]
     boxes, others = shapely.bounds(ours)[i], shapely.bounds(theirs)[j]
     shared = np.minimum(boxes[:, 2:], others[:, 2:]) - np.maximum(boxes[:, :2], others[:, :2])
     near = (shared > 0).all(axis=1)

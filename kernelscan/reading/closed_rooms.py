@@ -188,9 +188,7 @@ def _without_inner(outlines: Sequence[Outline]) -> tuple[list[Outline], list[Pro
 
 def _overlaps(outlines: Sequence[Outline]) -> tuple[np.ndarray, np.ndarray, np.ndarray]:
     rings = [outline.ring for outline in outlines]
-    first, second, shared = overlap_areas(rings, rings)
-    once = first < second
-    return first[once], second[once], shared[once]
+    return overlap_areas(rings, rings)
 
 
 def with_obstacles(

@@ -60,10 +60,12 @@ def _line(entity: Line, _chord: float) -> Iterator[Flat]:
 
 def _light_polyline(entity: LWPolyline, chord: float) -> Iterator[Flat]:
     table = np.array(entity.lwpoints.values, dtype=np.float64).reshape(-1, 5)
-    points = _bulged(table[:, :2], table[:, 4], entity.closed, chord)
-    level = entity.dxf.elevation if entity.dxf.hasattr("elevation") else 0.0
-    spatial = np.column_stack((points, np.full(len(points), level)))
-    yield _from_ocs(entity, spatial), bool(entity.closed)
+    closed = bool(entity.closed)
+    flat = _bulged(table[:, :2], table[:, 4], closed, chord)
+    spatial = np.empty((len(flat), 3))
+    spatial[:, :2] = flat
+    spatial[:, 2] = entity.dxf.elevation if entity.dxf.hasattr("elevation") else 0.0
+    yield _from_ocs(entity, spatial), closed
 
 
 def _old_polyline(entity: Polyline, chord: float) -> Iterator[Flat]:

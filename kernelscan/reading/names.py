@@ -56,9 +56,11 @@ def labels_in_rings(rings: Sequence[np.ndarray], labels: Sequence[Label], metres
     middles = np.array([label.middle for label in labels]) * metres
     starts = np.array([label.start for label in labels]) * metres
     sizes = np.abs(ring_areas(rings))
-    homes = _smallest_home(rings, sizes, starts) | _smallest_home(rings, sizes, middles)
-    for k, i in sorted(homes.items()):
-        found[i].append(labels[k])
+    homes = _smallest_home(rings, sizes, np.concatenate((middles, starts)))
+    for k, label in enumerate(labels):
+        home = homes.get(k, homes.get(k + len(labels)))
+        if home is not None:
+            found[home].append(label)
     return found
 
 

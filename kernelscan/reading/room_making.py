@@ -47,7 +47,8 @@ def made_rooms(
         own_layer = outline.stroke.layer if alone else ""
         x, y = outline.centre
         known = _openings(outline.ring, room.edges)
-        openings = with_drawn(known, drawn[number - 1], outline.ring, thickest)
+        more = drawn[number - 1]
+        openings = with_drawn(known, more, outline.ring, thickest) if more else known
         label = room_label(inside, (x / metres, y / metres))
         name, name_from = _name(number, label, own_layer)
         rooms.append(
@@ -63,7 +64,7 @@ def made_rooms(
                 closed_by=room.closed_by,
             )
         )
-        problems += _size_problems(rooms[-1], label, outline.centre)
+        problems += _size_problems(rooms[-1], label, (x, y))
     return tuple(rooms), problems
 
 
