@@ -15,10 +15,14 @@ from pathlib import Path
 HERE = Path(__file__).resolve().parent
 sys.path[:0] = [str(HERE), str(HERE.parent)]
 
-import cases
-import svgwrite
+import cases  # noqa: E402 - beside this file
+import svgwrite  # noqa: E402
 
 DOCS = HERE.parent.parent / "docs"
+HEAD = """Written by `tests/benchmarks/write_benchmarks.py`. Medians of runs in which all sides take turns in one
+process; in brackets how many times as long as ours. Our figure is the exact kernel of a ring already made; the others
+work in floats and are not checked. The numpy pass (edge vectors, cross product, comparison) finds nothing: it is the
+limit."""
 SIZES = (10, 30, 100, 300, 1000, 3000, 10_000, 30_000, 100_000, 300_000, 1_000_000)
 LARGEST = {"shapely clipping": 3000, "float deque": 100_000}
 CURVES = {
@@ -50,8 +54,10 @@ def setting() -> str:
 def row(case: cases.Case, times: dict[str, float]) -> str:
     ours = times["kernelscan"]
     cells = [f"{case.name} | {shown(ours)}"]
-    for name in list(cases.RIVALS)[1:]:
-        cells.append(f"{shown(times[name])} ({ratio(times[name] / ours)})" if name in times else "")
+    cells += [
+        f"{shown(times[name])} ({ratio(times[name] / ours)})" if name in times else ""
+        for name in list(cases.RIVALS)[1:]
+    ]
     reached = [
         f"{'yes' if times[name] / ours >= goal else 'NO'}: {goal_text(name, goal)}"
         for name, goal in case.goals.items()
@@ -151,13 +157,7 @@ def main() -> int:
     figure = DOCS / "figures" / "growth.svg"
     figure.parent.mkdir(exist_ok=True)
     plot(growth(), figure)
-    head = [
-        "# Benchmarks", "",
-        "Written by `tests/benchmarks/write_benchmarks.py`. Medians of runs in which all sides take turns in one process; in",
-        "brackets how many times as long as ours. Our figure is the exact kernel of a ring already made, the others' are in",
-        "floats and unchecked. The numpy pass (edge vectors, cross product, comparison) finds nothing: it is the limit.", "",
-        setting(), "",
-    ]  # fmt: skip
+    head = ["# Benchmarks", "", HEAD, "", setting(), ""]
     tail = ["", "![Time against n, both axes logarithmic](figures/growth.svg)", ""]
     (DOCS / "benchmarks.md").write_text("\n".join(head + lines + tail), encoding="utf-8", newline="\n")
     return 0
