@@ -195,7 +195,10 @@ def corner_places(room: Room, limits: Limits, smooth: float) -> Iterator[Place]:
 
 
 def _conditions(room: Room, limits: Limits, lines: Floats, walls: npt.NDArray[np.int64]) -> Conditions:
-    keep_out = [room.opening_ends(opening) for opening in room.openings if limits.from_openings > 0]
+    openings = [
+        opening for opening in room.openings if opening.kind != "feature" and limits.from_openings > 0
+    ]
+    keep_out = [room.opening_ends(opening) for opening in openings]
     margins = [limits.from_openings] * len(keep_out)
     for pattern, distance in limits.from_fixtures:
         for fixture in room.fixtures:

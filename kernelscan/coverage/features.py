@@ -197,7 +197,7 @@ def _openings(room: Room, steps: LeavingOut) -> Iterator[Opening]:
         if piece.joint is not None:
             edges = steps.walls.edges_between(piece.joint.a, piece.joint.b)
             left_out = (opening.kind for edge in edges for opening in openings if opening.wall.edge == edge)
-            yield Opening(wall, next(left_out, "gap"), length)
+            yield Opening(wall, next(left_out, "feature"), length)
         elif piece.edge is not None:
             low, high = (_place(steps.walls, piece.edge, each.start) for each in (piece, following))
             for opening in openings:

@@ -131,7 +131,7 @@ def test_pilaster():
 
 def test_no_device_is_offered_where_a_feature_was():
     plain = simplified(room(PILASTER), 0.2)
-    assert plain.room.openings == (Opening(WallRef(0, 1), "gap", pytest.approx(0.4)),)
+    assert plain.room.openings == (Opening(WallRef(0, 1), "feature", pytest.approx(0.4)),)
 
 
 def test_square_and_splayed_niche():
