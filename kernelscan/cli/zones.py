@@ -82,18 +82,17 @@ def _files(plan: "Plan", answers: Sequence["RoomAnswer"]) -> dict[str, bytes]:
     from kernelscan.report.document import report_text, zones_report
     from kernelscan.report.schedule import schedule_csv
 
-    zones = [answer.zones for answer in answers]
-    sheets = compose_zone_sheets(plan, zones, SheetOptions(date=date.today().isoformat()))
+    sheets = compose_zone_sheets(plan, answers, SheetOptions(date=date.today().isoformat()))
     return {
         "report.json": report_text(zones_report(plan, answers)).encode(),
         "schedule.csv": schedule_csv(plan, answers),
-        "markup.dxf": zones_dxf(plan, zones).encode(),
+        "markup.dxf": zones_dxf(plan, answers).encode(),
         **{f"sheet-{number:02}.svg": svg_text(sheet).encode() for number, sheet in enumerate(sheets, 1)},
     }
 
 
 def _print(plan: "Plan", answers: Sequence["RoomAnswer"], out: Path, outdated: Sequence[str]) -> None:
-    from kernelscan.coverage.cautions import CAUTIONS
+    from kernelscan.coverage.cautions import cautions_for
     from kernelscan.report.device_choices import print_device_choices
     from kernelscan.report.tables import print_problems, print_reasons, print_zones
 
@@ -104,4 +103,5 @@ def _print(plan: "Plan", answers: Sequence["RoomAnswer"], out: Path, outdated: S
     if outdated:
         print(f"Removed from an earlier run: {', '.join(outdated)}")
     print(f"Written to {out}: sheet-01.svg and on, schedule.csv, markup.dxf, report.json")
-    print("Caution: " + " ".join(CAUTIONS[:3]))
+    kinds = {each.device.kind: None for answer in answers for each in answer.devices}
+    print("Caution: " + " ".join(cautions_for(kinds)))

@@ -3,7 +3,7 @@
 from math import degrees
 
 from kernelscan.coverage.device_spots import DeviceAnswer, DeviceSpot
-from kernelscan.coverage.setting_out import SettingOut
+from kernelscan.coverage.setting_out import Offset, SettingOut
 from kernelscan.coverage.wall_names import face_name
 from kernelscan.coverage.wording import Custom
 from kernelscan.plan import Room
@@ -20,6 +20,9 @@ OBSTRUCTIONS = {
     "several": "more than one of its limits",
 }
 """Why a device does not cover a room, as a person says it."""
+
+ON_FACE = 5e-4
+"""Metres: a point nearer to a face than this is on it."""
 
 
 def aim_in_words(spot: DeviceSpot) -> str:
@@ -43,12 +46,14 @@ def shortfall_in_words(answer: DeviceAnswer) -> str:
 
 def set_out_in_words(room: Room, plan: SettingOut, custom: Custom) -> str:
     """Return the two setting-out distances, from named faces or from the corners where named walls begin."""
-    return ", ".join(
-        f"{_tape(offset.distance, custom)} from "
-        + ("" if plan.by == "faces" else "the first corner of ")
-        + face_name(room, offset.wall, custom)
-        for offset in plan.offsets
-    )
+    return ", ".join(_offset_in_words(room, plan, offset, custom) for offset in plan.offsets)
+
+
+def _offset_in_words(room: Room, plan: SettingOut, offset: Offset, custom: Custom) -> str:
+    face = face_name(room, offset.wall, custom)
+    if plan.by == "corners":
+        return f"{_tape(offset.distance, custom)} from the first corner of {face}"
+    return f"{_tape(offset.distance, custom)} from {face}" if offset.distance > ON_FACE else f"on {face}"
 
 
 def _tape(metres: float, custom: Custom) -> str:

@@ -2,7 +2,7 @@
 
 1. Papers are tried from small to large, each both ways round and with every arrangement of the blocks. On each, the
    largest usual scale is found at which all rooms fit with a margin for leaders; among the ways that give the same
-   scale, one that holds the whole schedule goes first, then the one with the largest space for the plan.
+   scale, the one that holds most of the schedule goes first, then the one with the largest space for the plan.
 2. Of the two smallest papers (A4 and A3, or letter and ANSI B: what an office printer takes) the first wins that
    is legible and holds the whole schedule. Legible is a scale at which a square room of the rooms' mean area is at
    least 30 mm across.
@@ -20,7 +20,7 @@ from math import ceil, inf
 import numpy as np
 
 from kernelscan.errors import InputError
-from kernelscan.markup.layout import Layout, arrangements
+from kernelscan.markup.layout import Blocks, Layout, arrangements
 from kernelscan.markup.options import SheetOptions
 from kernelscan.markup.paper import (
     ANSI_PAPERS,
@@ -63,12 +63,7 @@ class Choice:
 
 
 def chosen(
-    extent: Box,
-    rooms: Sequence[Room],
-    schedule: Schedule,
-    extra: Sequence[str],
-    options: SheetOptions,
-    imperial: bool,
+    extent: Box, rooms: Sequence[Room], blocks: Blocks, options: SheetOptions, imperial: bool
 ) -> Choice:
     """Return the sheets for a plan, by the rules at the head of this module.
 
@@ -76,10 +71,8 @@ def chosen(
     ----------
     extent
         The box around the plan, in metres.
-    rooms, schedule
+    rooms, blocks
         What is to be shown.
-    extra
-        Paragraphs after the cautions.
     options
         Paper and scale, where they are given.
     imperial
@@ -93,23 +86,19 @@ def chosen(
     asked = scale_by_text(options.scale) if options.scale else None
     width = float(np.sqrt(np.mean([room.area for room in rooms]))) if rooms else inf
     least = LEGIBLE / width
-    found = [
-        _best_on(paper, extent, schedule, extra, asked, imperial) for paper in _papers(options, imperial)
-    ]
+    found = [_best_on(paper, extent, blocks, asked, imperial) for paper in _papers(options, imperial)]
     fitting = [each for each in found if each is not None]
     good = [each for each in fitting if asked or each.scale.mm_per_metre >= least]
-    handy = [each for each in fitting[:2] if each in good and schedule.fits(each.layout.schedule)]
+    handy = [each for each in fitting[:2] if each in good and blocks.schedule.fits(each.layout.schedule)]
     if handy or good:
         return (handy or good)[0]
-    overviews = [
-        _best_on(paper, extent, schedule, extra, None, imperial) for paper in _papers(options, imperial)
-    ]
+    overviews = [_best_on(paper, extent, blocks, None, imperial) for paper in _papers(options, imperial)]
     overview = min(filter(None, overviews), key=lambda choice: choice.scale.denominator, default=None)
     if overview is None:
         raise InputError(f"paper: {options.paper} has no room for the plan beside its title block")
     if asked:
-        return replace(overview, parts=_asked_parts(overview.layout.paper, extent, schedule, extra, asked))
-    return replace(overview, parts=_legible_parts(overview, extent, schedule, extra, least, imperial))
+        return replace(overview, parts=_asked_parts(overview.layout.paper, extent, blocks, asked))
+    return replace(overview, parts=_legible_parts(overview, extent, blocks, least, imperial))
 
 
 def _papers(options: SheetOptions, imperial: bool) -> tuple[Paper, ...]:
@@ -118,25 +107,24 @@ def _papers(options: SheetOptions, imperial: bool) -> tuple[Paper, ...]:
     return ANSI_PAPERS if imperial else ISO_PAPERS
 
 
-def _best_on(
-    paper: Paper, extent: Box, schedule: Schedule, extra: Sequence[str], asked: Scale | None, imperial: bool
-) -> Choice | None:
+def _best_on(paper: Paper, extent: Box, blocks: Blocks, asked: Scale | None, imperial: bool) -> Choice | None:
     """Return the best choice on one paper, or ``None`` where the scale that was asked for does not fit it."""
     size = (extent.width, extent.height)
     layouts = [
         layout
         for turned in (paper, paper.turned)
-        for layout in arrangements(turned, schedule, extra)
+        for layout in arrangements(turned, blocks)
         if min(layout.space) > 0
     ]
     choices = [Choice(layout, asked or largest_scale(size, layout.space, imperial)) for layout in layouts]
     fitting = [choice for choice in choices if _fits(size, choice)]
-    return min(fitting, key=lambda choice: _merit(choice, schedule)) if fitting else None
+    return min(fitting, key=lambda choice: _merit(choice, blocks.schedule)) if fitting else None
 
 
-def _merit(choice: Choice, schedule: Schedule) -> tuple[float, bool, float]:
+def _merit(choice: Choice, schedule: Schedule) -> tuple[float, int, float]:
     plan = choice.layout.plan
-    return choice.scale.denominator, not schedule.fits(choice.layout.schedule), -plan.width * plan.height
+    held = schedule.fitting(0, choice.layout.schedule.height)
+    return choice.scale.denominator, -held, -plan.width * plan.height
 
 
 def _fits(size: tuple[float, float], choice: Choice) -> bool:
@@ -144,8 +132,8 @@ def _fits(size: tuple[float, float], choice: Choice) -> bool:
     return all(each * mm <= room + 1e-9 for each, room in zip(size, choice.layout.space, strict=True))
 
 
-def _asked_parts(paper: Paper, extent: Box, schedule: Schedule, extra: Sequence[str], scale: Scale) -> Parts:
-    parts = _fewest_parts(paper, extent, schedule, extra, scale)
+def _asked_parts(paper: Paper, extent: Box, blocks: Blocks, scale: Scale) -> Parts:
+    parts = _fewest_parts(paper, extent, blocks, scale)
     if _sheets(parts) > MOST_PARTS:
         raise InputError(
             f"scale: at {scale.text} the plan ({extent.width:.1f} by {extent.height:.1f} m) needs {_sheets(parts)} "
@@ -155,32 +143,30 @@ def _asked_parts(paper: Paper, extent: Box, schedule: Schedule, extra: Sequence[
 
 
 def _legible_parts(
-    overview: Choice, extent: Box, schedule: Schedule, extra: Sequence[str], least: float, imperial: bool
+    overview: Choice, extent: Box, blocks: Blocks, least: float, imperial: bool
 ) -> Parts | None:
     """Return parts at the smallest legible scale, or at the next smaller ones until they are few; else none."""
     larger = takewhile(lambda scale: scale.denominator < overview.scale.denominator, usual_scales(imperial))
     scales = list(larger)
     legible = sum(scale.mm_per_metre >= least for scale in scales)
     for scale in scales[max(legible - 1, 0) :]:
-        parts = _fewest_parts(overview.layout.paper, extent, schedule, extra, scale)
+        parts = _fewest_parts(overview.layout.paper, extent, blocks, scale)
         if _sheets(parts) <= MOST_PARTS_UNASKED:
             return parts
     return None
 
 
-def _fewest_parts(paper: Paper, extent: Box, schedule: Schedule, extra: Sequence[str], scale: Scale) -> Parts:
-    return min(_divisions(paper, extent, schedule, extra, scale), key=_sheets)
+def _fewest_parts(paper: Paper, extent: Box, blocks: Blocks, scale: Scale) -> Parts:
+    return min(_divisions(paper, extent, blocks, scale), key=_sheets)
 
 
 def _sheets(parts: Parts) -> int:
     return parts.columns * parts.rows
 
 
-def _divisions(
-    paper: Paper, extent: Box, schedule: Schedule, extra: Sequence[str], scale: Scale
-) -> Iterator[Parts]:
+def _divisions(paper: Paper, extent: Box, blocks: Blocks, scale: Scale) -> Iterator[Parts]:
     for turned in (paper, paper.turned):
-        for layout in arrangements(turned, schedule, extra):
+        for layout in arrangements(turned, blocks):
             if min(layout.space) > 0:
                 width, height = (room / scale.mm_per_metre for room in layout.space)
                 yield Parts(

@@ -10,14 +10,14 @@ from math import atan2, cos, dist, pi, sin
 
 import numpy as np
 
-from kernelscan.coverage import RoomZones, Spot
 from kernelscan.coverage.setting_out import setting_out
 from kernelscan.coverage.wording import Custom
-from kernelscan.markup.drawing import wall_normal
 from kernelscan.markup.placing import Occupied
 from kernelscan.markup.scene import Fill, Item, Point, Stroke, Text
+from kernelscan.markup.shown import ShownRoom, ShownSpot, wall_normal
 from kernelscan.markup.style import BLACK, BODY, DIMENSION_PEN, WHITE
 from kernelscan.markup.view import PlanView
+from kernelscan.plan import Room
 from kernelscan.units import feet_and_inches
 
 __all__ = ["Dimension", "Length", "dimensions_on_paper", "lengths_to_set_out"]
@@ -44,20 +44,21 @@ class Length:
     away: np.ndarray | None
 
 
-def lengths_to_set_out(zones: RoomZones) -> tuple[Length, ...]:
-    """Return the lengths by which a fitter finds the recommended points of a room; a corner needs none."""
+def lengths_to_set_out(shown: ShownRoom) -> tuple[Length, ...]:
+    """Return the lengths by which a fitter finds the marked points of a room; a corner needs none."""
+    room = shown.basis.room
     return tuple(
-        Length(offset.start, spot.point, _away(zones, spot, offset.start))
-        for spot in zones.recommended
-        for offset in setting_out(zones.room, spot.point, spot.walls).offsets
+        Length(offset.start, spot.point, _away(room, spot, offset.start))
+        for spot in shown.spots
+        for offset in setting_out(room, spot.point, spot.walls).offsets
         if offset.distance > SHORTEST
     )
 
 
-def _away(zones: RoomZones, spot: Spot, start: np.ndarray) -> np.ndarray | None:
+def _away(room: Room, spot: ShownSpot, start: np.ndarray) -> np.ndarray | None:
     """Return the direction out of the room for a length that runs along the wall of its point."""
     for wall in spot.walls:
-        normal = wall_normal(zones.room, wall)
+        normal = wall_normal(room, wall)
         if abs(float((start - spot.point) @ normal)) < SHORTEST:
             return -normal
     return None

@@ -1,21 +1,27 @@
-"""The plan on the sheet: pale linework, rooms, zones by kind, and the walls that leave a room without a point."""
+"""The plan on the sheet: pale linework, rooms, zones by kind, small features, and what leaves a room without one."""
 
 from collections.abc import Iterable, Iterator, Sequence
 from math import dist, sqrt
 
 import numpy as np
 
-from kernelscan.coverage import CornerZone, FloorZone, Mount, RoomZones, WallZone
+from kernelscan.coverage import WallZone
 from kernelscan.geometry import shapes
 from kernelscan.markup.hatching import hatch_lines
 from kernelscan.markup.scene import Box, Fill, Hatch, Item, Pen, Point, Stroke, points_of
+from kernelscan.markup.shown import Nook, ShownArea, ShownRoom, wall_normal
 from kernelscan.markup.style import (
     ARROW_PEN,
     BLACK,
-    CEILING_EDGE_PEN,
     CONFLICT_PEN,
     CORNER_RADIUS,
-    DEGENERATE_PEN,
+    FEATURE_ANGLES,
+    FEATURE_EDGE_PEN,
+    FEATURE_PEN,
+    FEATURE_SPACING,
+    HIDDEN_ANGLE,
+    HIDDEN_PEN,
+    HIDDEN_SPACING,
     LINEWORK_PEN,
     MARKS,
     OBSTACLE_INK,
@@ -25,20 +31,21 @@ from kernelscan.markup.style import (
     WALL_BAND,
     ZONE_EDGE_PEN,
 )
-from kernelscan.markup.symbols import sector
+from kernelscan.markup.symbols import sector, spot_symbol, tried_symbol
 from kernelscan.markup.view import PlanView, clipped_polyline, thinned
-from kernelscan.plan import Room, WallRef
+from kernelscan.plan import Fixing, Room, WallRef
 
 __all__ = [
     "band_ring",
     "conflict_items",
-    "conflict_walls",
     "corner_rings",
+    "feature_items",
+    "hidden_items",
     "linework_items",
     "obstacle_items",
     "outline_items",
+    "point_items",
     "seeing_arrow",
-    "wall_normal",
     "zone_items",
 ]
 
@@ -70,28 +77,53 @@ def outline_items(room: Room, view: PlanView) -> Iterator[Item]:
     yield Stroke(view.ring(room.outline), ROOM_PEN, closed=True)
 
 
-def zone_items(zones: RoomZones, view: PlanView) -> Iterator[Item]:
-    """Yield the zones of a room: the ceiling's first, the walls' and the corners' over it."""
-    if zones.ceiling is not None:
-        yield from _ceiling(zones.ceiling, view)
+def zone_items(room: ShownRoom, view: PlanView) -> Iterator[Item]:
+    """Yield the zones of a room: those in plan first, the walls' and the corners' over them."""
+    for area in room.areas:
+        yield from _area(area, view)
     width = WALL_BAND / view.scale.mm_per_metre
     bands, ticks = [], []
-    for wall in zones.walls:
-        ring = view.ring(band_ring(zones.room, wall, width))
+    for wall in room.stretches:
+        ring = view.ring(band_ring(room.basis.room, wall, width))
         if wall.length > width / 2:
             bands.append(ring)
         else:
             ticks.append(Stroke((ring[0], ring[-1]), ROOM_PEN))
     yield from _hatched("wall", bands)
     yield from ticks
-    yield from _hatched(
-        "corner", [ring for corner in zones.corners for ring in corner_rings(zones.room, corner, view)]
-    )
+    nooks = [ring for nook in room.nooks for ring in corner_rings(room.basis.room, nook, view)]
+    yield from _hatched("corner", nooks)
 
 
-def _hatched(mount: Mount, rings: Sequence[tuple[Point, ...]]) -> Iterator[Item]:
+def feature_items(room: ShownRoom, view: PlanView) -> Iterator[Item]:
+    """Yield the small features that were left out: a cross hatch, and a dashed border."""
+    for _, feature in room.features:
+        ring = view.to_paper(feature.ring)
+        for angle in FEATURE_ANGLES:
+            yield Hatch(hatch_lines([ring], angle, FEATURE_SPACING), FEATURE_PEN)
+        yield Stroke(points_of(ring), FEATURE_EDGE_PEN, closed=True)
+
+
+def hidden_items(room: ShownRoom, view: PlanView) -> Iterator[Item]:
+    """Yield the floor that the best point tried does not see."""
+    for patch in () if room.tried is None else room.tried.hidden.patches:
+        rings = [view.to_paper(ring) for ring in (patch.outline, *patch.holes)]
+        yield Hatch(hatch_lines(rings, HIDDEN_ANGLE, HIDDEN_SPACING), HIDDEN_PEN)
+        for ring in rings:
+            yield Stroke(points_of(ring), HIDDEN_PEN, closed=True)
+
+
+def point_items(room: ShownRoom, view: PlanView) -> Iterator[Item]:
+    """Yield the symbols of a room: its points, and the best point tried where there is none."""
+    for spot in room.spots:
+        yield from spot_symbol(spot, view.point(spot.point))
+    if room.tried is not None:
+        yield from tried_symbol(view.point(room.tried.best.point))
+
+
+def _hatched(fixing: Fixing, rings: Sequence[tuple[Point, ...]]) -> Iterator[Item]:
     """Yield areas with the hatch of their kind, one hatch for all, and their borders."""
-    mark = MARKS[mount]
+    mark = MARKS[fixing]
     lines = tuple(line for ring in rings for line in hatch_lines([np.array(ring)], mark.angle, mark.spacing))
     if lines:
         yield Hatch(lines, mark.hatch_pen)
@@ -99,25 +131,19 @@ def _hatched(mount: Mount, rings: Sequence[tuple[Point, ...]]) -> Iterator[Item]
         yield Stroke(ring, ZONE_EDGE_PEN, closed=True)
 
 
-def _ceiling(zone: FloorZone, view: PlanView) -> Iterator[Item]:
-    mark, on_paper = MARKS["ceiling"], view.to_paper(zone.vertices)
-    ring = view.ring(zone.vertices)
-    if len(ring) >= 3:
-        yield Hatch(hatch_lines([on_paper], mark.angle, mark.spacing), mark.hatch_pen)
-        yield Stroke(ring, CEILING_EDGE_PEN, closed=True)
-    elif len(ring) == 2:
-        yield Stroke(ring, DEGENERATE_PEN)
+def _area(area: ShownArea, view: PlanView) -> Iterator[Item]:
+    mark = MARKS[area.fixing]
+    rings = [view.ring(ring) for ring in area.rings]
+    if len(rings[0]) >= 3:
+        yield Hatch(hatch_lines([np.array(ring) for ring in rings], mark.angle, mark.spacing), mark.hatch_pen)
+        for ring in rings:
+            yield Stroke(ring, mark.edge_pen, closed=True)
+    elif len(rings[0]) == 2:
+        yield Stroke(rings[0], mark.line_pen)
     else:
-        (x, y), arm = ring[0], 1.5 * WALL_BAND
+        (x, y), arm = rings[0][0], 1.5 * WALL_BAND
         yield Stroke(((x - arm, y - arm), (x + arm, y + arm)), ZONE_EDGE_PEN)
         yield Stroke(((x - arm, y + arm), (x + arm, y - arm)), ZONE_EDGE_PEN)
-
-
-def wall_normal(room: Room, wall: WallRef) -> np.ndarray:
-    """Return the unit vector ``(2,)`` from a wall into its room: to the left of the ring's direction."""
-    start, end = room.wall_ends(wall)
-    along = (end - start) / np.hypot(*(end - start))
-    return np.array([-along[1], along[0]])
 
 
 def band_ring(room: Room, zone: WallZone, width: float) -> np.ndarray:
@@ -130,32 +156,24 @@ def band_ring(room: Room, zone: WallZone, width: float) -> np.ndarray:
     return np.concatenate([zone.path, (zone.path + width * means)[::-1]])
 
 
-def corner_rings(room: Room, zone: CornerZone, view: PlanView) -> Iterator[tuple[Point, ...]]:
+def corner_rings(room: Room, nook: Nook, view: PlanView) -> Iterator[tuple[Point, ...]]:
     """Yield the sector that shows a corner zone, smaller in a room that is small on paper, as far as it is inside."""
     across = sqrt(room.area) * view.scale.mm_per_metre
     radius = min(CORNER_RADIUS, max(SYMBOL_RADIUS + 0.8, across / 7))
-    spot = zone.spot
-    ring = sector(view.point(spot.point), radius, spot.bearing, spot.field_of_view)
+    ring = sector(view.point(nook.point), radius, nook.bearing, nook.field)
     outline, *holes = (view.to_paper(each) for each in room.rings)
     for piece in shapes.intersection(shapes.Patch(np.array(ring), ()), shapes.Patch(outline, tuple(holes))):
         yield points_of(np.asarray(piece.outline))
 
 
-def conflict_walls(zones: RoomZones) -> tuple[WallRef, ...]:
-    """Return the two or three walls that exclude each other; none where a point sees every wall."""
-    if zones.kernel.kind != "empty":
-        return ()
-    return tuple(WallRef(int(ring), int(edge)) for ring, edge in zones.kernel.conflict)
-
-
-def conflict_items(zones: RoomZones, view: PlanView) -> Iterator[Item]:
+def conflict_items(room: ShownRoom, view: PlanView) -> Iterator[Item]:
     """Yield the walls that exclude each other, heavy and dashed, each with an arrow to its seeing side."""
-    for wall in conflict_walls(zones):
-        start, end = zones.room.wall_ends(wall)
+    for wall in room.conflict:
+        start, end = room.basis.room.wall_ends(wall)
         ends = view.ring(np.array([start, end]))
         short = dist(*ends) < SHORT_WALL
         yield Stroke(ends, Pen(CONFLICT_PEN.width) if short else CONFLICT_PEN)
-        yield from _arrow(*seeing_arrow(zones.room, wall, view))
+        yield from _arrow(*seeing_arrow(room.basis.room, wall, view))
 
 
 def seeing_arrow(room: Room, wall: WallRef, view: PlanView) -> tuple[Point, Point]:

@@ -8,14 +8,25 @@ from dataclasses import dataclass
 from math import cos, degrees, sin
 from typing import TYPE_CHECKING
 
-from kernelscan.coverage import Mount, Spot
+from kernelscan.markup.shown import ShownSpot
 from kernelscan.markup.style import BLACK, MARKS, PALE
 
 if TYPE_CHECKING:
     from ezdxf.document import Drawing
     from ezdxf.layouts.blocklayout import BlockLayout
 
-__all__ = ["LAYERS", "PREFIX", "Sizes", "block_of", "set_up"]
+__all__ = [
+    "DEVICE_FIELDS",
+    "LAYERS",
+    "POINT_FIELDS",
+    "PREFIX",
+    "TRIED_FIELDS",
+    "Fields",
+    "Sizes",
+    "block_of",
+    "set_up",
+    "tried_block",
+]
 
 PREFIX = "A-KSCN"
 
@@ -25,15 +36,25 @@ LAYERS: dict[str, tuple[str, int, str]] = {
     "CEIL": (MARKS["ceiling"].ink, 25, "ceiling zones"),
     "WALL": (MARKS["wall"].ink, 25, "wall zones"),
     "CORN": (MARKS["corner"].ink, 25, "corner zones"),
+    "STND": (MARKS["floor"].ink, 25, "zones of stands on the floor"),
     "PNTS": (BLACK, 35, "recommended points"),
+    "DEVC": (BLACK, 35, "devices at their points, and their aims"),
     "CNFL": (BLACK, 100, "walls that exclude each other"),
+    "HIDN": (BLACK, 25, "best points tried where none sees every wall, and the floor they miss"),
+    "FEAT": (BLACK, 18, "small features that were left out"),
     "TEXT": (BLACK, 18, "tags"),
 }
 """Minor group of each layer: ink, line weight in hundredths of a millimetre, description."""
 
 DASHED = "KSCN-DASHED"
-FIELDS = ("TAG", "ROOM", "NAME", "FIELD", "RANGE", "TOLERANCE")
-"""Attributes of a recommended point."""
+Fields = tuple[str, ...]
+POINT_FIELDS: Fields = ("TAG", "ROOM", "NAME", "FIELD", "RANGE", "TOLERANCE")
+DEVICE_FIELDS: Fields = (
+    "TAG", "ROOM", "NAME", "DEVICE", "KIND", "FIXING", "FIELD", "AIM", "TILT", "HEIGHT", "RANGE", "DENSITY",
+    "TOLERANCE", "SETOUT", "REMARK",
+)  # fmt: skip
+TRIED_FIELDS: Fields = ("TAG", "ROOM", "NAME", "REMARK")
+"""Attributes of a recommended point, of a device and of a best point tried; all but the tag are hidden."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -44,6 +65,7 @@ class Sizes:
     symbol: float = 0.22
     band: float = 0.18
     corner: float = 0.50
+    aim: float = 0.80
     dash: float = 0.30
 
 
@@ -61,19 +83,32 @@ def set_up(drawing: "Drawing", prefix: str, metre: float) -> None:
     drawing.layers.get(f"{prefix}-CNFL").dxf.linetype = DASHED
 
 
-def block_of(drawing: "Drawing", spot: Spot, metre: float) -> str:
+def block_of(drawing: "Drawing", spot: ShownSpot, metre: float, fields: Fields) -> str:
     """Return the name of the block for a spot, made when it is first asked for: one for each field of view."""
-    field = round(degrees(spot.field_of_view))
-    name = f"KSCN-{spot.mount.upper()}" + (f"-{field:03}" if spot.mount == "corner" else "")
+    angle = round(degrees(spot.field))
+    name = "KSCN-" + ("DEVICE-" if fields is DEVICE_FIELDS else "") + MARKS[spot.fixing].word.upper()
+    name += f"-{angle:03}" if spot.fixing == "corner" else ""
     if name not in drawing.blocks:
-        _fill_block(drawing.blocks.new(name), spot.mount, spot.field_of_view, metre)
+        block = drawing.blocks.new(name)
+        _draw_sector(block, spot.bearing is None, spot.field, metre)
+        _define(block, fields, metre)
     return name
 
 
-def _fill_block(block: "BlockLayout", mount: Mount, field: float, metre: float) -> None:
+def tried_block(drawing: "Drawing", metre: float) -> str:
+    """Return the name of the block for a best point tried: a square on its corner."""
+    if "KSCN-TRIED" not in drawing.blocks:
+        block, radius = drawing.blocks.new("KSCN-TRIED"), Sizes().symbol * metre
+        block.add_lwpolyline([(radius, 0), (0, radius), (-radius, 0), (0, -radius)], close=True)
+        block.add_point((0, 0))
+        _define(block, TRIED_FIELDS, metre)
+    return "KSCN-TRIED"
+
+
+def _draw_sector(block: "BlockLayout", all_round: bool, field: float, metre: float) -> None:
     """Draw a symbol about the origin, its bearing along x, on layer 0, so that it takes the layer it is put on."""
     for radius in (Sizes().symbol * metre, 0.45 * Sizes().symbol * metre):
-        if mount == "ceiling":
+        if all_round:
             block.add_circle((0, 0), radius)
         else:
             half = field / 2
@@ -81,9 +116,13 @@ def _fill_block(block: "BlockLayout", mount: Mount, field: float, metre: float) 
             block.add_line((0, 0), (radius * cos(half), -radius * sin(half)))
             block.add_line((0, 0), (radius * cos(half), radius * sin(half)))
     block.add_point((0, 0))
+
+
+def _define(block: "BlockLayout", fields: Fields, metre: float) -> None:
+    """Give a block its attributes, beside the symbol and one under the other."""
     from ezdxf.enums import TextEntityAlignment
 
-    for i, name in enumerate(FIELDS):
+    for i, name in enumerate(fields):
         height = Sizes().text * metre
         place = (Sizes().symbol * metre + height, -i * 1.7 * height)
         hidden = {} if i == 0 else {"flags": 1}

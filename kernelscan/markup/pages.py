@@ -4,21 +4,24 @@ from collections import Counter
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
-from kernelscan.coverage import RoomZones
+from kernelscan.coverage.cautions import cautions_for
 from kernelscan.coverage.wording import Custom
-from kernelscan.markup.layout import Layout, schedule_layout
-from kernelscan.markup.legend import caution_items, legend_items
+from kernelscan.markup.device_schedule import device_schedule
+from kernelscan.markup.layout import Blocks, Layout, schedule_layout
+from kernelscan.markup.legend import Legend, caution_items, legend_of
 from kernelscan.markup.options import SheetOptions
 from kernelscan.markup.paper import Paper, Scale
+from kernelscan.markup.room_schedule import room_schedule
 from kernelscan.markup.scene import Box, Group, Item, Scene, Stroke
 from kernelscan.markup.schedule import Entry, Schedule
+from kernelscan.markup.shown import ShownRoom
 from kernelscan.markup.style import FRAME_PEN, RULE_PEN
 from kernelscan.markup.text import clean_text
 from kernelscan.markup.titleblock import SheetNumber, title_block
 from kernelscan.plain_text import plain_text
 from kernelscan.plan import Plan
 
-__all__ = ["Page", "about_the_drawing", "finished", "legend_group", "schedule_group", "schedule_pages"]
+__all__ = ["Page", "blocks_of", "finished", "legend_group", "paragraphs", "schedule_group", "schedule_pages"]
 
 COLUMN_GAP = 4.0
 """Between two columns of a schedule sheet, in millimetres."""
@@ -33,40 +36,68 @@ class Page:
     groups: tuple[Group, ...]
 
 
+def blocks_of(rooms: Sequence[ShownRoom], custom: Custom, cautions: tuple[str, ...]) -> Blocks:
+    """Return what the blocks beside a plan of some rooms hold."""
+    with_devices = any(room.answer.devices for room in rooms)
+    schedule = device_schedule(rooms, custom) if with_devices else room_schedule(rooms, custom)
+    return Blocks(schedule, legend_of(rooms, custom), cautions)
+
+
 def finished(
-    plan: Plan, options: SheetOptions, pages: Sequence[Page], extra: Sequence[str]
+    plan: Plan, options: SheetOptions, pages: Sequence[Page], cautions: Sequence[str]
 ) -> tuple[Scene, ...]:
     """Return the pages as numbered sheets."""
     return tuple(
         _sheet(
-            plan, options, page, extra, SheetNumber(number, len(pages), page.layout.paper.name, page.scale)
+            plan, options, page, cautions, SheetNumber(number, len(pages), page.layout.paper.name, page.scale)
         )
         for number, page in enumerate(pages, 1)
     )
 
 
-def legend_group(layout: Layout, scale: Scale, custom: Custom) -> Group:
+def legend_group(legend: Legend, layout: Layout, scale: Scale, custom: Custom) -> Group:
     """Return the scale bar and the legend."""
-    return Group("legend", tuple(legend_items(layout.legend, scale, custom.imperial)))
+    return Group("legend", tuple(legend.items(layout.legend, scale, custom.imperial)))
 
 
-def schedule_pages(schedule: Schedule, first: Layout, extra: Sequence[str]) -> Iterator[Page]:
+def schedule_pages(blocks: Blocks, first: Layout) -> Iterator[Page]:
     """Yield the sheets that carry what of the schedule the first sheet does not hold."""
-    layout = schedule_layout(first.paper, extra)
+    schedule, layout = blocks.schedule, schedule_layout(first.paper, blocks.cautions)
     for columns in _pages(schedule, schedule.fitting(0, first.schedule.height), layout):
         yield Page(layout, "none", (schedule_group(schedule, layout.schedule, columns),))
 
 
-def about_the_drawing(plan: Plan, answers: Sequence[RoomZones]) -> tuple[str, ...]:
-    """Return what must be said of this drawing in particular."""
-    lines = [f"How rooms were found: {plain_text(plan.room_rule, 400)}"] if plan.room_rule else []
-    if not answers:
+def paragraphs(plan: Plan, rooms: Sequence[ShownRoom]) -> tuple[str, ...]:
+    """Return the cautions for these rooms' devices, and what must be said of this drawing in particular."""
+    kinds = {each.device.kind: None for room in rooms for each in room.answer.devices}
+    lines = [*cautions_for(kinds), *_about_the_answers(rooms, Custom(plan.unit.imperial))]
+    if plan.room_rule:
+        lines.append(f"How rooms were found: {plain_text(plan.room_rule, 400)}")
+    if not rooms:
         lines.append("No closed room was found in this drawing: nothing is marked.")
     met = Counter(clean_text(problem.code) for problem in plan.problems)
     if met:
-        kinds = ", ".join(f"{code} ({count})" for code, count in sorted(met.items()))
-        lines.append(f"Met in the drawing, and told in the report: {kinds}.")
+        found = ", ".join(f"{code} ({count})" for code, count in sorted(met.items()))
+        lines.append(f"Met in the drawing, and told in the report: {found}.")
     return tuple(lines)
+
+
+def _about_the_answers(rooms: Sequence[ShownRoom], custom: Custom) -> Iterator[str]:
+    """Yield whose zones are hatched, and what was left out of the rooms for them."""
+    simplified = [room.answer.tolerant.simplified for room in rooms if room.answer.tolerant is not None]
+    if simplified:
+        none = sum(room.answer.zones.kernel.kind == "empty" for room in rooms)
+        unit = "" if custom.imperial else " mm"
+        yield (
+            f"Small features up to {custom.tolerance_down(simplified[0].depth)}{unit} left out: "
+            f"{sum(len(each.features) for each in simplified)} of them. Zones and points are those of the rooms "
+            f"without them; exact answer: no single point in {none} of {len(rooms)} rooms. The schedule has both."
+        )
+    if any(len(room.answer.devices) > 1 for room in rooms):
+        yield (
+            "Of several devices the zones of the cheapest that covers the room are hatched, or of the first where none "
+            "has a cost; each device's point is at the first of its fixings that covers the room."
+        )
 
 
 def _pages(schedule: Schedule, first: int, layout: Layout) -> list[list[Sequence[Entry]]]:
@@ -91,7 +122,9 @@ def schedule_group(schedule: Schedule, space: Box, columns: Sequence[Sequence[En
     return Group("schedule", tuple(items))
 
 
-def _sheet(plan: Plan, options: SheetOptions, page: Page, extra: Sequence[str], sheet: SheetNumber) -> Scene:
+def _sheet(
+    plan: Plan, options: SheetOptions, page: Page, cautions: Sequence[str], sheet: SheetNumber
+) -> Scene:
     file, layout = clean_text(plan.file), page.layout
     return Scene(
         layout.paper.width,
@@ -100,7 +133,7 @@ def _sheet(plan: Plan, options: SheetOptions, page: Page, extra: Sequence[str], 
         f"Plan view with mount zones, schedule of rooms and cautions; {sheet.paper}, scale {sheet.scale}.",
         (
             *page.groups,
-            Group("cautions", tuple(caution_items(layout.cautions, extra))),
+            Group("cautions", tuple(caution_items(layout.cautions, cautions))),
             Group("title-block", title_block(layout.title, plan, options, sheet)),
             Group("frame", tuple(_frame(layout.paper, layout.plan))),
         ),

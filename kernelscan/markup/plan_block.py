@@ -7,23 +7,25 @@ from math import pi
 
 import numpy as np
 
-from kernelscan.coverage import RoomZones
 from kernelscan.coverage.wording import Custom
 from kernelscan.markup.choice import Parts
 from kernelscan.markup.clipping import clipped
 from kernelscan.markup.drawing import (
     conflict_items,
+    feature_items,
+    hidden_items,
     linework_items,
     obstacle_items,
     outline_items,
+    point_items,
     zone_items,
 )
 from kernelscan.markup.labels import Label, Line
 from kernelscan.markup.layout import CAPTION, Layout
 from kernelscan.markup.paper import Scale
 from kernelscan.markup.scene import Box, Group, Item, Point, Stroke, Text
+from kernelscan.markup.shown import ShownRoom
 from kernelscan.markup.style import BODY, HEADING, MATCH_PEN
-from kernelscan.markup.symbols import spot_symbol
 from kernelscan.markup.tags import Tags, number_tags, placed_tags
 from kernelscan.markup.text import cut_to
 from kernelscan.markup.view import PlanView
@@ -88,30 +90,35 @@ def view_of(layout: Layout, scale: Scale, shown: Box) -> PlanView:
 
 
 def plan_groups(
-    plan: Plan, answers: Sequence[RoomZones], layout: Layout, scale: Scale, extent: Box, custom: Custom
+    plan: Plan, rooms: Sequence[ShownRoom], layout: Layout, scale: Scale, extent: Box, custom: Custom
 ) -> Iterator[Group]:
     """Yield the whole plan from back to front."""
     view = view_of(layout, scale, extent)
-    tags = placed_tags(answers, view, custom)
+    tags = placed_tags(rooms, view, custom)
     yield Group("linework", tuple(linework_items(plan.linework, view, view.box)))
-    yield from room_groups(answers, view, tags)
-    words = f"Plan, {scale.text} on {layout.paper.name}"
+    yield from room_groups(rooms, view, tags)
+    words = f"Plan, {scale.text} on {layout.paper.name}{_left_out(rooms)}"
     yield Group("caption", (caption(layout, words, tags),))
 
 
 def room_groups(
-    answers: Sequence[RoomZones], view: PlanView, tags: Tags, setting_out: tuple[Item, ...] = ()
+    rooms: Sequence[ShownRoom], view: PlanView, tags: Tags, setting_out: tuple[Item, ...] = ()
 ) -> Iterator[Group]:
     """Yield rooms and all that is marked in them, from back to front; dimensions lie under the points."""
-    rooms = [zones.room for zones in answers]
-    yield Group("zones", tuple(item for zones in answers for item in zone_items(zones, view)))
-    yield Group("obstacles", tuple(item for room in rooms for item in obstacle_items(room, view)))
-    yield Group("rooms", tuple(item for room in rooms for item in outline_items(room, view)))
-    yield Group("conflicts", tuple(item for zones in answers for item in conflict_items(zones, view)))
+    yield Group("hidden", tuple(item for room in rooms for item in hidden_items(room, view)))
+    yield Group("zones", tuple(item for room in rooms for item in zone_items(room, view)))
+    yield Group("obstacles", tuple(item for room in rooms for item in obstacle_items(room.room, view)))
+    yield Group("rooms", tuple(item for room in rooms for item in outline_items(room.room, view)))
+    yield Group("features", tuple(item for room in rooms for item in feature_items(room, view)))
+    yield Group("conflicts", tuple(item for room in rooms for item in conflict_items(room, view)))
     yield Group("setting-out", setting_out)
-    spots = [spot for zones in answers for spot in zones.recommended]
-    yield Group("points", tuple(item for spot in spots for item in spot_symbol(spot, view.point(spot.point))))
+    yield Group("points", tuple(item for room in rooms for item in point_items(room, view)))
     yield Group("tags", tuple(item for tag in tags.placements for item in tag.items()))
+
+
+def _left_out(rooms: Sequence[ShownRoom]) -> str:
+    """That small features are left out on a plan, if any are."""
+    return ", without the small features F1 and on" if any(room.features for room in rooms) else ""
 
 
 def caption(layout: Layout, words: str, tags: Tags) -> Text:
@@ -123,15 +130,15 @@ def caption(layout: Layout, words: str, tags: Tags) -> Text:
 
 
 def overview_groups(
-    plan: Plan, answers: Sequence[RoomZones], layout: Layout, scale: Scale, extent: Box, parts: Parts
+    plan: Plan, rooms: Sequence[ShownRoom], layout: Layout, scale: Scale, extent: Box, parts: Parts
 ) -> Iterator[Group]:
     """Yield the plan with nothing but outlines and numbers, and the key of the parts over it."""
     view = view_of(layout, scale, extent)
-    divided = parts_of(parts, extent, [zones.room for zones in answers])
+    divided = parts_of(parts, extent, [room.room for room in rooms])
     names = [(Label((Line(part.name, bold=True, height=HEADING),), framed=True), part) for part in divided]
-    tags = number_tags(answers, view, [(label, view.box_on_paper(part.cell)) for label, part in names])
+    tags = number_tags(rooms, view, [(label, view.box_on_paper(part.cell)) for label, part in names])
     yield Group("linework", tuple(linework_items(plan.linework, view, view.box)))
-    yield Group("rooms", tuple(item for zones in answers for item in outline_items(zones.room, view)))
+    yield Group("rooms", tuple(item for room in rooms for item in outline_items(room.room, view)))
     cells = [view.box_on_paper(part.cell).corners for part in divided]
     yield Group("parts", tuple(Stroke(corners, MATCH_PEN, closed=True) for corners in cells))
     yield Group("tags", tuple(item for tag in tags.placements for item in tag.items()))
@@ -145,13 +152,13 @@ def overview_groups(
 
 
 def part_groups(
-    plan: Plan, answers: Sequence[RoomZones], parts: Parts, part: Part, custom: Custom
+    plan: Plan, rooms: Sequence[ShownRoom], parts: Parts, part: Part, custom: Custom
 ) -> Iterator[Group]:
     """Yield one part of a plan, cut a little beyond its match lines."""
     layout = parts.layout
     view = view_of(layout, parts.scale, part.cell)
     cell, window = view.box_on_paper(part.cell), _window(view, part)
-    shown = [zones for zones in answers if _box_of(view.to_paper(zones.room.outline)).overlaps(window)]
+    shown = [room for room in rooms if _box_of(view.to_paper(room.room.outline)).overlaps(window)]
     lines = _match_lines(part, cell, window)
     framed = PlanView(window, view.scale, view.to_plan(window.centre))
     tags = placed_tags(shown, framed, custom, [line for _, line in lines])
@@ -159,7 +166,7 @@ def part_groups(
     for group in room_groups(shown, view, tags):
         yield Group(group.name, tuple(clipped(group.items, window)))
     yield Group("parts", tuple(_match_items(lines, cell)))
-    words = f"Part {part.name}, {parts.scale.text} on {layout.paper.name}"
+    words = f"Part {part.name}, {parts.scale.text} on {layout.paper.name}{_left_out(shown)}"
     yield Group("caption", (caption(layout, words, tags),))
 
 

@@ -5,24 +5,25 @@ from itertools import dropwhile, islice
 
 import numpy as np
 
-from kernelscan.coverage import RoomZones
+from kernelscan.coverage import RoomAnswer
 from kernelscan.coverage.wording import Custom
 from kernelscan.markup.dimensions import dimensions_on_paper, lengths_to_set_out
 from kernelscan.markup.drawing import linework_items
-from kernelscan.markup.layout import Layout, arrangements
+from kernelscan.markup.layout import Blocks, Layout, arrangements
 from kernelscan.markup.options import SheetOptions
 from kernelscan.markup.pages import (
     Page,
-    about_the_drawing,
+    blocks_of,
     finished,
     legend_group,
+    paragraphs,
     schedule_group,
     schedule_pages,
 )
 from kernelscan.markup.paper import Scale, largest_scale, paper_by_name, scale_by_text, usual_scales
 from kernelscan.markup.plan_block import caption, room_groups, view_of
 from kernelscan.markup.scene import Box, Fill, Group, Item, Scene, Stroke, Text
-from kernelscan.markup.schedule import Schedule, schedule_of
+from kernelscan.markup.shown import ShownRoom, shown
 from kernelscan.markup.style import BODY, PALE, RULE_PEN, TABLE_PEN, WHITE
 from kernelscan.markup.tags import place_tags, tags_around_marks
 from kernelscan.markup.text import clean_text
@@ -43,7 +44,7 @@ WORKING_SCALE = 50
 
 
 def compose_room_sheets(
-    plan: Plan, answers: Sequence[RoomZones], options: SheetOptions = DEFAULT_OPTIONS
+    plan: Plan, answers: Sequence[RoomAnswer], options: SheetOptions = DEFAULT_OPTIONS
 ) -> tuple[Scene, ...]:
     """Return a sheet for each room, in order, its schedule on it or, where that does not fit, after it.
 
@@ -61,29 +62,28 @@ def compose_room_sheets(
     InputError
         When the paper or the scale is unknown.
     """
-    custom, extra = Custom(plan.unit.imperial), about_the_drawing(plan, answers)
-    pages = [page for zones in answers for page in _pages(plan, zones, options, extra, custom)]
-    return finished(plan, options, pages, extra)
+    custom, rooms = Custom(plan.unit.imperial), [shown(answer) for answer in answers]
+    cautions = paragraphs(plan, rooms)
+    pages = [page for room in rooms for page in _pages(plan, room, options, cautions, custom)]
+    return finished(plan, options, pages, cautions)
 
 
 def _pages(
-    plan: Plan, zones: RoomZones, options: SheetOptions, extra: Sequence[str], custom: Custom
+    plan: Plan, room: ShownRoom, options: SheetOptions, cautions: tuple[str, ...], custom: Custom
 ) -> Iterator[Page]:
     """Yield the sheet of a room, and one for its schedule where that does not fit beside it."""
-    schedule, extent = schedule_of([zones], custom), plan_extent(plan, [zones.room])
-    layout, scale = _layout(extent, schedule, extra, options, custom.imperial)
-    view = view_of(layout, scale, extent)
+    blocks, extent = blocks_of([room], custom, cautions), plan_extent(plan, [room.room])
+    layout, scale = _layout(extent, blocks, options, custom.imperial)
+    view, schedule = view_of(layout, scale, extent), blocks.schedule
     key = _key_box(view, extent)
     holds = schedule.fitting(0, layout.schedule.height)
     table = schedule_group(schedule, layout.schedule, [schedule.entries] if holds else [])
-    groups = (*_groups(plan, zones, view, layout, key, custom), table, legend_group(layout, scale, custom))
-    yield Page(layout, scale.text, groups)
-    yield from schedule_pages(schedule, layout, extra)
+    groups = _groups(plan, room, view, layout, key, custom)
+    yield Page(layout, scale.text, (*groups, table, legend_group(blocks.legend, layout, scale, custom)))
+    yield from schedule_pages(blocks, layout)
 
 
-def _layout(
-    extent: Box, schedule: Schedule, extra: Sequence[str], options: SheetOptions, imperial: bool
-) -> tuple[Layout, Scale]:
+def _layout(extent: Box, blocks: Blocks, options: SheetOptions, imperial: bool) -> tuple[Layout, Scale]:
     """Return layout and scale: as asked where the room fits, else the largest scale on the smallest paper that does.
 
     Of the arrangements, one that holds the room's schedule goes before one that does not.
@@ -94,12 +94,12 @@ def _layout(
         layouts = [
             layout
             for turned in (paper, paper.turned)
-            for layout in arrangements(turned, schedule, extra)
+            for layout in arrangements(turned, blocks)
             if min(layout.space) > 0
         ]
         sized = [(layout, _scale_on(layout, extent, wanted, imperial)) for layout in layouts]
         layout, scale = min(
-            sized, key=lambda each: (not schedule.fits(each[0].schedule), each[1].denominator)
+            sized, key=lambda each: (not blocks.schedule.fits(each[0].schedule), each[1].denominator)
         )
         if scale == wanted or scale.denominator <= WORKING_SCALE:
             break
@@ -134,19 +134,19 @@ def _key_box(view: PlanView, extent: Box) -> Box | None:
 
 
 def _groups(
-    plan: Plan, zones: RoomZones, view: PlanView, layout: Layout, key: Box | None, custom: Custom
+    plan: Plan, room: ShownRoom, view: PlanView, layout: Layout, key: Box | None, custom: Custom
 ) -> Iterator[Group]:
-    tags = tags_around_marks([zones], view)
+    tags = tags_around_marks([room], view)
     if key is not None:
         tags.taken.add(key)
-    dimensions = dimensions_on_paper(lengths_to_set_out(zones), view, custom, tags.taken)
-    place_tags(tags, [zones], view, custom)
+    dimensions = dimensions_on_paper(lengths_to_set_out(room), view, custom, tags.taken)
+    place_tags(tags, [room], view, custom)
     yield Group("linework", tuple(linework_items(plan.linework, view, view.box)))
     drawn = tuple(item for dimension in dimensions for item in dimension.items())
-    yield from room_groups([zones], view, tags, drawn)
+    yield from room_groups([room], view, tags, drawn)
     if key is not None:
-        yield Group("key", tuple(_key(plan, zones.room, key)))
-    words = f"{zones.room.id} {clean_text(zones.room.name)}, {view.scale.text} on {layout.paper.name}"
+        yield Group("key", tuple(_key(plan, room.room, key)))
+    words = f"{room.room.id} {clean_text(room.room.name)}, {view.scale.text} on {layout.paper.name}"
     yield Group("caption", (caption(layout, words, tags),))
 
 

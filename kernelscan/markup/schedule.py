@@ -1,45 +1,42 @@
-"""The schedule of rooms: a table measured before it is drawn, that goes on over as many sheets as it needs."""
+"""A schedule: a table measured before it is drawn, that goes on over as many sheets as it needs."""
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
-from kernelscan.coverage import RoomZones
-from kernelscan.coverage.wording import Custom, angle_in_words, kernel_in_words
-from kernelscan.markup.drawing import conflict_walls
 from kernelscan.markup.metrics import text_width
 from kernelscan.markup.scene import Anchor, Box, Item, Stroke, Text
-from kernelscan.markup.style import BODY, CONFLICT_LETTERS, HEADING, MARKS, RULE_PEN, TABLE_PEN
-from kernelscan.markup.text import LINE_PITCH, clean_text, wrapped
+from kernelscan.markup.style import BODY, HEADING, RULE_PEN, TABLE_PEN
+from kernelscan.markup.text import LINE_PITCH, wrapped
 
-__all__ = ["Column", "Entry", "Schedule", "schedule_of"]
+__all__ = ["Column", "Entry", "Form", "Head", "Row", "Schedule", "measured"]
 
 PITCH = BODY * LINE_PITCH
 GAP = 2.0
 """Between two columns, in millimetres."""
-NAME = 1
-"""The column of the name, the only one that gives way and wraps."""
-NAME_WIDTH = 30.0
-POINT = 4
-"""The column where a remark begins when a room has no point."""
-NOTES = (
-    "x and y are counted from the drawing's own origin. Field: horizontal field of view needed there. "
-    "Range: to the farthest corner. Off by: how far the device may be off and still see every wall."
-)
+
+Head = tuple[str, str, Anchor]
+"""The head of a column, the unit under it, and how its cells stand."""
+
+
+@dataclass(frozen=True, slots=True)
+class Row:
+    """One line: cells by column, fewer than there are columns where the rest is empty, and a remark beside them."""
+
+    cells: tuple[str, ...] = ()
+    remark: str = ""
 
 
 @dataclass(frozen=True, slots=True)
 class Entry:
-    """The rows of one room: cells by column, and a remark over the columns of the points."""
+    """The lines of one room: its name, which may take several, and the rows beside it."""
 
     name: tuple[str, ...]
-    rows: tuple[tuple[str, ...], ...]
-    remark: tuple[str, ...] = ()
+    rows: tuple[Row, ...]
 
     @property
     def height(self) -> float:
         """Height in millimetres."""
-        told = max(len(self.rows), len(self.rows) - 1 + len(self.remark))
-        return max(len(self.name), told) * PITCH + 0.8
+        return max(len(self.name), len(self.rows)) * PITCH + 0.8
 
 
 @dataclass(frozen=True, slots=True)
@@ -59,9 +56,37 @@ class Column:
 
 
 @dataclass(frozen=True, slots=True)
-class Schedule:
-    """The whole table, measured: its columns, its width, the entries, and the lines that explain the heads."""
+class Form:
+    """What a table is before anything is in it.
 
+    Attributes
+    ----------
+    title, notes
+        What stands over it.
+    heads
+        Of its columns.
+    name, name_width
+        The column of names, the only one that gives way and wraps, and its width in millimetres.
+    remark
+        The column where remarks begin.
+    least
+        The width, in millimetres, to which the columns are spaced out if they are narrower together.
+    """
+
+    title: str
+    notes: str
+    heads: tuple[Head, ...]
+    name: int
+    name_width: float
+    remark: int
+    least: float = 0.0
+
+
+@dataclass(frozen=True, slots=True)
+class Schedule:
+    """The whole table, measured: its columns, its width, its entries, and the lines that explain the heads."""
+
+    form: Form
     columns: tuple[Column, ...]
     width: float
     entries: tuple[Entry, ...]
@@ -93,7 +118,7 @@ class Schedule:
     def items(self, left: float, top: float, entries: Sequence[Entry]) -> Iterator[Item]:
         """Yield the table of these entries with its upper left corner at a point."""
         y = top - HEADING - 1.5
-        yield Text((left + 1, y), "Schedule of rooms", HEADING, bold=True)
+        yield Text((left + 1, y), self.form.title, HEADING, bold=True)
         for note in self.notes:
             y -= PITCH
             yield Text((left + 1, y), note)
@@ -114,62 +139,44 @@ class Schedule:
     def _entry(self, entry: Entry, left: float, top: float) -> Iterator[Item]:
         first = top - 3.5
         for i, row in enumerate(entry.rows):
-            for j, cell in enumerate(row):
+            for j, cell in enumerate(row.cells):
                 if cell:
                     yield self.columns[j].text(left, first - i * PITCH, cell, bold=j == 0)
+            if row.remark:
+                yield self.columns[self.form.remark].text(left, first - i * PITCH, row.remark)
         for i, line in enumerate(entry.name):
-            yield self.columns[NAME].text(left, first - i * PITCH, line)
-        for i, line in enumerate(entry.remark):
-            yield self.columns[POINT].text(left, first - (len(entry.rows) - 1 + i) * PITCH, line)
+            if line:
+                yield self.columns[self.form.name].text(left, first - i * PITCH, line)
 
 
-def schedule_of(answers: Sequence[RoomZones], custom: Custom) -> Schedule:
-    """Return the schedule of all rooms, measured: each column as wide as its widest cell, the name 30 mm."""
-    heads: tuple[tuple[str, str, Anchor], ...] = (
-        ("Room", "", "start"), ("Name", "", "start"), ("Area", custom.area_unit, "end"), ("Kernel", "", "start"),
-        ("Point", "", "start"), ("x", custom.length_unit, "end"), ("y", custom.length_unit, "end"),
-        ("Field", "", "end"), ("Range", custom.length_unit, "end"), ("Off by", custom.tolerance_unit, "end"),
-    )  # fmt: skip
-    tables = [_rows(zones, custom) for zones in answers]
+def measured(form: Form, entries: Sequence[Entry]) -> Schedule:
+    """Return a table, measured: each column as wide as its widest cell, remarks wrapped to what is left of a line."""
+    widths = _widths(form, entries)
+    gap = max(GAP, (form.least - sum(widths) - 2.0) / (len(widths) - 1))
     columns, x = [], 1.0
-    for i, (head, unit, anchor) in enumerate(heads):
-        cells = {unit, *(row[i] for rows in tables for row in rows)}
-        widest = max(text_width(head, BODY, True), *(text_width(cell, BODY, i == 0) for cell in cells))
-        columns.append(Column(head, unit, x, x + (NAME_WIDTH if i == NAME else widest), anchor))
-        x = columns[-1].right + GAP
-    width = x - GAP + 1.0
-    entries = tuple(
-        Entry(
-            wrapped(clean_text(zones.room.name), NAME_WIDTH, BODY, most=3),
-            rows,
-            wrapped(_remark(zones), width - columns[POINT].left - 1.0, BODY),
+    for (head, unit, anchor), wide in zip(form.heads, widths, strict=True):
+        columns.append(Column(head, unit, x, x + wide, anchor))
+        x += wide + gap
+    width = x - gap + 1.0
+    space = width - columns[form.remark].left - 1.0
+    told = tuple(Entry(entry.name, tuple(_wrapped(entry.rows, space))) for entry in entries)
+    return Schedule(form, tuple(columns), width, told, wrapped(form.notes, width - 2.0, BODY))
+
+
+def _widths(form: Form, entries: Sequence[Entry]) -> list[float]:
+    cells = [row.cells for entry in entries for row in entry.rows]
+    widths = []
+    for i, (head, unit, _) in enumerate(form.heads):
+        strings = {unit, *(row[i] for row in cells if i < len(row))}
+        widths.append(
+            max(text_width(head, BODY, True), *(text_width(each, BODY, i == 0) for each in strings))
         )
-        for zones, rows in zip(answers, tables, strict=True)
-    )
-    return Schedule(tuple(columns), width, entries, wrapped(NOTES, width - 2.0, BODY))
+    widths[form.name] = form.name_width
+    return widths
 
 
-def _rows(zones: RoomZones, custom: Custom) -> tuple[tuple[str, ...], ...]:
-    """Return a room's cells, a row for each recommended point; the name's own cell stays empty."""
-    first = (zones.room.id, "", custom.area(zones.room.area), kernel_in_words(zones, custom))
-    rows: list[tuple[str, ...]] = []
-    for spot in zones.recommended:
-        mark = MARKS[spot.mount]
-        rows.append((
-            *(("",) * 4 if rows else first),
-            f"{mark.letter} {mark.word}",
-            custom.position(float(spot.point[0])),
-            custom.position(float(spot.point[1])),
-            angle_in_words(spot.field_of_view),
-            custom.range_up(spot.farthest),
-            custom.tolerance_down(spot.tolerance),
-        ))  # fmt: skip
-    return tuple(rows) or ((*first, *("",) * 6),)
-
-
-def _remark(zones: RoomZones) -> str:
-    walls = conflict_walls(zones)
-    if walls:
-        letters = CONFLICT_LETTERS[: len(walls)]
-        return f"walls {', '.join(letters[:-1])} and {letters[-1]} exclude each other"
-    return "" if zones.recommended else "no wall or corner can carry a device"
+def _wrapped(rows: Sequence[Row], width: float) -> Iterator[Row]:
+    for row in rows:
+        first, *rest = wrapped(row.remark, width, BODY) or ("",)
+        yield Row(row.cells, first)
+        yield from (Row((), line) for line in rest)

@@ -1,26 +1,35 @@
-"""The tags of the plan: letters at the points and at the walls in conflict, and one tag a room.
+"""The tags of the plan: letters at the points, at the walls in conflict and at small features, and one tag a room.
 
 A room's tag says as much as its room holds: number, name, area and kernel; else without the area; else number and
-name; else the number, and always that no point sees every wall where that is so. Where not even that fits, the tag
-stands outside at the end of a leader line. What finds no place at all is returned by name, so that the sheet can say
-so.
+name; else the number, and always that no point sees every wall or that no device covers the room where that is so.
+Where not even that fits, the tag stands outside at the end of a leader line. What finds no place at all is returned by
+name, so that the sheet can say so.
 """
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
+from itertools import pairwise
 
 import numpy as np
 
-from kernelscan.coverage import RoomZones
 from kernelscan.coverage.wording import Custom, kernel_in_words
-from kernelscan.markup.drawing import conflict_walls, corner_rings, seeing_arrow
+from kernelscan.markup.drawing import corner_rings, seeing_arrow
 from kernelscan.markup.labels import Label, Line, boxes_around, dot, nearest_in
 from kernelscan.markup.placing import Occupied, boxes_inside, inner_points
 from kernelscan.markup.scene import Box, Item, Point, Stroke
-from kernelscan.markup.style import CONFLICT_LETTERS, HEADING, LEADER_PEN, MARKS, SYMBOL_RADIUS, WALL_BAND
-from kernelscan.markup.symbols import box_around, spot_ring
+from kernelscan.markup.shown import ShownRoom
+from kernelscan.markup.style import (
+    CONFLICT_LETTERS,
+    HEADING,
+    LEADER_PEN,
+    SYMBOL_RADIUS,
+    TRIED_LETTER,
+    WALL_BAND,
+)
+from kernelscan.markup.symbols import aim_lines, box_around, spot_ring, tried_ring
 from kernelscan.markup.text import clean_text, wrapped
 from kernelscan.markup.view import PlanView
+from kernelscan.plan import Room
 
 __all__ = ["Placement", "Tags", "number_tags", "place_tags", "placed_tags", "tags_around_marks"]
 
@@ -81,44 +90,44 @@ class Tags:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class _Place:
-    """A room on the paper: its answer, its rings, points for the middle of its tag and how far they are from walls."""
+    """A room on the paper: its rings, points for the middle of its tag, and how far these are from walls."""
 
-    zones: RoomZones
+    shown: ShownRoom
     rings: tuple[np.ndarray, ...]
     middles: np.ndarray
     clearance: np.ndarray
 
 
 def placed_tags(
-    answers: Sequence[RoomZones], view: PlanView, custom: Custom, lines: Sequence[tuple[Point, Point]] = ()
+    rooms: Sequence[ShownRoom], view: PlanView, custom: Custom, lines: Sequence[tuple[Point, Point]] = ()
 ) -> Tags:
     """Return every tag of the plan, none touching another, a symbol, a wall in conflict or one of the lines given."""
-    tags = tags_around_marks(answers, view)
+    tags = tags_around_marks(rooms, view)
     for line in lines:
         tags.taken.add_line(*line)
-    place_tags(tags, answers, view, custom)
+    place_tags(tags, rooms, view, custom)
     return tags
 
 
-def tags_around_marks(answers: Sequence[RoomZones], view: PlanView) -> Tags:
+def tags_around_marks(rooms: Sequence[ShownRoom], view: PlanView) -> Tags:
     """Return no tags as yet, and the places of all symbols and walls in conflict taken."""
     tags = Tags(view.box)
-    for zones in answers:
-        _keep_marks_clear(zones, view, tags)
+    for room in rooms:
+        _keep_marks_clear(room, view, tags)
     return tags
 
 
-def place_tags(tags: Tags, answers: Sequence[RoomZones], view: PlanView, custom: Custom) -> None:
+def place_tags(tags: Tags, rooms: Sequence[ShownRoom], view: PlanView, custom: Custom) -> None:
     """Place the letters and the tags of rooms where nothing is taken.
 
     A room too small for more than its number gets that first, and the letters of its points after it.
     """
-    places = [_place(zones, view) for zones in answers]
+    places = [_place(room, view) for room in rooms]
     waiting = []
     for place in places:
         cramped = not _has_room(place, custom, tags)
         placed = cramped and _place_inside(place, custom, tags)
-        for letter, at, needed in _letters(place.zones, view):
+        for letter, at, needed in _letters(place.shown, view):
             if tags.taken.shows(at):
                 _place_letter(letter, at, needed, place, tags)
         if not placed and not _place_inside(place, custom, tags):
@@ -128,7 +137,7 @@ def place_tags(tags: Tags, answers: Sequence[RoomZones], view: PlanView, custom:
         _place_outside(place, custom, outlines, tags)
 
 
-def number_tags(answers: Sequence[RoomZones], view: PlanView, corners: Sequence[tuple[Label, Box]]) -> Tags:
+def number_tags(rooms: Sequence[ShownRoom], view: PlanView, corners: Sequence[tuple[Label, Box]]) -> Tags:
     """Return labels in the upper left corners of boxes, and the numbers of the rooms as far as there is room."""
     tags = Tags(view.box)
     for _, box in corners:
@@ -138,44 +147,58 @@ def number_tags(answers: Sequence[RoomZones], view: PlanView, corners: Sequence[
         tags.put(
             label, Box(box.left + 1, box.top - 1 - label.height, box.left + 1 + label.width, box.top - 1)
         )
-    for zones in answers:
-        label = Label((Line(zones.room.id, bold=True),))
-        for box in _inner_boxes(_place(zones, view), label, EDGE):
+    for room in rooms:
+        label = Label((Line(room.room.id, bold=True),))
+        for box in _inner_boxes(_place(room, view), label, EDGE):
             if tags.taken.takes(box):
                 tags.put(label, box)
                 break
     return tags
 
 
-def _place(zones: RoomZones, view: PlanView) -> _Place:
-    rings = tuple(view.to_paper(ring) for ring in zones.room.rings)
-    return _Place(zones, rings, *inner_points(rings))
+def _place(shown: ShownRoom, view: PlanView) -> _Place:
+    rings = tuple(view.to_paper(ring) for ring in shown.room.rings)
+    return _Place(shown, rings, *inner_points(rings))
 
 
-def _keep_marks_clear(zones: RoomZones, view: PlanView, tags: Tags) -> None:
-    for spot in zones.recommended:
-        tags.taken.add(box_around(spot_ring(spot, view.point(spot.point))))
-    for corner in zones.corners:
-        for ring in corner_rings(zones.room, corner, view):
+def _keep_marks_clear(shown: ShownRoom, view: PlanView, tags: Tags) -> None:
+    room = shown.basis.room
+    for spot in shown.spots:
+        at = view.point(spot.point)
+        tags.taken.add(box_around(spot_ring(spot, at)))
+        for line in aim_lines(spot, at):
+            tags.taken.add_line(*line)
+    if shown.tried is not None:
+        tags.taken.add(box_around(tried_ring(view.point(shown.tried.best.point))))
+    for nook in shown.nooks:
+        for ring in corner_rings(room, nook, view):
             tags.shy.add(box_around(ring))
-    for wall in conflict_walls(zones):
-        start, end = zones.room.wall_ends(wall)
-        foot, tip = seeing_arrow(zones.room, wall, view)
+    for wall in shown.conflict:
+        start, end = room.wall_ends(wall)
+        foot, tip = seeing_arrow(room, wall, view)
         tags.taken.add_line(view.point(start), view.point(end))
         tags.taken.add(box_around((foot, tip)).grown(0.6))
-    ceiling = view.ring(zones.ceiling.vertices) if zones.ceiling is not None else ()
-    for start_point, end_point in zip(ceiling, ceiling[1:] + ceiling[:1], strict=True):
-        tags.shy.add_line(start_point, end_point)
+    for _, feature in shown.features:
+        for start_point, end_point in pairwise(view.ring(feature.chain)):
+            tags.shy.add_line(start_point, end_point)
+    for border in (view.ring(ring) for area in shown.areas for ring in area.rings):
+        for start_point, end_point in zip(border, border[1:] + border[:1], strict=True):
+            tags.shy.add_line(start_point, end_point)
 
 
-def _letters(zones: RoomZones, view: PlanView) -> Iterator[tuple[Label, Point, bool]]:
+def _letters(shown: ShownRoom, view: PlanView) -> Iterator[tuple[Label, Point, bool]]:
     """Yield letters, their places, and whether the sheet needs them: a point's symbol says the same by its shape."""
-    for spot in zones.recommended:
-        yield Label((Line(MARKS[spot.mount].letter, bold=True),)), view.point(spot.point), False
-    for letter, wall in zip(CONFLICT_LETTERS, conflict_walls(zones), strict=False):
-        foot, tip = seeing_arrow(zones.room, wall, view)
+    for spot in shown.spots:
+        needed = bool(shown.answer.devices)
+        yield Label((Line(spot.tag, bold=True),)), view.point(spot.point), needed
+    if shown.tried is not None:
+        yield Label((Line(TRIED_LETTER, bold=True),)), view.point(shown.tried.best.point), False
+    for letter, wall in zip(CONFLICT_LETTERS, shown.conflict, strict=False):
+        foot, tip = seeing_arrow(shown.basis.room, wall, view)
         middle = (foot[0] + tip[0]) / 2, (foot[1] + tip[1]) / 2
         yield Label((Line(letter, bold=True, height=HEADING),)), middle, True
+    for tag, feature in shown.features:
+        yield Label((Line(tag),)), view.point(feature.middle), True
 
 
 def _place_letter(letter: Label, at: Point, needed: bool, place: _Place, tags: Tags) -> None:
@@ -200,36 +223,46 @@ def _place_letter(letter: Label, at: Point, needed: bool, place: _Place, tags: T
         if tags.taken.takes(box):
             tags.put(letter, box, at)
             return
-    tags.missing.append(f"{place.zones.room.id} {letter.lines[0].string}")
+    tags.missing.append(f"{place.shown.room.id} {letter.lines[0].string}")
 
 
-def _variants(zones: RoomZones, custom: Custom) -> Iterator[Label]:
-    """Yield a room's tag, the fullest first; that no point sees every wall is never left out."""
-    number, name = Line(zones.room.id, bold=True), _name_lines(zones)
-    area = Line(f"{custom.area(zones.room.area)} {custom.area_unit}")
-    kernel = _kernel_line(zones, custom)
-    needed = (kernel,) if zones.kernel.kind == "empty" else ()
-    yield Label((number, *name, area, kernel))
-    yield Label((number, *name, kernel))
-    yield Label((number, *name, *needed))
-    yield Label((number, *needed))
+def _variants(shown: ShownRoom, custom: Custom) -> Iterator[Label]:
+    """Yield a room's tag, the fullest first; what is wanting is never left out."""
+    number, name = Line(shown.room.id, bold=True), _name_lines(shown.room)
+    area = Line(f"{custom.area(shown.room.area)} {custom.area_unit}")
+    wanting = _wanting(shown)
+    kernel = () if shown.basis.kernel.kind == "empty" else (_kernel_line(shown, custom),)
+    yield Label((number, *name, area, *kernel, *wanting))
+    yield Label((number, *name, *kernel, *wanting))
+    yield Label((number, *name, *wanting))
+    yield Label((number, *wanting))
 
 
-def _kernel_line(zones: RoomZones, custom: Custom) -> Line:
-    words = kernel_in_words(zones, custom)
-    return Line(words if zones.kernel.kind == "empty" else f"kernel: {words.removeprefix('area ')}")
+def _wanting(shown: ShownRoom) -> tuple[Line, ...]:
+    """What a reader must know of a room: that no point sees every wall, or that no device covers it."""
+    words = []
+    if shown.answer.zones.kernel.kind == "empty":
+        tolerant = shown.answer.tolerant is not None and shown.basis.kernel.kind != "empty"
+        words.append("exact: no single point" if tolerant else "no single point")
+    if shown.is_uncovered:
+        words.append("no device covers it")
+    return tuple(Line(line) for line in words)
 
 
-def _name_lines(zones: RoomZones) -> tuple[Line, ...]:
-    if zones.room.name_from == "number":
+def _kernel_line(shown: ShownRoom, custom: Custom) -> Line:
+    words = kernel_in_words(shown.basis, custom).removeprefix("area ")
+    return Line(f"without features: {words}" if shown.features else f"kernel: {words}")
+
+
+def _name_lines(room: Room) -> tuple[Line, ...]:
+    if room.name_from == "number":
         return ()
-    name = clean_text(zones.room.name)
-    return tuple(Line(line) for line in wrapped(name, WIDEST_NAME, 2.5, most=2))
+    return tuple(Line(line) for line in wrapped(clean_text(room.name), WIDEST_NAME, 2.5, most=2))
 
 
 def _has_room(place: _Place, custom: Custom, tags: Tags) -> bool:
     """Whether a room holds more than its number and name beside its symbols."""
-    _, label, *_ = _variants(place.zones, custom)
+    _, label, *_ = _variants(place.shown, custom)
     return any(tags.taken.takes(box) for box in _inner_boxes(place, label, EDGE))
 
 
@@ -244,7 +277,7 @@ def _inner_boxes(place: _Place, label: Label, border: np.ndarray) -> Iterator[Bo
 
 def _place_inside(place: _Place, custom: Custom, tags: Tags) -> bool:
     """Place the fullest tag that the room holds, off its walls and its zones' borders if it can."""
-    for label in _variants(place.zones, custom):
+    for label in _variants(place.shown, custom):
         for border, shy in ((BAND, True), (EDGE, False)):
             for box in _inner_boxes(place, label, border):
                 if tags.taken.takes(box) and not (shy and not tags.shy.takes(box.grown(0.8))):
@@ -255,7 +288,7 @@ def _place_inside(place: _Place, custom: Custom, tags: Tags) -> bool:
 
 def _place_outside(place: _Place, custom: Custom, outlines: np.ndarray, tags: Tags) -> None:
     """Place a tag at the end of a leader: clear of every room if it can, else on a room, else note it as missing."""
-    *_, with_name, _ = _variants(place.zones, custom)
+    *_, with_name, _ = _variants(place.shown, custom)
     label = replace(with_name, framed=True)
     second: tuple[Box, Point] | None = None
     feet = _feet(place, tags)
@@ -269,7 +302,7 @@ def _place_outside(place: _Place, custom: Custom, outlines: np.ndarray, tags: Ta
     if second is not None:
         tags.put(label, *second)
     elif feet:
-        tags.missing.append(place.zones.room.id)
+        tags.missing.append(place.shown.room.id)
 
 
 def _feet(place: _Place, tags: Tags) -> list[Point]:

@@ -7,7 +7,7 @@ gives the very same doubles.
 
 import json
 import re
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from importlib.resources import files
 from math import degrees
 from typing import Any
@@ -15,7 +15,7 @@ from typing import Any
 import numpy as np
 
 from kernelscan.coverage import RoomAnswer, RoomZones, Spot, TolerantAnswer
-from kernelscan.coverage.cautions import CAUTIONS
+from kernelscan.coverage.cautions import cautions_for
 from kernelscan.coverage.hidden import Hidden
 from kernelscan.coverage.reasons import Reasons
 from kernelscan.geometry.kernel import Kernel
@@ -50,7 +50,8 @@ def rooms_report(plan: Plan) -> Report:
 
 def zones_report(plan: Plan, answers: Sequence[RoomAnswer]) -> Report:
     """Return the report of every answered room, as the ``zones`` command writes it."""
-    return _report(plan, [_answered(answer) for answer in answers])
+    kinds = {each.device.kind: None for answer in answers for each in answer.devices}
+    return _report(plan, [_answered(answer) for answer in answers], kinds)
 
 
 def report_text(report: Report) -> str:
@@ -67,7 +68,7 @@ def report_schema() -> dict[str, Any]:
     return schema
 
 
-def _report(plan: Plan, rooms: list[RoomEntry]) -> Report:
+def _report(plan: Plan, rooms: list[RoomEntry], kinds: Iterable[str] = ()) -> Report:
     return {
         "format": FORMAT,
         "version": VERSION,
@@ -79,7 +80,7 @@ def _report(plan: Plan, rooms: list[RoomEntry]) -> Report:
         },
         "rooms": rooms,
         "problems": [_problem(problem) for problem in plan.problems],
-        "cautions": list(CAUTIONS),
+        "cautions": list(cautions_for(kinds)),
     }
 
 

@@ -5,7 +5,7 @@ from math import atan2, hypot, pi
 
 import numpy as np
 
-from kernelscan.coverage import CornerZone, FloorZone, RoomZones, Spot, WallZone
+from kernelscan.coverage import CornerZone, FloorZone, RoomAnswer, RoomZones, Spot, WallZone
 from kernelscan.geometry.kernel import Kernel
 from kernelscan.plan import Obstacle, Plan, Problem, Room, WallRef
 from kernelscan.units import unit_by_name
@@ -32,7 +32,7 @@ def room(
 
 def answer(
     of: Room, kernel: Points, conflict: Sequence[tuple[int, int]] = (), shift: tuple[float, float] = (0, 0)
-) -> RoomZones:
+) -> RoomAnswer:
     """Return a room's answer from its kernel's vertices alone, by plain arithmetic on convex kernels."""
     vertices = array(kernel, shift)
     kind = ("empty", "point", "segment")[len(vertices)] if len(vertices) < 3 else "area"
@@ -46,7 +46,7 @@ def answer(
         conflict=np.array(conflict, dtype=np.int64).reshape(-1, 2),
     )
     if kind == "empty":
-        return RoomZones(of, answer_kernel, None, (), (), ())
+        return RoomAnswer(RoomZones(of, answer_kernel, None, (), (), ()))
     walls, corners = _walls(of, vertices), _corners(of, vertices)
     best = [_spot(of, "ceiling", vertices.mean(axis=0), 2 * pi, None, ())]
     if walls:
@@ -56,7 +56,8 @@ def answer(
         best.append(_spot(of, "wall", longest.path.mean(axis=0), pi, inward, longest.walls))
     if corners:
         best.append(corners[0].spot)
-    return RoomZones(of, answer_kernel, FloorZone(vertices), tuple(walls), tuple(corners), tuple(best))
+    zones = RoomZones(of, answer_kernel, FloorZone(vertices), tuple(walls), tuple(corners), tuple(best))
+    return RoomAnswer(zones)
 
 
 def _walls(of: Room, kernel: np.ndarray) -> list[WallZone]:
@@ -91,12 +92,12 @@ def _spot(of: Room, mount, point, field, bearing, walls) -> Spot:
 
 
 def plan_of(
-    answers: Sequence[RoomZones],
+    answers: Sequence[RoomAnswer],
     unit: str = "mm",
     file: str = "invented.dxf",
     linework: Sequence[np.ndarray] = (),
 ) -> Plan:
-    rooms = tuple(zones.room for zones in answers)
+    rooms = tuple(each.room for each in answers)
     problems = (Problem("open-outline", "an outline is open", (1.0, 1.0)),)
     rule = "closed outlines on the layer A-AREA"
     return Plan(file, unit_by_name(unit), "header", rooms, rule, problems, tuple(linework))
@@ -110,12 +111,12 @@ def moved(
     shift: tuple[float, float] = (0, 0),
     holes: Sequence[Points] = (),
     conflict: Sequence[tuple[int, int]] = (),
-) -> RoomZones:
+) -> RoomAnswer:
     """Return the answer of a room that was written down at the origin and stands elsewhere."""
     return answer(room(number, name, outline, holes, shift), kernel, conflict, shift)
 
 
-def classics() -> list[RoomZones]:
+def classics() -> list[RoomAnswer]:
     """An L, a T, a U, a room with a column, a kernel that is a segment and one that is a point."""
     column = [(2.8, 1.8), (2.8, 2.2), (3.2, 2.2), (3.2, 1.8)]
     square = [(0, 0), (6, 0), (6, 4), (0, 4)]
@@ -129,7 +130,7 @@ def classics() -> list[RoomZones]:
     ]
 
 
-def floor(count: int = 12, columns: int = 4, width: float = 3.6, depth: float = 4.2) -> list[RoomZones]:
+def floor(count: int = 12, columns: int = 4, width: float = 3.6, depth: float = 4.2) -> list[RoomAnswer]:
     """A floor of plain rooms, with walls of 0.2 m between them."""
     outline = [(0, 0), (width, 0), (width, depth), (0, depth)]
     places = [(i % columns * (width + 0.2), i // columns * (depth + 0.2)) for i in range(count)]

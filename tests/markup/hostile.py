@@ -4,7 +4,7 @@ from dataclasses import replace
 
 from markup.cases import classics, plan_of
 
-from kernelscan.coverage import RoomZones
+from kernelscan.coverage import RoomAnswer
 from kernelscan.plan import Plan, Problem
 
 HOSTILE = {
@@ -27,9 +27,13 @@ HOSTILE = {
 }
 
 
-def hostile_answers(name: str) -> list[RoomZones]:
+def hostile_answers(name: str) -> list[RoomAnswer]:
     text = HOSTILE[name]
-    return [replace(zones, room=replace(zones.room, name=text)) for zones in classics()]
+    rooms = [replace(each.room, name=text) for each in classics()]
+    return [
+        replace(each, zones=replace(each.zones, room=room))
+        for each, room in zip(classics(), rooms, strict=True)
+    ]
 
 
 def hostile_plan(name: str) -> Plan:

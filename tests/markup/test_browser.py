@@ -13,7 +13,7 @@ import pytest
 from markup.cases import classics, floor, plan_of
 
 from kernelscan import read_plan
-from kernelscan.coverage import room_zones
+from kernelscan.coverage import room_answer
 from kernelscan.markup.metrics import text_width
 from kernelscan.markup.room_sheets import compose_room_sheets
 from kernelscan.markup.scene import Box, Scene
@@ -77,7 +77,7 @@ def sheets_of_samples(folder: Path) -> dict[str, Scene]:
     sheets = {}
     for path in sorted(folder.glob("*.dxf")):
         plan = read_plan(path)
-        for i, sheet in enumerate(compose_zone_sheets(plan, [room_zones(room) for room in plan.rooms]), 1):
+        for i, sheet in enumerate(compose_zone_sheets(plan, [room_answer(room) for room in plan.rooms]), 1):
             sheets[f"{path.stem}-{i}"] = sheet
     return sheets
 

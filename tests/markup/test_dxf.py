@@ -50,7 +50,7 @@ def test_positions_and_unit_are_the_drawings(unit: str) -> None:
     assert np.array(outline.get_points("xy")) * metres == pytest.approx(answers[0].room.outline, abs=1e-8)
     assert outline.closed
     for insert in drawing.modelspace().query("INSERT"):
-        spot = next(each for each in answers[0].recommended if each.mount.upper() in insert.dxf.name)
+        spot = next(each for each in answers[0].zones.recommended if each.mount.upper() in insert.dxf.name)
         assert np.array(insert.dxf.insert.vec2) * metres == pytest.approx(spot.point, abs=1e-8)
 
 

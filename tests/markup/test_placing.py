@@ -13,6 +13,7 @@ from kernelscan.markup.paper import Scale
 from kernelscan.markup.placing import Occupied, boxes_inside, inner_points
 from kernelscan.markup.scene import Box
 from kernelscan.markup.sheet import SheetOptions, compose_zone_sheets
+from kernelscan.markup.shown import shown
 from kernelscan.markup.tags import placed_tags
 from kernelscan.markup.view import PlanView, clipped_segment
 
@@ -93,7 +94,7 @@ def view_of(scale: float) -> PlanView:
 @pytest.mark.parametrize("scale", [20, 50, 100, 200, 500])
 @pytest.mark.parametrize("answers", [classics(), floor(30, 6)], ids=["classics", "floor"])
 def test_no_two_labels_touch_at_any_scale(answers: list, scale: float) -> None:
-    tags = placed_tags(answers, view_of(scale), Custom(imperial=False))
+    tags = placed_tags([shown(each) for each in answers], view_of(scale), Custom(imperial=False))
     assert overlapping([placement.box for placement in tags.placements]) == []
     said = {line.string for placement in tags.placements for line in placement.label.lines} | set(
         tags.missing
@@ -110,13 +111,13 @@ def test_rooms_anywhere_even_over_each_other_never_make_labels_touch(rooms: list
     for i, (x, y, width, depth) in enumerate(rooms, 1):
         ring = [(0, 0), (width, 0), (width, depth), (0, depth)]
         answers.append(moved(i, f"Room of some name {i}", ring, ring, (x, y)))
-    tags = placed_tags(answers, view_of(100), Custom(imperial=False))
+    tags = placed_tags([shown(each) for each in answers], view_of(100), Custom(imperial=False))
     assert overlapping([placement.box for placement in tags.placements]) == []
 
 
 def test_a_tag_that_does_not_fit_stands_outside_on_a_leader() -> None:
     duct = [(0, 0), (0.4, 0), (0.4, 0.4), (0, 0.4)]
-    tags = placed_tags([moved(1, "Duct", duct, duct)], view_of(100), Custom(imperial=False))
+    tags = placed_tags([shown(moved(1, "Duct", duct, duct))], view_of(100), Custom(imperial=False))
     (placement,) = [each for each in tags.placements if each.foot is not None]
     assert [line.string for line in placement.label.lines] == ["R001", "Duct"]
     assert not tags.missing

@@ -14,6 +14,7 @@ from kernelscan.markup.placing import Occupied
 from kernelscan.markup.room_sheets import compose_room_sheets
 from kernelscan.markup.scene import Box, Fill, Scene, Text
 from kernelscan.markup.sheet import SheetOptions
+from kernelscan.markup.shown import shown
 from kernelscan.markup.style import PALE
 from kernelscan.markup.view import PlanView
 from kernelscan.plain_text import plain_text
@@ -52,11 +53,11 @@ def test_in_feet_and_inches() -> None:
 
 
 def test_a_room_without_a_point_has_nothing_to_set_out() -> None:
-    assert lengths_to_set_out(classics()[2]) == ()
+    assert lengths_to_set_out(shown(classics()[2])) == ()
 
 
 def test_lengths_on_a_wall_stand_off_it_outside() -> None:
-    lengths = [length for length in lengths_to_set_out(classics()[0]) if length.away is not None]
+    lengths = [length for length in lengths_to_set_out(shown(classics()[0])) if length.away is not None]
     (length,) = lengths
     assert length.away == pytest.approx((0, -1))
     assert (length.end - length.start).tolist() == [1.5, 0.0]
