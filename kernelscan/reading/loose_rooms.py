@@ -28,6 +28,7 @@ from kernelscan.reading.corners import clean_ring
 from kernelscan.reading.faces import DRAWN_OPENING, OUTSIDE, Face, SmallFace, faces_of
 from kernelscan.reading.gaps import closing_lines, connectors, wall_gaps
 from kernelscan.reading.layers import LayerRole
+from kernelscan.reading.merging import merged
 from kernelscan.reading.names import labels_in_rings, room_label
 from kernelscan.reading.outlines import Outline
 from kernelscan.reading.segments import (
@@ -239,7 +240,7 @@ def _closed_lines(
     swings = [swing for _, swing in swinging]
     leaves = are_leaves(whole, swings) & (whole.code == WALL)
     whole = whole.where(~np.isin(whole.stroke, list(arcs)) & ~leaves)
-    walls, openings = whole.where(whole.code == WALL), whole.where(whole.code != WALL)
+    walls, openings = merged(whole.where(whole.code == WALL)), whole.where(whole.code != WALL)
     gaps = wall_gaps(walls, openings, swings, tolerances)
     closing = openings.where(closing_lines(openings, walls, tolerances))
     drawn = walls.plus(closing.a, closing.b, closing.code + DRAWN_OPENING)
