@@ -87,9 +87,10 @@ def slack(room, device, point, lens, fixed_to):
         if wall in fixed_to:
             continue
         found.append(to_line - error)
-        found.append(to_line - device.nearest - error)
-        found.append(to_line - device.clearances.walls - error)
-        found.append(to_line - section(device)[0] - error)
+        to_wall = distance_to(lens, a, b)
+        found += [
+            to_wall - near - error for near in (device.nearest, device.clearances.walls, section(device)[0])
+        ]
         if device.grazing:
             found += [
                 grazing_slack(lens, a, b, device.grazing) - error,
@@ -98,9 +99,14 @@ def slack(room, device, point, lens, fixed_to):
     if device.clearances.openings:
         for opening in room.openings:
             a, b = room.wall_ends(opening.wall)
-            t = min(1.0, max(0.0, ((point - a) @ (b - a)) / ((b - a) @ (b - a))))
-            found.append(hypot(*(point - a - t * (b - a))) - device.clearances.openings - error)
+            found.append(distance_to(point, a, b) - device.clearances.openings - error)
     return min(found)
+
+
+def distance_to(point, a, b):
+    """From a point to a segment."""
+    t = min(1.0, max(0.0, ((point - a) @ (b - a)) / ((b - a) @ (b - a))))
+    return hypot(*(point - a - t * (b - a)))
 
 
 def grazing_slack(lens, end, other, least):

@@ -6,7 +6,7 @@ the directions b - H/2 and b + H/2. Floor and wall are added up over the directi
 so that what lies between two directions is the difference of two running sums.
 """
 
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from math import inf, pi
 
@@ -37,7 +37,7 @@ class Aim:
     bearing
         Where the middle of its field points, radians from the x axis, from -pi to pi.
     floor, wall
-        The fractions, 0 to 1, of the floor's area and of the length of all walls (openings too) that it sees.
+        The fractions, 0 to 1, of the floor's area and of the length of the walls (openings too) that it sees.
     """
 
     bearing: float
@@ -45,17 +45,20 @@ class Aim:
     wall: float
 
 
-def best_aim(room: Room, lens: Floats, field: float, reach: float = inf) -> Aim:
-    """Return the aim that sees most floor, to half a degree; of equals the one in the middle of them."""
+def best_aim(room: Room, lens: Floats, field: float, reach: float = inf, but: Sequence[WallRef] = ()) -> Aim:
+    """Return the aim that sees most floor, to half a degree; of equals the one in the middle of them.
+
+    ``but`` names walls that are left out of the fraction of walls: those that the device is fixed to.
+    """
     bearings = np.linspace(-pi, pi, STEPS, endpoint=False)
-    floor, wall = _Sweep(room, lens, reach).aims(bearings, min(field, 2 * pi))
+    floor, wall = _Sweep(room, lens, reach, but).aims(bearings, min(field, 2 * pi))
     best = _middle_of_the_best(floor)
     return Aim(float(bearings[best]), float(floor[best]), float(wall[best]))
 
 
 def seen_from(room: Room, lens: Floats, bearing: float, field: float, reach: float = inf) -> Aim:
     """Return what is seen with a given aim."""
-    floor, wall = _Sweep(room, lens, reach).aims(np.array([bearing]), min(field, 2 * pi))
+    floor, wall = _Sweep(room, lens, reach, ()).aims(np.array([bearing]), min(field, 2 * pi))
     return Aim(bearing, float(floor[0]), float(wall[0]))
 
 
@@ -75,15 +78,16 @@ def _middle_of_the_best(seen: Floats) -> int:
 class _Sweep:
     """The floor and the wall seen between two directions from one lens, as fractions of the room's."""
 
-    def __init__(self, room: Room, lens: Floats, reach: float) -> None:
+    def __init__(self, room: Room, lens: Floats, reach: float, but: Sequence[WallRef]) -> None:
         view = view_from(room.rings, lens)
-        region, pieces = view.region - lens, _wall_pieces(room, view) - lens
+        counted = np.array([WallRef(*wall) not in but for wall in view.walls.tolist()], dtype=bool)
+        region, pieces = view.region - lens, _wall_pieces(room, view)[counted] - lens
         self.floor = _Running(region, np.roll(region, -1, axis=0), reach, _area_within)
         self.wall = _Running(pieces[:, 0], pieces[:, 1], reach, _length_within)
         self.floor_area = room.area
-        self.wall_length = sum(
-            float(np.hypot(*(np.roll(ring, -1, axis=0) - ring).T).sum()) for ring in room.rings
-        )
+        every = [WallRef(k, edge) for k, ring in enumerate(room.rings) for edge in range(len(ring))]
+        ends = np.array([room.wall_ends(wall) for wall in every if wall not in but])
+        self.wall_length = float(np.hypot(*(ends[:, 1] - ends[:, 0]).T).sum())
 
     def aims(self, bearings: Floats, field: float) -> tuple[Floats, Floats]:
         """The fractions of floor and of wall seen with each bearing."""

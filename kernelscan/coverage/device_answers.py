@@ -82,11 +82,12 @@ def _obstruction(
 ) -> tuple[Obstruction, Found]:
     """The one limit without which the device would cover the room, and the places where it then would."""
     lifted: dict[Obstruction, Limits] = {
-        "field": replace(limits, field=2 * pi),
         "reach": replace(limits, reach=inf),
         "distance": replace(limits, distance=0.0),
         "grazing": replace(limits, grazing=0.0),
         "clearance": replace(limits, from_openings=0.0, from_fixtures=()),
+        # Last: with a field of any width a wall would do, which says little of a device meant for a corner.
+        "field": replace(limits, field=2 * pi),
         "several": replace(limits, field=2 * pi, reach=inf, distance=0.0, grazing=0.0),
     }
     for name, without in lifted.items():
@@ -105,9 +106,9 @@ def _spots(
         if fixing in {"ceiling", "floor"} and area is not None:
             yield _area_spot(room, device, fixing, area, step, near)
         elif fixing == "wall" and walls:
-            yield _place_spot(room, device, limits, *_chosen(walls, near), step)
+            yield _place_spot(room, device, limits, *_chosen(walls, near), step, near)
         elif fixing == "corner" and nooks:
-            yield _place_spot(room, device, limits, *_chosen(nooks, near), 0.0)
+            yield _place_spot(room, device, limits, *_chosen(nooks, near), 0.0, near)
 
 
 def _chosen(places: Iterable[Place], near: Floats | None) -> tuple[Place, Floats]:
@@ -130,7 +131,7 @@ def _area_spot(
     room: Room, device: Device, fixing: Fixing, area: PlanZone, step: float, near: Floats | None
 ) -> DeviceSpot:
     best = area.best() if near is None else area.nearest(near)
-    rounded = on_grid(room, best, step, lambda point: float(area.tolerances(point[None])[0]))
+    rounded = on_grid(room, best, step, lambda point: float(area.tolerances(point[None])[0]), near=near)
     point = best if rounded is None else rounded
     tolerance = float(area.tolerances(point[None])[0])
     return _spot(
@@ -139,12 +140,18 @@ def _area_spot(
 
 
 def _place_spot(
-    room: Room, device: Device, limits: Limits, place: Place, best: Floats, step: float
+    room: Room,
+    device: Device,
+    limits: Limits,
+    place: Place,
+    best: Floats,
+    step: float,
+    near: Floats | None,
 ) -> DeviceSpot:
     rounded = None
     if step > 0:
         rounded = on_grid(
-            room, best, step, lambda point: float(place.tolerances(point[None])[0]), place.walls
+            room, best, step, lambda point: float(place.tolerances(point[None])[0]), place.walls, near
         )
     point = best if rounded is None else rounded
     return _spot(
@@ -216,6 +223,7 @@ def _partial_spots(room: Room, device: Device, limits: Limits, found: Found) -> 
         for place in walls if fixing == "wall" else nooks if fixing == "corner" else ():
             point = place.best()
             lens = point + place.inward
-            aim = best_aim(room, _just_inside(lens, place.bearing), limits.field, limits.reach)
+            eye = _just_inside(lens, place.bearing)
+            aim = best_aim(room, eye, limits.field, limits.reach, place.walls)
             spots.append(PartialSpot(fixing, place.walls, point, lens, aim))
     return tuple(sorted(spots, key=lambda spot: -round(spot.aim.floor, 6)))

@@ -6,7 +6,7 @@ from kernelscan.coverage.device_spots import DeviceAnswer, DeviceSpot
 from kernelscan.coverage.setting_out import Offset, SettingOut
 from kernelscan.coverage.wall_names import face_name
 from kernelscan.coverage.wording import Custom
-from kernelscan.plan import Room
+from kernelscan.plan import Room, WallRef
 
 __all__ = ["OBSTRUCTIONS", "aim_in_words", "set_out_in_words", "shortfall_in_words"]
 
@@ -52,7 +52,9 @@ def set_out_in_words(room: Room, plan: SettingOut, custom: Custom) -> str:
 def _offset_in_words(room: Room, plan: SettingOut, offset: Offset, custom: Custom) -> str:
     face = face_name(room, offset.wall, custom)
     if plan.by == "corners":
-        return f"{_tape(offset.distance, custom)} from the first corner of {face}"
+        before = WallRef(0, (offset.wall.edge - 1) % len(room.outline))
+        corner = f"the corner of {face_name(room, before, custom)} and {face}"
+        return f"{_tape(offset.distance, custom)} from {corner}"
     return f"{_tape(offset.distance, custom)} from {face}" if offset.distance > ON_FACE else f"on {face}"
 
 

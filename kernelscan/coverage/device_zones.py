@@ -1,8 +1,8 @@
 """Where a given device may be mounted so that it covers the whole room, and the best place there.
 
 The conditions are those of :mod:`kernelscan.coverage.limits`. In plan they are half-planes (each wall moved inward by
-the distance asked for and turned by the grazing angle), discs (the reach about every corner) and, for clearances
-from openings, capsules to stay out of. Under a ceiling or on a stand the zone is an area; on a wall it is what the
+the placing error and turned by the grazing angle), discs (the reach about every corner) and, for distances from walls
+and clearances, capsules to stay out of. Under a ceiling or on a stand the zone is an area; on a wall it is what the
 conditions leave of the line along which the lens slides; a corner is one lens position.
 """
 
@@ -17,7 +17,7 @@ import numpy.typing as npt
 from kernelscan.coverage.depth import deepest_along, line_depths
 from kernelscan.coverage.limits import Limits
 from kernelscan.coverage.surfaces import corners, runs, solid_spans, walls_along, without
-from kernelscan.geometry.halfplanes import HalfPlanes, half_planes, wall_half_planes
+from kernelscan.geometry.halfplanes import half_planes, wall_half_planes
 from kernelscan.geometry.intersection import intersect
 from kernelscan.plan import Fixing, Room, WallRef
 
@@ -27,7 +27,6 @@ __all__ = [
     "conditions",
     "corner_places",
     "free_conditions",
-    "strict_half_planes",
     "wall_places",
 ]
 
@@ -46,8 +45,9 @@ class Conditions:
         ``(k, 2)``: the wall [ring, edge] that each line comes from.
     corners, reach
         ``(n, 2)`` the room's corners, each at most the reach away.
-    keep_out, margins
-        ``(m, 2, 2)`` segments, and how far at least the point of fixing is from each, ``(m,)``.
+    keep_out, margins, of_lens
+        ``(m, 2, 2)`` segments; how far at least the device is from each, ``(m,)``; and whether that is measured from
+        the lens, ``(m,)``, or from the point of fixing.
     """
 
     lines: Floats
@@ -56,6 +56,7 @@ class Conditions:
     reach: float
     keep_out: Floats
     margins: Floats
+    of_lens: npt.NDArray[np.bool_]
 
     def slack(self, lenses: Floats) -> Floats:
         """Return by how much each lens position, ``(m, 2)``, is within all but the clearances: negative outside."""
@@ -67,9 +68,10 @@ class Conditions:
         offsets = lenses[:, None] - self.corners
         return np.asarray(np.hypot(offsets[..., 0], offsets[..., 1]).max(axis=1))
 
-    def clear_of(self, points: Floats) -> Floats:
-        """Return by how much each point of fixing, ``(m, 2)``, is clear of what it must stay away from."""
+    def clear_of(self, points: Floats, lenses: Floats) -> Floats:
+        """Return by how much each point of fixing with its lens, ``(m, 2)`` both, is clear of what it must be."""
         distances = _distances_to_segments(points, self.keep_out)
+        distances[:, self.of_lens] = _distances_to_segments(lenses, self.keep_out[self.of_lens])
         return np.asarray((distances - self.margins).min(axis=1, initial=inf))
 
     def common_corners(self) -> Floats:
@@ -125,7 +127,8 @@ class Place:
 
     def tolerances(self, points: Floats) -> Floats:
         """Return by how much each point of fixing on it may be missed, along the wall or off it; ``(m,)``."""
-        slack = np.minimum(self.conditions.slack(points + self.inward), self.conditions.clear_of(points))
+        lenses = points + self.inward
+        slack = np.minimum(self.conditions.slack(lenses), self.conditions.clear_of(points, lenses))
         if self.fixing == "corner":
             return np.asarray(slack)
         start, end = self.ends
@@ -135,8 +138,7 @@ class Place:
 
 def free_conditions(room: Room, limits: Limits) -> Conditions:
     """Return the conditions for a lens that is fixed to no wall: under a ceiling or on a stand."""
-    strict = strict_half_planes(room, limits)
-    return _conditions(room, limits, _lines(strict.rows), strict.walls)
+    return conditions(room, limits, ())
 
 
 def conditions(room: Room, limits: Limits, fixed_to: Sequence[WallRef]) -> Conditions:
@@ -145,21 +147,14 @@ def conditions(room: Room, limits: Limits, fixed_to: Sequence[WallRef]) -> Condi
     # For plain walls t -> h is the wall itself, with nothing rounded.
     plain_lines = plain.rows[:, 2:].reshape(-1, 2, 2)
     along = walls_along(room, fixed_to, plain_lines)
-    spared = {WallRef(*wall) for wall in plain.walls[along].tolist()} | set(fixed_to)
-    strict = strict_half_planes(room, limits)
-    kept = np.array([WallRef(*wall) not in spared for wall in strict.walls.tolist()], dtype=bool)
-    hiding = np.array([WallRef(*wall) in spared for wall in plain.walls.tolist()], dtype=bool) & ~along
+    spared = along | np.array([WallRef(*wall) in set(fixed_to) for wall in plain.walls.tolist()], dtype=bool)
+    strict = wall_half_planes(room.rings, limits.placing_error, limits.grazing)
+    kept = np.tile(~spared, len(strict) // len(plain))
+    hiding = spared & ~along
     lines = np.concatenate([_lines(strict.rows[kept]), plain_lines[hiding]])
-    return _conditions(room, limits, lines, np.concatenate([strict.walls[kept], plain.walls[hiding]]))
-
-
-def strict_half_planes(room: Room, limits: Limits) -> HalfPlanes:
-    """Return the half-planes of all walls under the limits: moved inward, and turned if there is a grazing angle."""
-    moved = wall_half_planes(room.rings, limits.distance)
-    if not limits.grazing:
-        return moved
-    turned = wall_half_planes(room.rings, limits.placing_error, limits.grazing)
-    return HalfPlanes(np.concatenate([moved.rows, turned.rows]), np.concatenate([moved.walls, turned.walls]))
+    walls = np.concatenate([strict.walls[kept], plain.walls[hiding]])
+    segments, margins, of_lens = _keep_out(room, limits, plain_lines[~spared])
+    return Conditions(lines, walls, np.concatenate(room.rings), limits.reach, segments, margins, of_lens)
 
 
 def wall_places(room: Room, limits: Limits, smooth: float) -> Iterator[Place]:
@@ -194,19 +189,23 @@ def corner_places(room: Room, limits: Limits, smooth: float) -> Iterator[Place]:
             yield place
 
 
-def _conditions(room: Room, limits: Limits, lines: Floats, walls: npt.NDArray[np.int64]) -> Conditions:
+def _keep_out(room: Room, limits: Limits, walls: Floats) -> tuple[Floats, Floats, npt.NDArray[np.bool_]]:
+    """The segments to keep away from, by how much, and whether from the lens: first the walls, then the rest."""
+    keep_out = list(walls) if limits.distance > limits.placing_error else []
+    margins = [limits.distance] * len(keep_out)
+    from_lens = len(keep_out)
     openings = [
         opening for opening in room.openings if opening.kind != "feature" and limits.from_openings > 0
     ]
-    keep_out = [room.opening_ends(opening) for opening in openings]
-    margins = [limits.from_openings] * len(keep_out)
+    keep_out += [room.opening_ends(opening) for opening in openings]
+    margins += [limits.from_openings] * len(openings)
     for pattern, distance in limits.from_fixtures:
         for fixture in room.fixtures:
             if fnmatchcase(fixture.name.casefold(), pattern.casefold()):
                 keep_out.append(np.array([fixture.centre, fixture.centre]))
                 margins.append(fixture.radius + distance)
     segments = np.array(keep_out, dtype=np.float64).reshape(-1, 2, 2)
-    return Conditions(lines, walls, np.concatenate(room.rings), limits.reach, segments, np.array(margins))
+    return segments, np.array(margins, dtype=np.float64), np.arange(len(segments)) < from_lens
 
 
 def _lines(rows: Floats) -> Floats:
@@ -238,8 +237,10 @@ def _intervals(
         near, far = _within_disc(p, q, corner, needed.reach)
         low, high = max(low, near), min(high, far)
     left = [(max(low, start), min(high, end)) for start, end in solid]
-    for segment, margin in zip(needed.keep_out, needed.margins.tolist(), strict=True):
-        left = without(left, _within_capsule(a, b, segment, margin))
+    for segment, margin, of_lens in zip(
+        needed.keep_out, needed.margins.tolist(), needed.of_lens, strict=True
+    ):
+        left = without(left, _within_capsule(*((p, q) if of_lens else (a, b)), segment, margin))
     return [part for part in left if part[0] <= part[1]]
 
 

@@ -10,7 +10,7 @@ From a lens at L, well aimed, a device covers a room when
   straight angle on a wall, the interior angle in a corner.
 
 The walls it is fixed to, and what lies no deeper than the lens stands off from them, are left out: they are seen along.
-Distances to walls are measured to their lines. All this must hold wherever within the placing error L ends up.
+All this must hold wherever within the placing error L ends up.
 
 Density is taken at the distance of the farthest corner; the depth that the pinhole's formula asks for is never more
 than that, so the true density there is never less. The vertical field is taken on the axis.

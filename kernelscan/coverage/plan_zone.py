@@ -75,7 +75,7 @@ class PlanZone:
 
     def tolerances(self, points: Floats) -> Floats:
         """Return by how much each position, ``(m, 2)``, may be missed: negative outside the zone."""
-        return np.asarray(np.minimum(self.conditions.slack(points), self.conditions.clear_of(points)))
+        return np.asarray(np.minimum(self.conditions.slack(points), self.conditions.clear_of(points, points)))
 
 
 def plan_zone(room: Room, limits: Limits) -> PlanZone | None:

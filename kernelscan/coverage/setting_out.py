@@ -101,6 +101,7 @@ def on_grid(
     step: float,
     allowed: Callable[[Floats], float],
     on: Sequence[WallRef] = (),
+    near: Floats | None = None,
 ) -> Floats | None:
     """Return the point nearby whose distances are multiples of a step and that is best, or ``None`` if none will do.
 
@@ -114,6 +115,8 @@ def on_grid(
         Gives for a point by how much it may be missed; below 0 it may not be used.
     on
         The wall that the point must stay on, if it is fixed to one.
+    near
+        A spot, ``(2,)``, to which the point is rather to be near than to be good.
     """
     plan = setting_out(room, point, on)
     if plan.by != "faces" or step <= 0:
@@ -124,8 +127,10 @@ def on_grid(
         for offset in plan.offsets
     ]
     points = [_from_faces(room, walls, distances) for distances in product(*choices)]
-    best = max(points, key=lambda each: (round(allowed(each), 9), -hypot(*(each - point))))
-    return best if allowed(best) >= 0 else None
+    usable = [each for each in points if allowed(each) >= 0]
+    if near is not None:
+        return min(usable, key=lambda each: hypot(*(each - near)), default=None)
+    return max(usable, key=lambda each: (round(allowed(each), 9), -hypot(*(each - point))), default=None)
 
 
 def _multiples(distance: float, step: float) -> tuple[float, ...]:

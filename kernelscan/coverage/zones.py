@@ -32,8 +32,9 @@ class Spot:
     farthest
         Distance in metres to the farthest corner of the room: the range that is needed.
     tolerance
-        How far, in metres, the device may be off and still see every wall: the distance to the nearest border
-        of the kernel other than the walls the device is fixed to.
+        How far, in metres, the device may be off and still have every wall in its line of sight: the distance to the
+        nearest border of the kernel other than the walls the device is fixed to. Off a corner or a wall the field
+        that is needed grows.
     walls
         The wall or the two walls it is fixed to; none under the ceiling.
     """

@@ -29,7 +29,7 @@ def print_device_choices(plan: Plan, answers: Sequence[RoomAnswer], out: TextIO)
         f"y ({unit})",
         "aim",
         "range",
-        "off by",
+        "sight within",
         "set out, or why not",
     )
     for of_room in answers:

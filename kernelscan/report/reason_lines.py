@@ -1,6 +1,7 @@
 """Why no point sees a room whole, and what small features were left out, in lines for a person."""
 
 from collections.abc import Iterator
+from math import ceil
 
 from kernelscan.coverage import RoomAnswer
 from kernelscan.coverage.features import Feature
@@ -14,6 +15,12 @@ __all__ = ["feature_lines", "reason_lines"]
 PATCHES = 3
 """How many hidden patches are told one by one."""
 
+TELLING = 1.0
+"""Metres: a room that falls short by more is not a matter of small features, and the figure tells a fitter nothing."""
+
+SLACK = 1e-6
+"""In the last place: what is whole but for its rounding is not pushed over."""
+
 
 def reason_lines(plan: Plan, answer: RoomAnswer) -> Iterator[str]:
     """Yield why no point of a room sees every wall, what would help, and the best point tried."""
@@ -21,19 +28,16 @@ def reason_lines(plan: Plan, answer: RoomAnswer) -> Iterator[str]:
     if reasons is None:
         return
     yield from reasons.because
-    yield f"It falls short by {_up_in_words(plan, reasons.shortfall)}: so far would every wall have to give way."
-    if reasons.least is not None and reasons.least.depth > 0:
-        depth = reasons.least.depth
-        yield f"With --ignore-depth {_advice(depth)} the outline would have points that see all the rest of it."
+    if 0 < reasons.shortfall <= TELLING:
+        yield f"It falls short by {_up_in_words(plan, reasons.shortfall)}: so far would every wall have to give way."
+    used = 0.0 if answer.tolerant is None else answer.tolerant.simplified.depth
+    if reasons.least is not None and reasons.least.depth > used:
+        advice = ceil(reasons.least.depth * 1000 - SLACK) / 1000
+        yield f"With --ignore-depth {advice:.3f} the outline would have points that see all the rest of it."
     yield (
         f"The {reasons.best.words} is {drawn_position(plan, reasons.best.point.tolist())}; "
         f"{_hidden(plan, reasons.hidden)}."
     )
-
-
-def _advice(depth: float) -> str:
-    """A depth in metres, rounded up to the millimetre, as the option takes it."""
-    return f"{-(-depth // 0.001) * 0.001 + 0.0:.3f}"
 
 
 def feature_lines(plan: Plan, answer: RoomAnswer) -> Iterator[str]:
@@ -71,4 +75,6 @@ def _hidden(plan: Plan, hidden: Hidden) -> str:
 
 
 def _up_in_words(plan: Plan, metres: float) -> str:
-    return tolerance_in_words(plan, metres + (0.0254 / 16 if plan.unit.imperial else 0.001))
+    """A length rounded up to the millimetre or the sixteenth of an inch."""
+    step = 0.0254 / 16 if plan.unit.imperial else 0.001
+    return tolerance_in_words(plan, ceil(metres / step - SLACK) * step)

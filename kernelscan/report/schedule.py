@@ -52,14 +52,13 @@ def schedule_csv(plan: Plan, answers: Sequence[RoomAnswer]) -> bytes:
     writer = csv.writer(text, lineterminator="\r\n")
     writer.writerow(SCHEDULE_COLUMNS)
     for answer in answers:
-        writer.writerows(_rows(plan, answer.zones, ""))
+        remark = ""
+        writer.writerows(_rows(plan, answer.zones, remark))
         if answer.tolerant is not None:
-            depth = answer.tolerant.simplified.depth
-            writer.writerows(
-                _rows(plan, answer.tolerant.zones, f"small features up to {depth:.3g} m left out")
-            )
+            remark = f"small features up to {answer.tolerant.simplified.depth:.3g} m left out"
+            writer.writerows(_rows(plan, answer.tolerant.zones, remark))
         for of_device in answer.devices:
-            writer.writerows(_device_rows(plan, answer.zones, of_device))
+            writer.writerows(_device_rows(plan, (answer.tolerant or answer).zones, of_device, remark))
     return text.getvalue().encode("utf-8-sig")
 
 
@@ -98,7 +97,7 @@ def _rows(plan: Plan, zones: RoomZones, remark: str) -> Iterator[list[str]]:
         ]
 
 
-def _device_rows(plan: Plan, zones: RoomZones, answer: DeviceAnswer) -> Iterator[list[str]]:
+def _device_rows(plan: Plan, zones: RoomZones, answer: DeviceAnswer, remark: str) -> Iterator[list[str]]:
     """The spots of one device, or what it falls short by."""
     name = answer.device.name
     for spot in answer.spots:
@@ -112,10 +111,10 @@ def _device_rows(plan: Plan, zones: RoomZones, answer: DeviceAnswer) -> Iterator
             _down(spot.tolerance, 3),
             "" if spot.density is None else _down(spot.density, 1),
             _harmless(set_out_in_words(answer.room, spot.setting_out, Custom(plan.unit.imperial))),
-            "",
+            remark,
         ]
     if not answer.spots:
-        yield [*_head(zones, name), *[""] * 11, shortfall_in_words(answer)]
+        yield [*_head(zones, name), *[""] * 11, "; ".join(filter(None, (remark, shortfall_in_words(answer))))]
 
 
 def _place(plan: Plan, point: np.ndarray) -> list[str]:
@@ -141,4 +140,4 @@ def _down(value: float, decimals: int) -> str:
 def _harmless(text: str) -> str:
     """Return text that no spreadsheet program takes for a formula."""
     line = plain_text(text)
-    return f"'{line}" if line[:1] in "=+-@|" else line
+    return f"'{line}" if line.startswith(("=", "+", "-", "@", "|")) else line

@@ -52,7 +52,7 @@ def print_zones(plan: Plan, answers: Sequence[RoomAnswer], out: TextIO) -> None:
         f"y ({unit})",
         "field",
         "range",
-        "may be off by",
+        "sight within",
     )
     for answer in answers:
         room = answer.room
