@@ -253,15 +253,14 @@ def _check_lengths(room: Walls, sides: Indices, corners: Corners) -> None:
 
 def _check_size(area: float, corners: Corners) -> None:
     """The area must be right to a part in 1e9; doubles are enough for that unless the kernel is thin or far away."""
-    steps = corners.vertices - corners.vertices[0]
-    x, y = steps.T
-    terms = x[:-1] * y[1:] - x[1:] * y[:-1]
-    reach = 2 * (corners.errors.max() + UNIT * np.abs(steps).max())
-    size = float(terms.sum()) / 2
-    error = reach * float(np.abs(steps).sum()) * 2 + 1e-12 * float(np.abs(terms).sum())
+    arms = corners.vertices - corners.vertices[0]
+    sides = np.roll(corners.vertices, -1, axis=0) - corners.vertices
+    twice = float((arms[:, 0] * sides[:, 1] - arms[:, 1] * sides[:, 0]).sum())
+    reach = float(np.abs(corners.vertices).max() + np.abs(arms).max())
+    size, error = twice / 2, 16 * UNIT * reach * float(np.abs(sides).sum()) + 1e-12 * twice
     if not error < 1e-10 * size < inf:
-        first, *others = (corners.corner(k) for k in range(len(steps)))
-        arms = [(p[0] - first[0], p[1] - first[1]) for p in others]
-        size = _nearest(sum((cross(p, q) for p, q in pairwise(arms)), Fraction(0)) / 2)
+        first, *others = (corners.corner(k) for k in range(len(arms)))
+        spokes = [(p[0] - first[0], p[1] - first[1]) for p in others]
+        size = _nearest(sum((cross(p, q) for p, q in pairwise(spokes)), Fraction(0)) / 2)
     if area != size and not abs(area - size) <= 1e-9 * size + SMALLEST:
         raise CertificateError(f"the area is {size}, not {area}")

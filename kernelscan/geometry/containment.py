@@ -84,10 +84,19 @@ class Walls:
         return cross((b[0] - a[0], b[1] - a[1]), (c[0] - a[0], c[1] - a[1]))
 
     def meeting(self, g: int, h: int) -> Point:
-        """Return where the lines of two walls meet; they must not be parallel."""
-        a, d, e = self.wall(g)[0], self.way(g), self.way(h)
-        t = -self.side(h, a) / cross(e, d)
-        return a[0] + t * d[0], a[1] + t * d[1]
+        """Return where the lines of two walls meet; they must not be parallel. Whole numbers are quicker here."""
+        (u, v, w), (r, s, t) = self._equation(g), self._equation(h)
+        q = u * s - r * v
+        return Fraction(v * t - s * w, q), Fraction(w * r - t * u, q)
+
+    def _equation(self, place: int) -> tuple[int, int, int]:
+        """Return whole numbers u, v, w with u x + v y + w = 0 on the line of a wall."""
+        ratios = [
+            number.as_integer_ratio() for number in (*self.starts[place].tolist(), *self.ends[place].tolist())
+        ]
+        unit = max(denominator for _, denominator in ratios)
+        ax, ay, bx, by = (numerator * (unit // denominator) for numerator, denominator in ratios)
+        return (ay - by) * unit, (bx - ax) * unit, ax * by - bx * ay
 
 
 @dataclass(frozen=True, slots=True, eq=False)

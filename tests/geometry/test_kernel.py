@@ -356,3 +356,47 @@ def test_coordinates_of_every_size_at_once() -> None:
 def test_refused(outline: list) -> None:
     with pytest.raises(GeometryError):
         visibility_kernel(outline)
+
+
+# Large rooms whose kernel is thin, and large rooms with holes.
+
+
+def split_exactly(outline: list, pieces: int) -> np.ndarray:
+    """Split each wall into equal parts, a power of two of them, so that nothing is rounded."""
+    points = np.array(outline, dtype=float)
+    ways = (np.roll(points, -1, axis=0) - points) / pieces
+    return (points[:, None] + np.arange(pieces)[None, :, None] * ways[:, None]).reshape(-1, 2)
+
+
+@pytest.mark.parametrize("outline", [L, CRANK, PINWHEEL, U], ids=["area", "segment", "point", "empty"])
+@pytest.mark.parametrize("pieces", [16, 64, 1024])
+@pytest.mark.parametrize("shear", [0.0, 0.5])
+def test_splitting_walls_many_times_changes_nothing(outline: list, pieces: int, shear: float) -> None:
+    points = np.array(outline, dtype=float) @ np.array([[1.0, shear], [0.0, 1.0]])
+    room = split_exactly(points.tolist(), pieces)
+    kernel = kernel_of_rings((room,))
+    whole = visibility_kernel(points)
+    assert (kernel.kind, set(kernel.rationals())) == (whole.kind, set(whole.rationals()))
+    assert kernel.area == whole.area
+    if pieces < 1024:
+        verify_kernel(room, kernel)
+
+
+def test_large_rooms_with_holes() -> None:
+    rng = np.random.default_rng(12)
+    outline = polygons.smooth_star(400) * 3
+    column = polygons.turned(np.array([(0.0, 0), (1, 0), (1, 1), (0, 1)]), 0.3)
+    round_column = polygons.polar(np.arange(100) * (2 * pi / 100), np.full(100, 0.7)) + np.array([-9.0, 1.0])
+    for holes in ([column], [round_column], [column + rng.uniform(2, 4, 2), round_column]):
+        kernel = agrees_with_oracle(as_rings(outline, holes))
+        assert kernel.kind == "empty"
+        verify_kernel(outline, kernel, holes)
+
+
+def test_large_room_with_a_niche_of_another_ring() -> None:
+    """A hole that is not a hole: rings are only walls to the kernel, so two rooms make one kernel of their walls."""
+    outer, inner = polygons.convex(100), polygons.convex(80) * 0.9
+    kernel = kernel_of_rings((outer, inner))
+    truth = exact_kernel([outer.tolist(), inner.tolist()])
+    assert set(kernel.rationals()) == set(truth.corners)
+    assert kernel.walls[:, 0].tolist() == [1] * 80
