@@ -7,6 +7,7 @@ from typing import Annotated
 import typer
 
 __all__ = [
+    "AsPdf",
     "DeviceFile",
     "DrawingPath",
     "DrawingUnit",
@@ -14,6 +15,16 @@ __all__ = [
     "Quiet",
     "RoomLayers",
     "RoomNames",
+    "RoomSheets",
+    "SheetApprover",
+    "SheetCreator",
+    "SheetDate",
+    "SheetDocumentType",
+    "SheetNumber",
+    "SheetOwner",
+    "SheetPaper",
+    "SheetScale",
+    "SheetTitle",
     "UnitChoice",
 ]
 
@@ -55,3 +66,32 @@ DeviceFile = Annotated[
     typer.Option("--devices", metavar="FILE.toml", help="The devices to place, see docs/devices.md."),
 ]
 Quiet = Annotated[bool, typer.Option("--quiet", "-q", help="Print nothing but errors.")]
+
+SheetPaper = Annotated[
+    str | None,
+    typer.Option("--paper", metavar="PAPER", help="A4 to A0, letter, ANSI B to ANSI E; else chosen."),
+]
+SheetScale = Annotated[
+    str | None,
+    typer.Option(
+        "--scale", metavar="SCALE", help='Such as 1:50, or 1/4" = 1\'-0"; else the largest that fits.'
+    ),
+]
+SheetOwner = Annotated[str, typer.Option("--owner", metavar="TEXT", help="Legal owner, for the title block.")]
+SheetNumber = Annotated[str, typer.Option("--number", metavar="TEXT", help="Document number.")]
+SheetTitle = Annotated[str, typer.Option("--title", metavar="TEXT", help="Title.")]
+SheetCreator = Annotated[str, typer.Option("--creator", metavar="TEXT", help="Created by.")]
+SheetApprover = Annotated[str, typer.Option("--approver", metavar="TEXT", help="Approved by.")]
+SheetDocumentType = Annotated[str, typer.Option("--document-type", metavar="TEXT", help="Document type.")]
+SheetDate = Annotated[
+    str | None,
+    typer.Option("--date", metavar="TEXT", help="Date of issue; today's if it is left out."),
+]
+RoomSheets = Annotated[
+    bool,
+    typer.Option("--room-sheets", help="Also a sheet for each room, with its dimensions."),
+]
+AsPdf = Annotated[
+    bool,
+    typer.Option("--pdf", help="Also all sheets as one PDF; needs kernelscan[pdf]."),
+]

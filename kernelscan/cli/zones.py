@@ -1,6 +1,5 @@
 """``kernelscan zones``: each room's visibility kernel, and where one device may be mounted."""
 
-import re
 import sys
 from collections.abc import Sequence
 from datetime import date
@@ -11,15 +10,27 @@ import typer
 
 from kernelscan.cli.drawing import read_drawing, wanted_spot, with_rooms
 from kernelscan.cli.options import (
+    AsPdf,
     DeviceFile,
     DrawingPath,
     ObstacleLayers,
     Quiet,
     RoomLayers,
     RoomNames,
+    RoomSheets,
+    SheetApprover,
+    SheetCreator,
+    SheetDate,
+    SheetDocumentType,
+    SheetNumber,
+    SheetOwner,
+    SheetPaper,
+    SheetScale,
+    SheetTitle,
     UnitChoice,
 )
 from kernelscan.cli.progress import with_progress
+from kernelscan.cli.sheets import SHEET_NAMES, check_sheets, print_written, sheet_files
 from kernelscan.cli.writing import write_folder
 
 if TYPE_CHECKING:
@@ -27,8 +38,6 @@ if TYPE_CHECKING:
     from kernelscan.plan import Plan
 
 __all__ = ["zones"]
-
-SHEET_NAMES = re.compile(r"sheet-\d{2,}\.svg")
 
 
 def zones(
@@ -53,6 +62,17 @@ def zones(
             help="Leave out pilasters, niches and the like up to so deep.",
         ),
     ] = 0.0,
+    paper: SheetPaper = None,
+    scale: SheetScale = None,
+    owner: SheetOwner = "",
+    number: SheetNumber = "",
+    title: SheetTitle = "",
+    creator: SheetCreator = "",
+    approver: SheetApprover = "",
+    document_type: SheetDocumentType = "",
+    issued: SheetDate = None,
+    room_sheets: RoomSheets = False,
+    pdf: AsPdf = False,
     room: RoomNames = [],  # noqa: B006 - typer copies it
     room_layer: RoomLayers = [],  # noqa: B006
     obstacle_layer: ObstacleLayers = [],  # noqa: B006
@@ -60,8 +80,21 @@ def zones(
 ) -> None:
     """Find from where every wall of each room is seen; write the report and sheets."""
     from kernelscan.coverage import room_answer
+    from kernelscan.markup.options import SheetOptions
     from kernelscan.reading import read_devices
 
+    options = SheetOptions(
+        paper,
+        scale,
+        owner=owner,
+        number=number,
+        title=title,
+        creator=creator,
+        approver=approver,
+        document_type=document_type,
+        date=date.today().isoformat() if issued is None else issued,
+    )
+    check_sheets(options, pdf)
     wanted = read_devices(devices) if devices is not None else ()
     whole = read_drawing(plan_file, unit, room_layer, obstacle_layer)
     spot = wanted_spot(whole, near, towards)
@@ -70,28 +103,26 @@ def zones(
         room_answer(each, wanted, ignore_depth=ignore_depth, near=spot)
         for each in with_progress(plan.rooms, "rooms", quiet)
     ]
-    outdated = write_folder(out, _files(plan, answers), SHEET_NAMES)
+    files = _data_files(plan, answers) | sheet_files(plan, answers, options, room_sheets, pdf)
+    outdated = write_folder(out, files, SHEET_NAMES)
     if not quiet:
-        _print(plan, answers, out, outdated)
+        _print(plan, answers)
+        print_written(out, files, outdated)
 
 
-def _files(plan: "Plan", answers: Sequence["RoomAnswer"]) -> dict[str, bytes]:
+def _data_files(plan: "Plan", answers: Sequence["RoomAnswer"]) -> dict[str, bytes]:
     from kernelscan.markup.dxf import zones_dxf
-    from kernelscan.markup.sheet import SheetOptions, compose_zone_sheets
-    from kernelscan.markup.svg import svg_text
     from kernelscan.report.document import report_text, zones_report
     from kernelscan.report.schedule import schedule_csv
 
-    sheets = compose_zone_sheets(plan, answers, SheetOptions(date=date.today().isoformat()))
     return {
         "report.json": report_text(zones_report(plan, answers)).encode(),
         "schedule.csv": schedule_csv(plan, answers),
         "markup.dxf": zones_dxf(plan, answers).encode(),
-        **{f"sheet-{number:02}.svg": svg_text(sheet).encode() for number, sheet in enumerate(sheets, 1)},
     }
 
 
-def _print(plan: "Plan", answers: Sequence["RoomAnswer"], out: Path, outdated: Sequence[str]) -> None:
+def _print(plan: "Plan", answers: Sequence["RoomAnswer"]) -> None:
     from kernelscan.coverage.cautions import cautions_for
     from kernelscan.report.device_choices import print_device_choices
     from kernelscan.report.tables import print_problems, print_reasons, print_zones
@@ -100,8 +131,5 @@ def _print(plan: "Plan", answers: Sequence["RoomAnswer"], out: Path, outdated: S
     print_reasons(plan, answers, sys.stdout)
     print_device_choices(plan, answers, sys.stdout)
     print_problems(plan, sys.stdout)
-    if outdated:
-        print(f"Removed from an earlier run: {', '.join(outdated)}")
-    print(f"Written to {out}: sheet-01.svg and on, schedule.csv, markup.dxf, report.json")
     kinds = {each.device.kind: None for answer in answers for each in answer.devices}
     print("Caution: " + " ".join(cautions_for(kinds)))

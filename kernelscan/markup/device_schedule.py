@@ -37,7 +37,7 @@ def device_schedule(rooms: Sequence[ShownRoom], custom: Custom) -> Schedule:
         name=0,
         name_width=ROOM_WIDTH,
         remark=2,
-        least=TITLE_WIDTH,
+        least=TITLE_WIDTH - 2.0,
     )  # fmt: skip
     return measured(form, [_entry(room, custom) for room in rooms])
 

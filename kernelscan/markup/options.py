@@ -2,9 +2,10 @@
 
 from dataclasses import dataclass
 
+from kernelscan.markup.paper import paper_by_name, scale_by_text
 from kernelscan.tolerances import Tolerances
 
-__all__ = ["SheetOptions"]
+__all__ = ["SheetOptions", "check_options"]
 
 
 DEFAULT_TOLERANCES = Tolerances()
@@ -36,3 +37,11 @@ class SheetOptions:
     approver: str = ""
     document_type: str = ""
     tolerances: Tolerances = DEFAULT_TOLERANCES
+
+
+def check_options(options: SheetOptions) -> None:
+    """Raise ``InputError`` where there is no such paper or scale, before any work is done for it."""
+    if options.paper is not None:
+        paper_by_name(options.paper)
+    if options.scale is not None:
+        scale_by_text(options.scale)

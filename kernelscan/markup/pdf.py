@@ -10,6 +10,7 @@ question marks.
 import io
 from collections.abc import Sequence
 from functools import cache
+from importlib.util import find_spec
 from math import degrees
 from typing import TYPE_CHECKING, Any
 
@@ -21,8 +22,9 @@ from kernelscan.markup.text import clean_text
 if TYPE_CHECKING:
     from reportlab.pdfgen.canvas import Canvas
 
-__all__ = ["pdf_bytes"]
+__all__ = ["check_library", "pdf_bytes"]
 
+MISSING = 'PDF needs one more library: pip install "kernelscan[pdf]"'
 POINTS_PER_MM = 72 / 25.4
 BASE_FONTS = {False: "Helvetica", True: "Helvetica-Bold"}
 FONT_FILES = {
@@ -30,6 +32,12 @@ FONT_FILES = {
     True: ("LiberationSans-Bold", "DejaVuSans-Bold", "arialbd", "Arial Bold", "NotoSans-Bold"),
 }
 """Where characters beyond the Latin ones are looked for, by file name, in the system's font folders."""
+
+
+def check_library() -> None:
+    """Raise ``InputError`` where the library is not installed, before any work is done for it."""
+    if find_spec("reportlab") is None:
+        raise InputError(MISSING)
 
 
 def pdf_bytes(scenes: Sequence[Scene]) -> bytes:
@@ -40,10 +48,9 @@ def pdf_bytes(scenes: Sequence[Scene]) -> bytes:
     InputError
         When the library is not installed.
     """
-    try:
-        from reportlab.pdfgen.canvas import Canvas
-    except ImportError as error:
-        raise InputError('PDF needs one more library: pip install "kernelscan[pdf]"') from error
+    check_library()
+    from reportlab.pdfgen.canvas import Canvas
+
     stream = io.BytesIO()
     canvas = Canvas(stream, invariant=1, pageCompression=1)
     if scenes:

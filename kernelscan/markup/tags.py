@@ -202,28 +202,29 @@ def _letters(shown: ShownRoom, view: PlanView) -> Iterator[tuple[Label, Point, b
 
 
 def _place_letter(letter: Label, at: Point, needed: bool, place: _Place, tags: Tags) -> None:
-    """Place the letter of a point or a wall beside it, in its own room and off the zones' borders if it can."""
+    """Place the letter of a point or a wall: beside it in its own room, there at the end of a leader, or elsewhere."""
     near = list(boxes_around(at, letter, NEAR, directions=16))
-    within, roomy = (
-        [
-            box
-            for box, wholly in zip(near, boxes_inside(place.rings, np.array(near) + border), strict=True)
-            if wholly
-        ]
-        for border in (0.0, BAND)
-    )
+    within, roomy = (_those_inside(place, near, border) for border in (0.0, BAND))
     shy = [box for box in roomy if tags.shy.takes(box)]
-    for box in (*shy, *roomy, *within, *(near if needed else ())):
+    for box in (*shy, *roomy, *within):
         if tags.taken.takes(box):
             tags.put(letter, box)
             return
     if not needed:
         return
-    for box in boxes_around(at, letter, FAR, directions=16):
+    far = list(boxes_around(at, letter, FAR, directions=16))
+    tied = [box for box in _those_inside(place, far, EDGE) if tags.taken.takes_line(at, nearest_in(at, box))]
+    for box in (*tied, *near, *far):
         if tags.taken.takes(box):
             tags.put(letter, box, at)
             return
     tags.missing.append(f"{place.shown.room.id} {letter.lines[0].string}")
+
+
+def _those_inside(place: _Place, boxes: list[Box], border: np.ndarray | float) -> list[Box]:
+    """Return the boxes that lie in a room with a border around them."""
+    inside = boxes_inside(place.rings, np.array(boxes) + border)
+    return [box for box, wholly in zip(boxes, inside, strict=True) if wholly]
 
 
 def _variants(shown: ShownRoom, custom: Custom) -> Iterator[Label]:

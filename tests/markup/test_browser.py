@@ -19,6 +19,7 @@ from kernelscan.markup.room_sheets import compose_room_sheets
 from kernelscan.markup.scene import Box, Scene
 from kernelscan.markup.sheet import SheetOptions, compose_zone_sheets
 from kernelscan.markup.svg import svg_text
+from kernelscan.reading import read_devices
 
 MEASURE = """
 const svgs = [...document.querySelectorAll("svg")];
@@ -74,11 +75,18 @@ def found_by(browser: Callable[..., str], page: Path, body: str, script: str) ->
 
 
 def sheets_of_samples(folder: Path) -> dict[str, Scene]:
+    """Return the sheets of every sample, with the devices of its device file where it has one."""
     sheets = {}
     for path in sorted(folder.glob("*.dxf")):
         plan = read_plan(path)
-        for i, sheet in enumerate(compose_zone_sheets(plan, [room_answer(room) for room in plan.rooms]), 1):
-            sheets[f"{path.stem}-{i}"] = sheet
+        file = folder / f"{path.stem.partition('-')[0]}-devices.toml"
+        for kind, devices, depth in (
+            ("plain", (), 0.0),
+            ("full", read_devices(file) if file.exists() else (), 0.3),
+        ):
+            answers = [room_answer(room, devices, ignore_depth=depth) for room in plan.rooms]
+            composed = [*compose_zone_sheets(plan, answers), *compose_room_sheets(plan, answers)]
+            sheets |= {f"{path.stem}-{kind}-{i}": sheet for i, sheet in enumerate(composed, 1)}
     return sheets
 
 
