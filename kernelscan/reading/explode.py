@@ -94,6 +94,7 @@ class _Walk:
         self.off = {name for name, layer in self.layers.items() if layer.is_off()}
         self.frozen = {name for name, layer in self.layers.items() if layer.is_frozen()}
         self.names: dict[str, str] = {}
+        self.states: dict[str, tuple[bool, bool]] = {}
         self.hidden: Counter[str] = Counter()
         self.unread: Counter[tuple[str, str]] = Counter()
         self.drawn: dict[tuple[str, int], _Drawn] = {}
@@ -109,12 +110,7 @@ class _Walk:
 
     def _take(self, entity: DXFEntity, into: _Drawn, path: tuple[str, ...], fineness: int) -> None:
         layer, kind = entity.dxf.layer, entity.dxftype()
-        folded = layer.casefold()
-        if (
-            folded in self.frozen
-            or (folded in self.off and kind != "INSERT")
-            or (entity.dxf.hasattr("invisible") and entity.dxf.invisible)
-        ):
+        if self._is_hidden(layer, kind) or (entity.dxf.hasattr("invisible") and entity.dxf.invisible):
             self.hidden[layer] += 1
             return
         try:
@@ -134,6 +130,13 @@ class _Walk:
                 f"{kind} left out: {clean_text(str(fault))[:100] or type(fault).__name__}",
                 entity,
             )
+
+    def _is_hidden(self, layer: str, kind: str) -> bool:
+        if layer not in self.states:
+            folded = layer.casefold()
+            self.states[layer] = folded in self.frozen, folded in self.off
+        frozen, off = self.states[layer]
+        return frozen or (off and kind != "INSERT")
 
     def _flatten(self, entity: DXFEntity, into: _Drawn, path: tuple[str, ...], fineness: int) -> None:
         kind, layer, handle = entity.dxftype(), self._name(entity.dxf.layer), entity.dxf.handle or ""

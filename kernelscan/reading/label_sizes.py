@@ -36,6 +36,7 @@ _INCHES = r"(?P<{0}i>\d+(?:\.\d+)?)(?:\s+(?P<{0}n>\d+)/(?P<{0}d>\d+))?\s*(?:[\"�
 _FEET = r"(?P<{0}f>\d+(?:\.\d+)?)\s*['’′]\s*-?\s*(?:" + _INCHES + ")?"
 _FEET_PAIR = re.compile(rf"^\W*{_FEET.format('a')}\s*[x×X]\s*{_FEET.format('b')}\W*$")
 _ONE_LENGTH = re.compile(rf"^\W*{_FEET.format('a')}\W*$")
+_DIGIT = re.compile(r"\d")
 _NUMBER = r"\d+(?:[.,]\d+)?"
 _METRE_PAIR = re.compile(rf"^\W*({_NUMBER})\s*(mm|cm|m)?\s*[x×X]\s*({_NUMBER})\s*(mm|cm|m)?\W*$")
 _AREA_UNIT = r"m2|m²|m\^2|sq\.?\s*m|qm|mq|sqm|sq\.?\s*ft\.?|sqft|s\.?f\.?|ft2|ft²"
@@ -49,9 +50,9 @@ _IN_METRES = {"mm": 0.001, "cm": 0.01, "m": 1.0, None: 1.0}
 
 def stated_size(text: str) -> StatedSize | None:
     """Return the size that one line of a label states, or ``None`` when it states none."""
-    line = clean_text(text)
-    if not any(sign.isdigit() for sign in line):
+    if _DIGIT.search(text) is None:
         return None
+    line = clean_text(text)
     return _feet(line) or _metres(line) or _area(line)
 
 

@@ -26,6 +26,7 @@ NOTE_WORDS = frozenset({"note", "notes", "dim", "dims", "dimension", "dimensions
 NAME_WORDS = frozenset(
     {"area", "iden", "room", "rooms", "label", "labels", "tag", "tags", "name", "names", "raum", "space"}
 )
+_SIGN = re.compile(r"[^\W_]")
 _LETTERS = re.compile(r"[^\W\d_]{2,}")
 
 
@@ -122,7 +123,7 @@ def _says_name(label: Label) -> bool:
 
 
 def _is_name(line: str) -> bool:
-    return "=" not in line and stated_size(line) is None and any(sign.isalnum() for sign in line)
+    return "=" not in line and _SIGN.search(line) is not None and stated_size(line) is None
 
 
 def _name_of(stack: Sequence[Label]) -> str:

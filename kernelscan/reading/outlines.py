@@ -120,7 +120,10 @@ def _distinct_points(rings: Sequence[np.ndarray], snaps: Sequence[float]) -> lis
     ends = starts + counts - 1
     back = np.hypot(*(points[ends] - points[starts]).T) <= np.array(snaps)
     keep[ends[back & (counts > 3)]] = False
-    return [points[s : s + n][keep[s : s + n]] for s, n in zip(starts.tolist(), counts.tolist(), strict=True)]
+    spans = zip(starts.tolist(), counts.tolist(), strict=True)
+    if keep.all():
+        return [points[s : s + n] for s, n in spans]
+    return [points[s : s + n][keep[s : s + n]] for s, n in spans]
 
 
 def _read_only(points: np.ndarray, area: float) -> Ring:

@@ -3,6 +3,9 @@
 Everything up to the rooms is in drawing units; from the outlines on, everything is in metres.
 """
 
+import gc
+from collections.abc import Iterator
+from contextlib import contextmanager
 from os import PathLike
 from pathlib import Path
 
@@ -60,7 +63,25 @@ def read_plan(
     InputError
         If the file cannot be read as a drawing, or says no unit and none is given; the text is one line.
     """
-    file = Path(path)
+    with _uncollected():
+        return _read(Path(path), unit, layers, tolerances, window)
+
+
+@contextmanager
+def _uncollected() -> Iterator[None]:
+    """Pause the collector of cyclic garbage, which would look through the whole drawing again and again."""
+    was_on = gc.isenabled()
+    gc.disable()
+    try:
+        yield
+    finally:
+        if was_on:
+            gc.enable()
+
+
+def _read(
+    file: Path, unit: str | None, layers: LayerPatterns, tolerances: Tolerances, window: Window | None
+) -> Plan:
     drawing, repairs = open_drawing(file)
     said = drawing_unit(drawing, unit)
     contents = within_window(

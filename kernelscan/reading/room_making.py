@@ -12,6 +12,8 @@ from kernelscan.reading.drawn_openings import drawn_openings, with_drawn
 from kernelscan.reading.fixtures import fixtures_in_rings
 from kernelscan.reading.interpretation import Interpretation
 from kernelscan.reading.names import RoomLabel, labels_in_rings, room_label
+from kernelscan.reading.outlines import Outline
+from kernelscan.reading.strokes import Label
 
 __all__ = ["made_rooms"]
 
@@ -45,11 +47,10 @@ def made_rooms(
         outline = room.outline
         alone = on_layer[outline.stroke.layer] == 1 and room.closed_by == "outline"
         own_layer = outline.stroke.layer if alone else ""
-        x, y = outline.centre
         known = _openings(outline.ring, room.edges)
         more = drawn[number - 1]
         openings = with_drawn(known, more, outline.ring, thickest) if more else known
-        label = room_label(inside, (x / metres, y / metres))
+        label = _label(outline, inside, metres)
         name, name_from = _name(number, label, own_layer)
         rooms.append(
             Room(
@@ -64,18 +65,25 @@ def made_rooms(
                 closed_by=room.closed_by,
             )
         )
-        problems += _size_problems(rooms[-1], label, (x, y))
+        problems += _size_problems(rooms[-1], label, outline)
     return tuple(rooms), problems
 
 
-def _size_problems(room: Room, label: RoomLabel, at: tuple[float, float]) -> list[Problem]:
+def _label(outline: Outline, inside: Sequence[Label], metres: float) -> RoomLabel:
+    if len(inside) < 2:
+        return room_label(inside)
+    x, y = outline.centre
+    return room_label(inside, (x / metres, y / metres))
+
+
+def _size_problems(room: Room, label: RoomLabel, outline: Outline) -> list[Problem]:
     """Return a problem if the label states a size that differs from the measured one by more than 5 %."""
     stated = label.size
     if stated is None or abs(room.area - stated.area) <= STATED * stated.area:
         return []
     said = f"the label says {stated.text}, {stated.area:.2f} m2"
     text = f"{room.id} {room.name}: {said}, but {room.area:.2f} m2 were measured"
-    return [Problem("stated-size", text, at, room.source)]
+    return [Problem("stated-size", text, outline.centre, room.source)]
 
 
 def _openings(ring: np.ndarray, edges: Sequence[RoomEdge]) -> tuple[Opening, ...]:
