@@ -33,6 +33,8 @@ __all__ = [
     "intersection",
     "lines_near",
     "meeting_lines",
+    "meetings_of_lines",
+    "meetings_of_rings",
     "nearest_point",
     "neighbouring_lines",
     "noded_lines",
@@ -233,3 +235,21 @@ def _lines(starts: Floats, ends: Floats) -> npt.NDArray[np.object_]:
 def inner_points(rings: Sequence[Floats]) -> Floats:
     """Return a point inside each simple ring, ``(n, 2)``."""
     return np.asarray(shapely.get_coordinates(shapely.point_on_surface(_polygons(rings))))
+
+
+def meetings_of_lines(starts: Floats, ends: Floats) -> int:
+    """Return about how many pairs of lines meet, from a sample: whether to look at all of them is worth the time."""
+    return _meetings(_lines(starts, ends), "intersects")
+
+
+def meetings_of_rings(rings: Sequence[Floats]) -> int:
+    """Return about how many pairs of simple rings have overlapping boxes, from a sample."""
+    return _meetings(_polygons(rings), None)
+
+
+def _meetings(shapes: npt.NDArray[np.object_], predicate: str | None) -> int:
+    if len(shapes) < 2:
+        return 0
+    sample = shapes[:: max(len(shapes) // 200, 1)]
+    hits = shapely.STRtree(shapes).query(sample, predicate=predicate)
+    return int(max(hits.shape[1] - len(sample), 0) * len(shapes) // (2 * len(sample)))

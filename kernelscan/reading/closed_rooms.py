@@ -20,7 +20,7 @@ import numpy as np
 
 from kernelscan.errors import GeometryError
 from kernelscan.geometry.rings import as_rings
-from kernelscan.geometry.shapes import Patch, area, difference, overlap_areas
+from kernelscan.geometry.shapes import Patch, area, difference, meetings_of_rings, overlap_areas
 from kernelscan.plan import Obstacle, Problem
 from kernelscan.plan.room import OpeningKind
 from kernelscan.reading.layers import LayerRole, Role
@@ -38,6 +38,8 @@ FILLED = 0.6
 
 ROOM_SIZED = 4.0
 """No table is as large as this, in square metres."""
+
+MOST_MEETINGS = 1_000_000
 
 LEAST_OVERLAP = 1e-3
 """Rooms that share less than this part of the smaller only touch."""
@@ -117,6 +119,10 @@ def _is_symbol(blocks: str, roles: Mapping[str, LayerRole]) -> bool:
 
 def _without_doubles(outlines: Sequence[Outline], by_content: bool) -> tuple[list[Outline], list[Problem]]:
     """Leave out second copies and outlines that others fill; report these and every other overlap."""
+    if meetings_of_rings([outline.ring for outline in outlines]) > MOST_MEETINGS:
+        return list(outlines), [
+            Problem("too-dense", f"over {MOST_MEETINGS:,} outlines overlap; copies are not looked for")
+        ]
     areas = np.array([outline.area for outline in outlines], dtype=np.float64)
     first, second, shared = _overlaps(outlines)
     copies = _copies(first, second, shared >= SAME * np.maximum(areas[first], areas[second]))
@@ -169,6 +175,8 @@ def _holders(
 
 def _without_inner(outlines: Sequence[Outline]) -> tuple[list[Outline], list[Problem]]:
     """By content, what lies inside a room is something standing there; what it is, the drawing does not say."""
+    if meetings_of_rings([outline.ring for outline in outlines]) > MOST_MEETINGS:
+        return list(outlines), []
     first, second, shared = _overlaps(outlines)
     inner: dict[int, int] = {}
     for i, j, common in zip(first.tolist(), second.tolist(), shared.tolist(), strict=True):

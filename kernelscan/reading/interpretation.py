@@ -71,8 +71,9 @@ class Interpretation:
         strokes = self.contents.strokes
         named = barriers_by_name(strokes, self.roles)
         found, problems = loose_rooms(named, self.contents.labels, metres, self.tolerances)
-        if found or any(problem.code == "open-plan" for problem in problems):
-            return found, BY_NAMED_WALLS if found else OPEN_PLAN, problems
+        codes = {problem.code for problem in problems}
+        if found or codes & {"open-plan", "too-dense"}:
+            return found, OPEN_PLAN if "open-plan" in codes else BY_NAMED_WALLS, problems
         every = barriers_by_content(strokes, self.roles, metres, self.tolerances)
         layers = double_layers(every.walls, metres, self.tolerances)
         if layers:

@@ -20,7 +20,7 @@ import numpy as np
 
 from kernelscan.errors import GeometryError
 from kernelscan.geometry.rings import as_ring, signed_area
-from kernelscan.geometry.shapes import inner_points, lines_near, rings_around
+from kernelscan.geometry.shapes import inner_points, lines_near, meetings_of_lines, rings_around
 from kernelscan.plan import Obstacle, Problem, Source
 from kernelscan.plan.room import OpeningKind
 from kernelscan.reading.closed_rooms import FoundRoom, RoomEdge
@@ -54,6 +54,7 @@ CORNER = 1.5
 GRID = 1e-5
 FARTHEST = 5000.0
 SMALLEST_PLAN = 1.0
+MOST_MEETINGS = 1_000_000
 STRAIGHT = 1e-3
 LABELLED_AREA, LABELLED_WIDTH = 0.5, 0.5
 FILLED_KINDS = frozenset({"HATCH", "MPOLYGON", "SOLID", "TRACE"})
@@ -122,6 +123,11 @@ def loose_rooms(
     strokes = [*barriers.walls, *barriers.openings]
     if not strokes or _reach(strokes, metres) < SMALLEST_PLAN:
         return [], far
+    if _too_dense(barriers, metres, origin):
+        return [], [
+            *far,
+            Problem("too-dense", f"over {MOST_MEETINGS:,} crossings of lines; they cannot all be walls"),
+        ]
     lines, wide = _closed_lines(barriers, metres, origin, tolerances)
     faces = faces_of(lines, GRID, SmallFace(tolerances.smallest_room, tolerances.thickest_wall))
     named = _named(faces, labels, metres, origin)
@@ -142,6 +148,13 @@ def _middle(strokes: Sequence[Stroke], metres: float) -> np.ndarray:
     if not strokes:
         return np.zeros(2)
     return np.asarray(np.rint(np.median(np.concatenate([s.points[:1] for s in strokes]), axis=0) * metres))
+
+
+def _too_dense(barriers: Barriers, metres: float, origin: np.ndarray) -> bool:
+    """Whether lines cross so often that noding would take for ever, as in hatching drawn line by line."""
+    strokes = [*barriers.walls, *barriers.openings]
+    lines = merged(segments_of(strokes, [WALL] * len(strokes), metres, origin))
+    return meetings_of_lines(lines.a, lines.b) > MOST_MEETINGS
 
 
 def _reach(strokes: Sequence[Stroke], metres: float) -> float:

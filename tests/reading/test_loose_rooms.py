@@ -247,3 +247,22 @@ def test_a_single_line_that_stands_free_is_named(tmp_path: Path) -> None:
     assert problem.at == (6, 1.5)
     assert "3.00 m" in problem.message
     assert problem.source.handle
+
+
+def test_a_drawing_too_dense_to_be_walls_ends_soon(tmp_path: Path) -> None:
+    def draw(space: Modelspace) -> None:
+        for k in range(1100):
+            space.add_line((k * 0.01, 0), (k * 0.01, 15), dxfattribs={"layer": "A-WALL"})
+            space.add_line((0, k * 0.01), (15, k * 0.01), dxfattribs={"layer": "A-WALL"})
+
+    plan = read_plan(saved(tmp_path / "plan.dxf", draw))
+    assert plan.rooms == ()
+    assert "too-dense" in {problem.code for problem in plan.problems}
+
+
+def test_many_copies_of_one_outline_end_soon(tmp_path: Path) -> None:
+    def draw(space: Modelspace) -> None:
+        for _ in range(2500):
+            space.add_lwpolyline(box(0, 0, 4, 3), dxfattribs={"layer": "A-AREA"})
+
+    assert "too-dense" in {problem.code for problem in read_plan(saved(tmp_path / "plan.dxf", draw)).problems}
