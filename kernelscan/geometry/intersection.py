@@ -40,11 +40,11 @@ from kernelscan.geometry.pruning import HalfPlaneSource, Indices, Outline, RowSo
 __all__ = ["FEW", "Intersection", "Solution", "corners_of", "intersect", "solve"]
 
 FEW = 64
-FINISH = 200
-SAMPLE = 48
+FINISH = 100
+SAMPLE = 64
 LARGE_SAMPLE = 1024
 MANY = 8192
-VERY_MANY = 100_000
+VERY_MANY = 300_000
 HEADS = (16, 128, 1024)
 HEAD_SHARE = 1000
 GOLDEN = 0.6180339887498949
@@ -161,7 +161,7 @@ def solve(source: HalfPlaneSource) -> Solution:
         head = solve(RowSource(source.rows(np.arange(size))))
         if head.kind == "empty":
             return head
-    return _sampled(source, _spread(count, SAMPLE if count < VERY_MANY else 5 * SAMPLE))
+    return _sampled(source, _spread(count, SAMPLE if count < VERY_MANY else 6 * SAMPLE))
 
 
 def _sampled(source: HalfPlaneSource, sample: Indices) -> Solution:

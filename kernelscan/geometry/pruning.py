@@ -40,7 +40,7 @@ Flags = npt.NDArray[np.bool_]
 UNIT = 2.0**-53
 TINY = 2.0**-1000
 PORTION = 1 << 14
-FEW = 24
+FEW = 16
 WAY_OF_ROW = np.array([[0, 0], [0, 0], [-1, 0], [0, -1], [1, 0], [0, 1]])
 
 
