@@ -38,11 +38,16 @@ class DrawingUnit(StrEnum):
     M = "m"
     IN = "in"
     FT = "ft"
+    AUTO = "auto"
 
 
 DrawingPath = Annotated[Path, typer.Argument(metavar="PLAN.dxf", help="The drawing, DXF text or binary.")]
 UnitChoice = Annotated[
-    DrawingUnit | None, typer.Option("--unit", help="The drawing's unit, over what its header says.")
+    DrawingUnit | None,
+    typer.Option(
+        "--unit",
+        help="The drawing's unit, over what its header says; auto takes the one its sizes speak for.",
+    ),
 ]
 RoomNames = Annotated[
     list[str], typer.Option("--room", metavar="NAME", help="Only this room, by name or number; repeatable.")

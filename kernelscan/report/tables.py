@@ -89,7 +89,7 @@ def print_problems(plan: Plan, out: TextIO) -> None:
 
 
 def _heading(plan: Plan) -> str:
-    said_by = "its header" if plan.unit_from == "header" else "the option"
+    said_by = {"header": "its header", "option": "the option", "proposal": "its own sizes"}[plan.unit_from]
     rule = plain_text(plan.room_rule, 400)
     return f"{plain_text(plan.file)}: {_count(len(plan.rooms), 'room')}; unit {plan.unit.name}, from {said_by}. {rule}"
 
