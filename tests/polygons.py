@@ -299,3 +299,15 @@ def spoiled(rng: Rng, points: Points) -> Points:
         return np.insert(points, k, points[k], axis=0)
     tip = points[k] + rng.uniform(0.1, 1.0, 2)
     return np.insert(points, k, [points[k], tip], axis=0)
+
+
+def nearly_convex(rng: Rng, n: int) -> Points:
+    """A regular polygon with corners off by a hair or dented, and its edges split by nearly collinear points."""
+    angles = np.arange(n) * (2 * pi / n)
+    corners = polar(angles, 1 + rng.choice([0, 0, 0, 1e-12, -1e-12, -0.01], n))
+    points = []
+    for a, b in zip(corners, np.roll(corners, -1, axis=0), strict=True):
+        points.append(a)
+        if rng.random() < 0.5:
+            points.append(a + rng.choice([rng.random(), 0.5, 1e-9]) * (b - a))
+    return np.array(points)

@@ -171,7 +171,9 @@ def _sampled(source: HalfPlaneSource, sample: Indices) -> Solution:
     while region is not None and region.shape != "empty":
         outline = Outline.of(region)
         if outline is None and region.shape == "area":
-            return _eliminated(source, pool)
+            # The pool is without the region's own lines: they are needed again.
+            own = np.array([name for name in region.names if name != INFINITE])
+            return _eliminated(source, None if pool is None else _together(len(source), own, pool))
         before = len(source) if pool is None else len(pool)
         pool = _without(_survivors(source, pool, outline), region)
         if len(pool) <= FINISH or region.shape != "area":
