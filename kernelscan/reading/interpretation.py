@@ -13,7 +13,8 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
 
 from kernelscan.plan import LayerUse, Problem
-from kernelscan.reading.closed_rooms import FoundRoom, chosen_outlines, with_obstacles
+from kernelscan.reading.closed_rooms import FoundRoom, chosen_outlines
+from kernelscan.reading.furnished import furnished_outlines, furnished_walls
 from kernelscan.reading.layers import LayerPatterns, LayerRole, layer_role
 from kernelscan.reading.loose_rooms import barriers_by_content, barriers_by_name, loose_rooms
 from kernelscan.reading.outlines import closed_outlines, open_outline_problems
@@ -59,8 +60,11 @@ class Interpretation:
         if not by_option and not any(part.is_ring(self.tolerances.snap / metres) for part in parts):
             loose = self._loose(metres, len(chosen))
             if loose is not None:
-                return [*loose[0]], loose[1], [*gaps, *loose[2]]
-        found, more = with_obstacles(chosen, obstacles, self.tolerances.snap)
+                found, more = furnished_walls(
+                    loose[0], obstacles, strokes, self.roles, metres, self.tolerances
+                )
+                return found, loose[1], [*gaps, *loose[2], *more]
+        found, more = furnished_outlines(chosen, obstacles, strokes, self.roles, metres, self.tolerances)
         return found, rule, [*faults, *gaps, *problems, *more]
 
     def _loose(self, metres: float, outlined: int) -> tuple[list[FoundRoom], str, list[Problem]] | None:
