@@ -11,6 +11,8 @@ __all__ = [
     "DeviceFile",
     "DrawingPath",
     "DrawingUnit",
+    "LayerPrefix",
+    "Merge",
     "ObstacleLayers",
     "Quiet",
     "RoomLayers",
@@ -99,4 +101,13 @@ RoomSheets = Annotated[
 AsPdf = Annotated[
     bool,
     typer.Option("--pdf", help="Also all sheets as one PDF; needs kernelscan[pdf]."),
+]
+LayerPrefix = Annotated[
+    str | None,
+    typer.Option(
+        "--layer-prefix", metavar="TEXT", help="Begins the names of the mark-up's layers; A-KSCN else."
+    ),
+]
+Merge = Annotated[
+    bool, typer.Option("--merge", help="Also a copy of the drawing with the mark-up in it, merged.dxf.")
 ]

@@ -1,28 +1,34 @@
-"""The sheets of one run as files: numbered SVGs, the plan's and if wanted each room's, and all of them as one PDF."""
+"""The sheets of one run as files: numbered SVGs, all of them as one PDF, and the mark-up for CAD."""
 
 import re
 from collections.abc import Collection, Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING
 
+from kernelscan.errors import InputError
+
 if TYPE_CHECKING:
     from kernelscan.coverage import RoomAnswer
     from kernelscan.markup.options import SheetOptions
     from kernelscan.plan import Plan
 
-__all__ = ["SHEET_NAMES", "check_sheets", "print_written", "sheet_files"]
+__all__ = ["SHEET_NAMES", "check_sheets", "markup_files", "print_written", "sheet_files"]
 
 PDF_NAME = "sheets.pdf"
-SHEET_NAMES = re.compile(r"(room-)?sheet-\d{2,}\.svg|sheets\.pdf")
+MERGED_NAME = "merged.dxf"
+SHEET_NAMES = re.compile(r"(room-)?sheet-\d{2,}\.svg|sheets\.pdf|merged\.dxf")
 """What files of an earlier run are called."""
 
 
-def check_sheets(options: "SheetOptions", pdf: bool) -> None:
+def check_sheets(options: "SheetOptions", pdf: bool, prefix: str | None) -> None:
     """Raise ``InputError`` where the sheets that are asked for cannot be made, before any room is looked at."""
+    from kernelscan.markup.dxf import checked_prefix
     from kernelscan.markup.options import check_options
     from kernelscan.markup.pdf import check_library
 
     check_options(options)
+    if prefix is not None:
+        checked_prefix(prefix)
     if pdf:
         check_library()
 
@@ -44,10 +50,33 @@ def sheet_files(
     return {**files, PDF_NAME: pdf_bytes([*of_plan, *of_rooms])} if pdf else files
 
 
+def markup_files(
+    plan: "Plan", answers: Sequence["RoomAnswer"], drawing: Path | None, prefix: str | None
+) -> dict[str, bytes]:
+    """Return the mark-up by file name: on its own and, where a drawing is given, within a copy of it."""
+    from kernelscan.markup.dxf import zones_dxf
+    from kernelscan.markup.dxf_blocks import PREFIX
+    from kernelscan.markup.dxf_merge import merged_dxf
+    from kernelscan.reading.files import open_drawing
+
+    named = PREFIX if prefix is None else prefix
+    files = {"markup.dxf": zones_dxf(plan, answers, named).encode()}
+    if drawing is None:
+        return files
+    opened, repairs = open_drawing(drawing)
+    if repairs:
+        raise InputError(
+            f"{plan.file}: was repaired to be read, so a copy would differ; save it anew to --merge"
+        )
+    return {**files, MERGED_NAME: merged_dxf(opened, plan, answers, named)}
+
+
 def print_written(out: Path, names: Collection[str], outdated: Sequence[str]) -> None:
     """Print what was written and what of an earlier run was removed."""
     if outdated:
         print(f"Removed from an earlier run: {', '.join(outdated)}")
     first_ones = [f"{name} and on" for name in ("sheet-01.svg", "room-sheet-01.svg") if name in names]
-    others = [name for name in (PDF_NAME, "schedule.csv", "markup.dxf", "report.json") if name in names]
+    others = [
+        name for name in (PDF_NAME, "schedule.csv", "markup.dxf", MERGED_NAME, "report.json") if name in names
+    ]
     print(f"Written to {out}: {', '.join([*first_ones, *others])}")

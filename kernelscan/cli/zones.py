@@ -13,6 +13,8 @@ from kernelscan.cli.options import (
     AsPdf,
     DeviceFile,
     DrawingPath,
+    LayerPrefix,
+    Merge,
     ObstacleLayers,
     Quiet,
     RoomLayers,
@@ -30,7 +32,7 @@ from kernelscan.cli.options import (
     UnitChoice,
 )
 from kernelscan.cli.progress import with_progress
-from kernelscan.cli.sheets import SHEET_NAMES, check_sheets, print_written, sheet_files
+from kernelscan.cli.sheets import SHEET_NAMES, check_sheets, markup_files, print_written, sheet_files
 from kernelscan.cli.writing import write_folder
 
 if TYPE_CHECKING:
@@ -73,6 +75,8 @@ def zones(
     issued: SheetDate = None,
     room_sheets: RoomSheets = False,
     pdf: AsPdf = False,
+    layer_prefix: LayerPrefix = None,
+    merge: Merge = False,
     room: RoomNames = [],  # noqa: B006 - typer copies it
     room_layer: RoomLayers = [],  # noqa: B006
     obstacle_layer: ObstacleLayers = [],  # noqa: B006
@@ -94,7 +98,7 @@ def zones(
         document_type=document_type,
         date=date.today().isoformat() if issued is None else issued,
     )
-    check_sheets(options, pdf)
+    check_sheets(options, pdf, layer_prefix)
     wanted = read_devices(devices) if devices is not None else ()
     whole = read_drawing(plan_file, unit, room_layer, obstacle_layer)
     spot = wanted_spot(whole, near, towards)
@@ -103,7 +107,11 @@ def zones(
         room_answer(each, wanted, ignore_depth=ignore_depth, near=spot)
         for each in with_progress(plan.rooms, "rooms", quiet)
     ]
-    files = _data_files(plan, answers) | sheet_files(plan, answers, options, room_sheets, pdf)
+    files = {
+        **_data_files(plan, answers),
+        **markup_files(plan, answers, plan_file if merge else None, layer_prefix),
+        **sheet_files(plan, answers, options, room_sheets, pdf),
+    }
     outdated = write_folder(out, files, SHEET_NAMES)
     if not quiet:
         _print(plan, answers)
@@ -111,14 +119,12 @@ def zones(
 
 
 def _data_files(plan: "Plan", answers: Sequence["RoomAnswer"]) -> dict[str, bytes]:
-    from kernelscan.markup.dxf import zones_dxf
     from kernelscan.report.document import report_text, zones_report
     from kernelscan.report.schedule import schedule_csv
 
     return {
         "report.json": report_text(zones_report(plan, answers)).encode(),
         "schedule.csv": schedule_csv(plan, answers),
-        "markup.dxf": zones_dxf(plan, answers).encode(),
     }
 
 

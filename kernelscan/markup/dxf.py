@@ -16,6 +16,7 @@ import numpy as np
 from kernelscan.coverage import RoomAnswer
 from kernelscan.coverage.wording import Custom
 from kernelscan.errors import InputError
+from kernelscan.markup.dimensions import lengths_to_set_out
 from kernelscan.markup.drawing import band_ring
 from kernelscan.markup.dxf_blocks import DEVICE_FIELDS, POINT_FIELDS, PREFIX, Sizes, set_up
 from kernelscan.markup.dxf_fields import device_points, plain_points, tried_fields
@@ -32,7 +33,7 @@ from kernelscan.units import HEADER_UNITS
 if TYPE_CHECKING:
     from ezdxf.document import Drawing
 
-__all__ = ["draw_rooms", "zones_dxf"]
+__all__ = ["checked_prefix", "draw_rooms", "zones_dxf"]
 
 
 def zones_dxf(plan: Plan, answers: Sequence[RoomAnswer], prefix: str = PREFIX) -> str:
@@ -54,11 +55,11 @@ def zones_dxf(plan: Plan, answers: Sequence[RoomAnswer], prefix: str = PREFIX) -
     """
     from ezdxf.filemanagement import new
 
-    _checked(prefix)
+    checked_prefix(prefix)
     with _fixed_dates():
         drawing = new("R2010")
         _head(drawing, plan)
-        set_up(drawing, prefix, 1 / plan.unit.metres)
+        set_up(drawing, prefix, plan.unit)
         draw_rooms(DxfPen(drawing, prefix, plan.unit), plan, answers)
         stream = io.StringIO()
         drawing.write(stream)
@@ -74,7 +75,8 @@ def draw_rooms(pen: DxfPen, plan: Plan, answers: Sequence[RoomAnswer]) -> None:
         pen.tag(*tag)
 
 
-def _checked(prefix: str) -> None:
+def checked_prefix(prefix: str) -> None:
+    """Raise ``InputError`` where the names of layers cannot begin with this."""
     if not prefix or len(prefix) > 100 or any(sign in '<>/\\":;?*|=`,' or ord(sign) < 33 for sign in prefix):
         raise InputError(
             f"layer prefix: got {prefix!r}, expected letters, digits and hyphens, such as {PREFIX}"
@@ -131,6 +133,8 @@ def _room(pen: DxfPen, room: ShownRoom) -> None:
     for wall_ref in room.conflict:
         pen.line("CNFL", np.array(room.basis.room.wall_ends(wall_ref)))
     _points(pen, room)
+    for length in lengths_to_set_out(room):
+        pen.dimension("DIMS", length)
 
 
 def _area(pen: DxfPen, area: ShownArea) -> None:

@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING
 
 from kernelscan.markup.shown import ShownSpot
 from kernelscan.markup.style import BLACK, MARKS, PALE
+from kernelscan.units import Unit
 
 if TYPE_CHECKING:
     from ezdxf.document import Drawing
@@ -17,7 +18,9 @@ if TYPE_CHECKING:
 
 __all__ = [
     "DEVICE_FIELDS",
+    "DIMENSION_STYLE",
     "LAYERS",
+    "OWN",
     "POINT_FIELDS",
     "PREFIX",
     "TRIED_FIELDS",
@@ -42,11 +45,15 @@ LAYERS: dict[str, tuple[str, int, str]] = {
     "CNFL": (BLACK, 100, "walls that exclude each other"),
     "HIDN": (BLACK, 25, "best points tried where none sees every wall, and the floor they miss"),
     "FEAT": (BLACK, 18, "small features that were left out"),
+    "DIMS": (BLACK, 25, "setting-out dimensions"),
     "TEXT": (BLACK, 18, "tags"),
 }
 """Minor group of each layer: ink, line weight in hundredths of a millimetre, description."""
 
-DASHED = "KSCN-DASHED"
+OWN = "KSCN-"
+"""What the names of our blocks, line types and dimension styles begin with."""
+DASHED = f"{OWN}DASHED"
+DIMENSION_STYLE = f"{OWN}SET-OUT"
 Fields = tuple[str, ...]
 POINT_FIELDS: Fields = ("TAG", "ROOM", "NAME", "FIELD", "RANGE", "TOLERANCE")
 DEVICE_FIELDS: Fields = (
@@ -67,10 +74,13 @@ class Sizes:
     corner: float = 0.50
     aim: float = 0.80
     dash: float = 0.30
+    gap: float = 0.10
+    stand_off: float = 0.90
 
 
-def set_up(drawing: "Drawing", prefix: str, metre: float) -> None:
-    """Make the layers and the line type; ``metre`` is how many drawing units a metre is."""
+def set_up(drawing: "Drawing", prefix: str, unit: Unit) -> None:
+    """Make the layers, the line type and the dimension style in a drawing of a unit."""
+    metre = 1 / unit.metres
     dash = Sizes().dash * metre
     drawing.linetypes.add(DASHED, [1.5 * dash, dash, -0.5 * dash], description="Kernelscan dashed __ __ __")
     for minor, (ink, weight, description) in LAYERS.items():
@@ -81,6 +91,26 @@ def set_up(drawing: "Drawing", prefix: str, metre: float) -> None:
         layer.dxf.lineweight = weight
         layer.description = description
     drawing.layers.get(f"{prefix}-CNFL").dxf.linetype = DASHED
+    _dimension_style(drawing, unit)
+
+
+def _dimension_style(drawing: "Drawing", unit: Unit) -> None:
+    """Make the style of the dimensions: whole millimetres; feet and inches are written out by each dimension."""
+    text, gap = Sizes().text / unit.metres, Sizes().gap / unit.metres
+    drawing.dimstyles.new(
+        DIMENSION_STYLE,
+        dxfattribs={
+            "dimtxt": text,
+            "dimasz": text,
+            "dimexo": gap,
+            "dimexe": gap,
+            "dimgap": gap,
+            "dimtad": 1,
+            "dimdec": 0,
+            "dimrnd": 0,
+            "dimlfac": 1000 * unit.metres,
+        },
+    )
 
 
 def block_of(drawing: "Drawing", spot: ShownSpot, metre: float, fields: Fields) -> str:

@@ -9,14 +9,15 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from kernelscan.coverage.wording import Custom
-from kernelscan.markup.dxf_blocks import Fields, block_of, tried_block
+from kernelscan.markup.dimensions import Length
+from kernelscan.markup.dxf_blocks import DIMENSION_STYLE, Fields, Sizes, block_of, tried_block
 from kernelscan.markup.paper import Scale
 from kernelscan.markup.shown import ShownSpot
 from kernelscan.markup.style import Mark
 from kernelscan.markup.tags import Placement
 from kernelscan.markup.text import clean_text
 from kernelscan.markup.view import PlanView
-from kernelscan.units import Unit
+from kernelscan.units import Unit, feet_and_inches
 
 if TYPE_CHECKING:
     from ezdxf.document import Drawing
@@ -87,6 +88,21 @@ class DxfPen:
         name = tried_block(self.drawing, 1 / self.unit.metres)
         model = self.drawing.modelspace()
         self._attach(model.add_blockref(name, self.drawn(at)[0], dxfattribs=self._on("HIDN")), values)
+
+    def dimension(self, minor: str, length: Length) -> None:
+        """Draw a length as a dimension: along the line between its points, or off a wall on the outside."""
+        off = 0.0
+        if length.away is not None:
+            (x, y), (u, v) = length.end - length.start, length.away
+            off = float(np.copysign(Sizes().stand_off / self.unit.metres, x * v - y * u))
+        start, end = self.drawn([length.start, length.end])
+        metres = float(np.hypot(*(length.end - length.start)))
+        words = feet_and_inches(metres) if self.unit.imperial else "<>"
+        attributes = self._on(minor)
+        dimension = self.drawing.modelspace().add_aligned_dim(
+            start, end, off, text=words, dimstyle=DIMENSION_STYLE, dxfattribs=attributes
+        )
+        dimension.render()
 
     def tag(self, placement: Placement, view: PlanView) -> None:
         """Draw a tag as MTEXT, and its leader as a line."""

@@ -87,3 +87,21 @@ def test_a_title_that_attacks_comes_out_harmless(plan, tmp_path):
     assert "<script" not in sheet
     assert "\u202e" not in sheet
     assert names(tmp_path) == ["out", "plan.dxf"]
+
+
+def test_the_merged_drawing_has_the_mark_up_and_goes_with_the_next_run(plan, tmp_path, capsys):
+    out = tmp_path / "out"
+    before = plan.read_bytes()
+    assert run(["zones", str(plan), "--out", str(out), "--merge", "--layer-prefix", "E-SURV"]) == 0
+    assert "merged.dxf" in capsys.readouterr().out
+    layers = {entity.dxf.layer for entity in ezdxf.readfile(out / "merged.dxf").modelspace()}
+    assert {"A-AREA", "E-SURV-ROOM", "E-SURV-DIMS"} <= layers
+    assert plan.read_bytes() == before
+    assert run(["zones", str(plan), "--out", str(out)]) == 0
+    assert "merged.dxf" not in names(out)
+
+
+def test_a_layer_prefix_that_cannot_be_is_refused_before_anything_is_written(plan, tmp_path, capsys):
+    assert run(["zones", str(plan), "--out", str(tmp_path / "out"), "--layer-prefix", "a/b"]) == 2
+    assert "prefix" in capsys.readouterr().err
+    assert not (tmp_path / "out").exists()

@@ -29,7 +29,8 @@ def test_the_audit_finds_nothing(answers: list) -> None:
 def test_only_layers_blocks_and_line_types_of_our_own() -> None:
     drawing = drawn(classics())
     assert {entity.dxf.layer for entity in drawing.modelspace()} == {
-        f"A-KSCN-{minor}" for minor in ("ROOM", "OBST", "CEIL", "WALL", "CORN", "PNTS", "CNFL", "TEXT")
+        f"A-KSCN-{minor}"
+        for minor in ("ROOM", "OBST", "CEIL", "WALL", "CORN", "PNTS", "CNFL", "DIMS", "TEXT")
     }
     assert {layer.dxf.name for layer in drawing.layers if not layer.dxf.name.startswith("A-KSCN-")} == {
         "0",
