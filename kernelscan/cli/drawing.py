@@ -3,6 +3,7 @@
 import re
 from collections.abc import Sequence
 from dataclasses import replace
+from math import isfinite
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -56,6 +57,8 @@ def wanted_spot(plan: "Plan", near: str | None, towards: str | None) -> "Point |
         if numbers is None:
             raise ValueError
         x, y = (float(number) * plan.unit.metres for number in numbers.groups())
+        if not (isfinite(x) and isfinite(y)):
+            raise ValueError
     except ValueError:
         raise InputError(f"--near {plain_text(near)!r}: expected two numbers, such as 1200,300") from None
     return _point((x, y))

@@ -30,7 +30,7 @@ def rooms(
     from kernelscan.report.tables import print_problems, print_rooms
 
     if json is not None:
-        write_file(json, report_text(rooms_report(plan)).encode())
+        write_file(json, report_text(rooms_report(plan)).encode(), [plan_file])
     if not quiet:
         print_rooms(plan, sys.stdout)
         print_problems(plan, sys.stdout)

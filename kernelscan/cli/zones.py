@@ -34,6 +34,7 @@ from kernelscan.cli.options import (
 from kernelscan.cli.progress import with_progress
 from kernelscan.cli.sheets import SHEET_NAMES, check_sheets, markup_files, print_written, sheet_files
 from kernelscan.cli.writing import write_folder
+from kernelscan.errors import InputError
 
 if TYPE_CHECKING:
     from kernelscan.coverage import RoomAnswer
@@ -99,6 +100,8 @@ def zones(
         date=date.today().isoformat() if issued is None else issued,
     )
     check_sheets(options, pdf, layer_prefix)
+    if devices is None and (near is not None or towards is not None):
+        raise InputError("--near and --towards choose among the spots of devices; give --devices too")
     wanted = read_devices(devices) if devices is not None else ()
     whole = read_drawing(plan_file, unit, room_layer, obstacle_layer)
     spot = wanted_spot(whole, near, towards)
@@ -112,7 +115,7 @@ def zones(
         **markup_files(plan, answers, plan_file if merge else None, layer_prefix),
         **sheet_files(plan, answers, options, room_sheets, pdf),
     }
-    outdated = write_folder(out, files, SHEET_NAMES)
+    outdated = write_folder(out, files, SHEET_NAMES, [plan_file, *([devices] if devices else [])])
     if not quiet:
         _print(plan, answers)
         print_written(out, files, outdated)

@@ -94,8 +94,10 @@ def verify_kernel(outline: npt.ArrayLike, kernel: KernelClaim, holes: Iterable[n
     GeometryError
         If these are not the rings of a room.
     """
-    room = Walls.of(as_rings(outline, holes))
+    rings = as_rings(outline, holes)
+    room = Walls.of(rings)
     _check_form(kernel)
+    _check_room(rings, kernel)
     checks = {"area": _check_area, "segment": _check_segment, "point": _check_point, "empty": _check_conflict}
     try:
         with np.errstate(over="ignore", invalid="ignore", under="ignore"):
@@ -104,7 +106,21 @@ def verify_kernel(outline: npt.ArrayLike, kernel: KernelClaim, holes: Iterable[n
         raise CertificateError(str(error)) from None
 
 
+def _check_room(rings: Sequence[Floats], kernel: KernelClaim) -> None:
+    """A kernel that carries its room along, to give exact corners on request, must carry this one."""
+    carried = getattr(kernel, "_rings", ())
+    same = len(carried) == len(rings) and all(map(np.array_equal, carried, rings))
+    if len(carried) and not same:
+        raise CertificateError("the kernel is that of another room")
+
+
 def _check_form(kernel: KernelClaim) -> None:
+    if not isinstance(kernel.kind, str) or not isinstance(kernel.area, int | float):
+        raise CertificateError("a kernel has a kind, which is a word, and an area, which is a number")
+    for name, walls in (("walls", kernel.walls), ("conflict", kernel.conflict)):
+        named = np.asarray(walls)
+        if named.size and (named.ndim != 2 or named.shape[1] != 2 or named.dtype.kind not in "iu"):
+            raise CertificateError(f"{name} are pairs of whole numbers [ring, edge]")
     corners = {"area": range(3, len(kernel.walls) + 1), "segment": (2,), "point": (1,), "empty": (0,)}
     if kernel.kind not in corners:
         raise CertificateError(f"there is no kind of kernel called {kernel.kind!r}")
@@ -177,11 +193,11 @@ def _nearest(number: Fraction) -> float:
     try:
         return float(number)
     except OverflowError:
-        return inf
+        return inf if number > 0 else -inf
 
 
 def _is_rounded(vertices: Floats, corners: Sequence[Point]) -> bool:
-    return bool(np.asarray(vertices).tolist() == [[float(x), float(y)] for x, y in corners])
+    return bool(np.asarray(vertices).tolist() == [[_nearest(x), _nearest(y)] for x, y in corners])
 
 
 def _check_rounded(vertices: Floats, corners: Sequence[Point]) -> None:

@@ -20,12 +20,12 @@ PORTION = 1 << 14
 
 def is_surely_convex(ring: Ring) -> bool:
     """Whether every turn of a ring is to the left beyond doubt; False may also mean that it is in doubt."""
-    if not _turns_left(ring[:FIRST]):
-        return False
     around = np.concatenate([ring[-2:], ring[:2]])
     with np.errstate(over="ignore", invalid="ignore", under="ignore"):
-        return _turns_left(around) and all(
-            _turns_left(ring[k : k + PORTION + 2]) for k in range(0, len(ring) - 2, PORTION)
+        return (
+            _turns_left(ring[:FIRST])
+            and _turns_left(around)
+            and all(_turns_left(ring[k : k + PORTION + 2]) for k in range(0, len(ring) - 2, PORTION))
         )
 
 

@@ -154,9 +154,13 @@ def _bulged(points: np.ndarray, bulges: np.ndarray, closed: bool, chord: float) 
     return np.concatenate(parts)
 
 
+ROUND = 1e12
+"""A larger bulge, tan(sweep / 4), would be a circle from a point to itself, of no use as an arc."""
+
+
 def _bulge_points(start: np.ndarray, end: np.ndarray, bulge: float, chord: float) -> np.ndarray:
     """Return the points between the two ends of a bulge; bulge is tan(sweep / 4), negative clockwise."""
-    if not np.any(start != end) or not isfinite(bulge):
+    if not np.any(start != end) or not abs(bulge) < ROUND:
         return np.empty((0, 2))
     centre = bulge_center(Vec2(start), Vec2(end), bulge)
     arm = start - (centre.x, centre.y)

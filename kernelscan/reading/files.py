@@ -5,6 +5,7 @@ A "recovery" that holds nothing is an error, because a note saved under the name
 valid and empty one.
 """
 
+import os
 from pathlib import Path
 
 from ezdxf import recover
@@ -69,14 +70,16 @@ def open_drawing(path: Path) -> tuple[Drawing, list[Problem]]:
 
 
 def _first_bytes(path: Path) -> bytes:
-    if path.is_dir():
-        raise InputError(f"{path.name}: is a folder; give the DXF file in it")
     try:
         with path.open("rb") as file:
             head = file.read(4096)
+    except IsADirectoryError as fault:
+        raise InputError(f"{path.name}: is a folder; give the DXF file in it") from fault
     except FileNotFoundError as fault:
         raise InputError(f"{path.name}: no such file in {path.parent}; check the path") from fault
     except (OSError, ValueError) as fault:
+        if os.path.isdir(path):  # noqa: PTH112 - asks without raising; some systems refuse to open a folder
+            raise InputError(f"{path.name}: is a folder; give the DXF file in it") from fault
         raise InputError(f"{path.name}: cannot be read ({_reason(fault)}); check its permissions") from fault
     if not head:
         raise InputError(f"{path.name}: the file is empty; save the drawing again as DXF")

@@ -13,6 +13,10 @@ from kernelscan.reading.strokes import Stroke
 __all__ = ["Outline", "closed_outlines", "open_outline_problems", "ring_areas"]
 
 
+SMALLEST, LARGEST = 1e-9, 1e10
+"""Square metres: an outline of less encloses nothing that could be told from a line, one of more is no building."""
+
+
 @dataclass(frozen=True, slots=True, eq=False)
 class Outline:
     """A simple closed outline: its ring (counter-clockwise, metres), its area, and the stroke it came from."""
@@ -58,7 +62,8 @@ def closed_outlines(
         [stroke.points * metres for stroke in rings], [0.0 if stroke.closed else snap for stroke in rings]
     )
     areas = ring_areas(points)
-    thick = [k for k in range(len(rings)) if len(points[k]) > 2 and np.isfinite(areas[k])]
+    sound = (np.abs(areas) > SMALLEST) & (np.abs(areas) < LARGEST)
+    thick = [k for k in range(len(rings)) if len(points[k]) > 2 and sound[k]]
     simple = dict(zip(thick, are_simple([points[k] for k in thick]), strict=True))
     outlines, problems = [], []
     for k, stroke in enumerate(rings):
@@ -134,6 +139,9 @@ def _read_only(points: np.ndarray, area: float) -> Ring:
 
 def _fault(stroke: Stroke, points: np.ndarray) -> Problem:
     source = Source(stroke.layer, stroke.handle)
+    if len(points) > 2 and not abs(float(ring_areas([points])[0])) < LARGEST:
+        text = f"{stroke.kind} is larger than any building; check the unit, or delete it"
+        return Problem("absurd-outline", text, None, source)
     place = crossing_place(points) if len(points) > 2 else None
     if place is None:
         at = (float(points[0, 0]), float(points[0, 1])) if len(points) else None

@@ -39,6 +39,9 @@ SCHEDULE_COLUMNS: tuple[str, ...] = (
 )
 """The header of ``schedule.csv``; positions also in the drawing's own unit, bearings from the x axis."""
 
+FORMULA_SIGNS = ("=", "+", "-", "@", "|", "%", "＝", "＋", "－", "＠")
+"""A text that begins with one of these may be taken for a formula (common practice; the wide forms from memory)."""
+
 SLACK = 1e-6
 """In the last place: what is whole but for its rounding is not pushed over."""
 
@@ -140,4 +143,4 @@ def _down(value: float, decimals: int) -> str:
 def _harmless(text: str) -> str:
     """Return text that no spreadsheet program takes for a formula."""
     line = plain_text(text)
-    return f"'{line}" if line.startswith(("=", "+", "-", "@", "|")) else line
+    return f"'{line}" if line.startswith(FORMULA_SIGNS) else line

@@ -58,3 +58,19 @@ def test_one_file(tmp_path):
     write_file(tmp_path / "r.json", b"{}")
     assert (tmp_path / "r.json").read_bytes() == b"{}"
     assert names(tmp_path) == ["r.json"]
+
+
+def test_what_was_read_is_never_written_over(tmp_path):
+    drawing = tmp_path / "p.dxf"
+    drawing.write_bytes(b"mine")
+    with pytest.raises(InputError, match="would be written over"):
+        write_file(drawing, b"{}", [drawing])
+    with pytest.raises(InputError, match="would be written over"):
+        write_folder(tmp_path, {"p.dxf": b"x", "q": b"y"}, inputs=[tmp_path / "." / "p.dxf"])
+    assert drawing.read_bytes() == b"mine"
+    assert names(tmp_path) == ["p.dxf"]
+
+
+def test_an_outdated_name_that_is_a_folder_stays(tmp_path):
+    (tmp_path / "sheet-07.svg").mkdir()
+    assert write_folder(tmp_path, {"a": b"1"}, re.compile(r"sheet-.*")) == []

@@ -122,7 +122,28 @@ def test_refuses_part_of_a_segment_although_walls_bound_it() -> None:
     outline = [(0, 0), (4, 0), (4, 2), (8, 2), (8, 6), (4, 6), (4, 4), (3, 4), (3, 3.5), (0, 3.5)]
     whole = visibility_kernel(CRANK)
     with pytest.raises(CertificateError, match="cuts the kernel"):
-        verify_kernel(outline, replace(whole, walls=np.array([[0, 1], [0, 5], [0, 2], [0, 6]])))
+        verify_kernel(outline, replace(whole, walls=np.array([[0, 1], [0, 5], [0, 2], [0, 6]]), _rings=()))
+
+
+def test_refuses_the_kernel_of_another_room() -> None:
+    whole = visibility_kernel(CRANK)
+    elsewhere = visibility_kernel(np.array(CRANK) + [1.0, 0.0])
+    with pytest.raises(CertificateError, match="another room"):
+        verify_kernel(CRANK, replace(whole, _rings=elsewhere._rings))
+
+
+@pytest.mark.parametrize(
+    "change",
+    [
+        {"kind": ["area"]},
+        {"area": None},
+        {"walls": np.zeros((4, 3), dtype=int)},
+        {"walls": np.full((4, 2), 0.4)},
+    ],
+)
+def test_refuses_what_has_not_the_form_of_a_kernel(change: dict[str, object]) -> None:
+    with pytest.raises(CertificateError):
+        verify_kernel(CRANK, replace(visibility_kernel(CRANK), **change))
 
 
 WRONG_POINTS: dict[str, Callable[[Kernel], Kernel]] = {
