@@ -75,7 +75,7 @@ def _report(plan: Plan, rooms: list[RoomEntry], kinds: Iterable[str] = ()) -> Re
         "plan": {
             "file": plan.file,
             "unit": plan.unit.name,
-            "unit_from": plan.unit_from,
+            "unit_from": "header" if plan.unit_from == "header" else "option",
             "room_rule": plan.room_rule,
         },
         "rooms": rooms,
@@ -116,7 +116,9 @@ def _answered(answer: RoomAnswer) -> RoomEntry:
     if answer.tolerant is not None:
         entry["tolerant"] = _tolerant(answer.tolerant)
     if answer.devices:
-        entry["devices"] = device_entries(answer.devices)
+        # Devices stand on the outline that they were placed in, so that their walls are numbered on it.
+        basis = entry["tolerant"] if answer.tolerant is not None else entry
+        basis["devices"] = device_entries(answer.devices)
     return entry
 
 

@@ -130,6 +130,7 @@ class TolerantEntry(TypedDict):
     zones: ZonesEntry
     recommended: list[SpotEntry]
     hidden: list[HiddenEntry | None]
+    devices: NotRequired[list[DeviceEntry]]
 
 
 class OpeningEntry(TypedDict):

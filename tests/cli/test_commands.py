@@ -261,16 +261,16 @@ def test_zones_with_devices_and_without_small_features(tmp_path, capsys):
     assert "Wide corner" in printed
     assert "Left out: a pilaster 0.40 m wide and 0.20 m deep" in printed
     hall, store, yard = checked_report(out / "report.json")["rooms"]
-    assert [entry["covers"] for entry in hall["devices"]] == [True, False]
-    assert [entry["cheapest"] for entry in hall["devices"]] == [True, False]
-    assert hall["devices"][1]["obstruction"] == "reach"
-    assert hall["devices"][0]["spots"][0]["point"] == [0, 0]
+    assert [entry["covers"] for entry in hall["tolerant"]["devices"]] == [True, False]
+    assert [entry["cheapest"] for entry in hall["tolerant"]["devices"]] == [True, False]
+    assert hall["tolerant"]["devices"][1]["obstruction"] == "reach"
+    assert hall["tolerant"]["devices"][0]["spots"][0]["point"] == [0, 0]
     assert (store["kernel"]["kind"], store["tolerant"]["kernel"]["kind"]) == ("empty", "area")
     assert store["tolerant"]["kernel"]["area"] == pytest.approx(24)
     assert [feature["kind"] for feature in store["tolerant"]["features"]] == ["pilaster"]
     assert store["why_not"]["ignore_depth"] == pytest.approx(0.2)
-    assert [entry["cheapest"] for entry in store["devices"]] == [False, True]
-    assert yard["devices"][0]["obstruction"] == "sight"
+    assert [entry["cheapest"] for entry in store["tolerant"]["devices"]] == [False, True]
+    assert yard["tolerant"]["devices"][0]["obstruction"] == "sight"
     table = (out / "schedule.csv").read_bytes().decode("utf-8-sig")
     assert "'=Dome()" in table
     assert not re.search(r'(?m)(^|,)"?[=+@]', table)
