@@ -11,7 +11,7 @@ from pathlib import Path
 
 import numpy as np
 
-from kernelscan.plan import Plan
+from kernelscan.plan import Plan, Problem
 from kernelscan.plan.plan import UnitSource
 from kernelscan.reading.explode import drawing_contents
 from kernelscan.reading.files import open_drawing
@@ -61,7 +61,8 @@ def read_plan(
     Raises
     ------
     InputError
-        If the file cannot be read as a drawing, or says no unit and none is given; the text is one line.
+        If the file cannot be read as a drawing, or says no unit or an absurd one and none is given; the text is one
+        line.
     """
     with _uncollected():
         return _read(Path(path), unit, layers, tolerances, window)
@@ -88,11 +89,15 @@ def _read(
         drawing_contents(drawing, tolerances.chord / (said[0].metres if said else 1.0)), window
     )
     reading = interpretation(contents, layers, tolerances)
+    asked: list[Problem] = []
     if said is None:
-        said = _proposed(file.name, drawing.header.get("$INSUNITS"), reading, unit == "auto")
+        said, asked = _proposed(file.name, drawing.header.get("$INSUNITS"), reading, unit == "auto")
     metres = said[0].metres
     found, rule, problems = reading.rooms(metres)
-    checked = absurd_unit([f.outline.area for f in found], said[0], reading) if said[1] == "header" else []
+    if said[1] == "header":
+        refusal = absurd_unit(file.name, [f.outline.area for f in found], said[0], reading)
+        if refusal is not None:
+            raise refusal
     rooms, sizes = made_rooms(found, reading, metres)
     rooms, views, others = told_apart(rooms, contents, reading.roles, metres)
     return Plan(
@@ -101,18 +106,21 @@ def _read(
         unit_from=said[1],
         rooms=rooms,
         room_rule=rule,
-        problems=(*repairs, *contents.problems, *checked, *problems, *sizes, *others),
+        problems=(*repairs, *contents.problems, *asked, *problems, *sizes, *others),
         linework=_linework(contents, metres),
         layers=reading.layer_uses(),
         views=views,
     )
 
 
-def _proposed(file: str, code: object, reading: Interpretation, accepted: bool) -> tuple[Unit, UnitSource]:
-    """Return the unit found out, if the user accepts that; else refuse, and say what it seems to be and why."""
+def _proposed(
+    file: str, code: object, reading: Interpretation, accepted: bool
+) -> tuple[tuple[Unit, UnitSource], list[Problem]]:
+    """Return the unit found out and why, if the user accepts that; else refuse, and say what it seems to be and why."""
     proposal = proposed_unit(reading)
     if accepted and proposal is not None:
-        return proposal.unit, "proposal"
+        text = f"the unit, {proposal.unit.name}, was found out from the drawing: {proposal.reason}"
+        return (proposal.unit, "proposal"), [Problem("proposed-unit", text)]
     raise no_unit(file, code, reading, proposal)
 
 

@@ -53,7 +53,11 @@ def _witnesses(reading: Interpretation, metres: float) -> dict[str, str]:
         "doors": _doors(reading, metres),
     }
     if found and SMALLEST_ROOM <= (middle := median(outline.area for outline in found)) <= LARGEST_ROOM:
-        spoken["rooms"] = f"the median of {len(found)} rooms is {middle:.1f} m2"
+        spoken["rooms"] = (
+            f"the only room has {middle:.1f} m2"
+            if len(found) == 1
+            else f"the median of {len(found)} rooms is {middle:.1f} m2"
+        )
     return {kind: words for kind, words in spoken.items() if words}
 
 

@@ -1,7 +1,7 @@
 """The drawing's unit: what the option says, else what the header says, else an error that helps to choose.
 
 A header is wrong more often than not in drawings that people exchange, so its word is checked: when it makes the
-median room smaller than a cupboard or larger than a stadium, that is a problem of the plan.
+median room smaller than a cupboard or larger than a stadium, the drawing is refused until a person says the unit.
 """
 
 from collections.abc import Sequence
@@ -10,7 +10,6 @@ from statistics import median
 from ezdxf.document import Drawing
 
 from kernelscan.errors import InputError
-from kernelscan.plan import Problem
 from kernelscan.plan.plan import UnitSource
 from kernelscan.reading.interpretation import Interpretation
 from kernelscan.reading.unit_proposal import PROPOSED, UnitProposal, proposed_unit
@@ -57,29 +56,36 @@ def no_unit(file: str, code: object, reading: Interpretation, proposal: UnitProp
     return InputError(f"{lead}; {_choices(reading)}; give --unit{seems}")
 
 
-def absurd_unit(areas: Sequence[float], unit: Unit, reading: Interpretation) -> list[Problem]:
-    """Return a problem if the header's unit makes the median room under 0.5 m2 or over 5,000 m2, or finds none."""
+def absurd_unit(file: str, areas: Sequence[float], unit: Unit, reading: Interpretation) -> InputError | None:
+    """Return the error if the header's unit makes the rooms absurd, or leaves none where another one gives some.
+
+    A median room under 0.5 m2 or over 5,000 m2 is absurd. Where the drawing closes no room under any likely unit, the
+    unit is not to blame.
+    """
     if areas and SMALLEST_MEDIAN <= median(areas) <= LARGEST_MEDIAN:
-        return []
+        return None
     proposal = proposed_unit(reading)
-    if not areas and (proposal is None or proposal.unit == unit):
-        return []
-    makes = (
-        f"makes the median room {_square_metres(median(areas))}" if areas else "leaves no room of any size"
+    if not areas and (proposal is None or proposal.unit == unit or not reading.areas(proposal.unit.metres)):
+        return None
+    makes = f"makes the median room {_square_metres(median(areas))}" if areas else "leaves no room at all"
+    seems = (
+        f"; it seems to be {proposal.unit.name} ({proposal.reason}): --unit auto accepts that"
+        if proposal
+        else ""
     )
-    seems = f"; it seems to be {proposal.unit.name} ({proposal.reason})" if proposal else ""
-    text = (
-        f"the header's unit, {unit.name}, {makes}; {_choices(reading)}{seems}; give the right one by --unit"
+    return InputError(
+        f"{file}: the unit of the header ($INSUNITS), {unit.name}, {makes}; {_choices(reading)}; give --unit{seems}"
     )
-    return [Problem("absurd-unit", text)]
 
 
 def _choices(reading: Interpretation) -> str:
-    parts = []
-    for name in PROPOSED:
-        areas = reading.areas(unit_by_name(name).metres)
-        parts.append(f"{_square_metres(median(areas))} in {name}" if areas else f"no room in {name}")
-    return "the median room would measure " + ", ".join(parts)
+    """Say what the median room would measure under each likely unit, and under which of them there is none."""
+    areas = {name: reading.areas(unit_by_name(name).metres) for name in PROPOSED}
+    sizes = [f"{_square_metres(median(areas[name]))} in {name}" for name in PROPOSED if areas[name]]
+    none = [name for name in PROPOSED if not areas[name]]
+    parts = ["the median room would measure " + ", ".join(sizes)] if sizes else []
+    parts += [f"there would be no room in {', '.join(none)}"] if none else []
+    return "; ".join(parts)
 
 
 def _square_metres(area: float) -> str:

@@ -1,9 +1,11 @@
 """The drawing's unit: header, option, neither, absurd."""
 
+from itertools import pairwise
 from pathlib import Path
 
 import pytest
-from reading.drawings import new_drawing, saved, square_on
+from ezdxf.layouts import Modelspace
+from reading.drawings import SQUARE, new_drawing, saved, square_on
 
 from kernelscan.errors import InputError
 from kernelscan.reading import read_plan
@@ -33,7 +35,7 @@ def test_the_option_beats_the_header(tmp_path: Path, name: str) -> None:
 
 
 def test_coordinates_are_the_drawings_own_times_its_unit(tmp_path: Path) -> None:
-    plan = read_plan(saved(tmp_path / "plan.dxf", square_on("ROOM", 0.1, (1234.567, 0.3)), unit=2))
+    plan = read_plan(saved(tmp_path / "plan.dxf", square_on("ROOM", 0.1, (1234.567, 0.3)), unit=2), unit="ft")
     xs = {1234.567 * 0.3048, (1234.567 + 4 * 0.1) * 0.3048}
     assert set(plan.rooms[0].outline[:, 0].tolist()) == xs
 
@@ -70,9 +72,44 @@ def test_an_unknown_option_is_refused(tmp_path: Path) -> None:
 
 
 @pytest.mark.parametrize(("size", "absurd"), [(0.2, True), (0.21, False), (20, False), (20.5, True)])
-def test_an_absurd_header_is_a_problem(tmp_path: Path, size: float, absurd: bool) -> None:
+def test_an_absurd_header_is_refused(tmp_path: Path, size: float, absurd: bool) -> None:
     """The median room is 12 x size^2 m2; the bounds are 0.5 and 5,000 m2."""
-    plan = read_plan(saved(tmp_path / "plan.dxf", square_on("ROOM", size), unit=6))
-    assert [p.code for p in plan.problems] == (["absurd-unit"] if absurd else [])
-    assert not absurd or "mm" in plan.problems[0].message
-    assert len(plan.rooms) == 1
+    path = saved(tmp_path / "plan.dxf", square_on("ROOM", size), unit=6)
+    assert len(read_plan(path, unit="m").rooms) == 1
+    if not absurd:
+        assert len(read_plan(path).rooms) == 1
+        return
+    with pytest.raises(InputError) as refused:
+        read_plan(path)
+    text = str(refused.value)
+    assert text.startswith("plan.dxf: the unit of the header ($INSUNITS), m, makes the median room ")
+    assert "\n" not in text
+    assert " in mm" in text
+    assert "give --unit" in text
+
+
+def test_a_unit_that_leaves_no_room_is_refused_if_another_gives_some(tmp_path: Path) -> None:
+    def draw(space: Modelspace) -> None:
+        for start, end in pairwise([*SQUARE, SQUARE[0]]):
+            space.add_line(start, end, dxfattribs={"layer": "A-WALL"})
+
+    path = saved(tmp_path / "plan.dxf", draw, unit=4)
+    with pytest.raises(InputError, match=r"leaves no room at all; .*it seems to be m .*--unit auto"):
+        read_plan(path)
+    assert len(read_plan(path, unit="auto").rooms) == 1
+
+
+def test_a_drawing_that_closes_no_room_under_any_unit_is_an_answer(tmp_path: Path) -> None:
+    def draw(space: Modelspace) -> None:
+        space.add_line((0, 0), (9, 0), dxfattribs={"layer": "A-WALL"})
+        space.add_arc((3, 3), 0.9, 0, 90, dxfattribs={"layer": "A-DOOR"})
+
+    assert read_plan(saved(tmp_path / "plan.dxf", draw, unit=4)).rooms == ()
+
+
+def test_a_unit_found_out_says_why(tmp_path: Path) -> None:
+    plan = read_plan(saved(tmp_path / "plan.dxf", square_on("ROOM"), unit=4), unit="auto")
+    assert (plan.unit.name, plan.unit_from) == ("m", "proposal")
+    (note,) = plan.problems
+    assert note.code == "proposed-unit"
+    assert note.message == "the unit, m, was found out from the drawing: the only room has 12.0 m2"
