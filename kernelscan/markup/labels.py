@@ -9,7 +9,7 @@ from kernelscan.markup.scene import Box, Fill, Item, Point, Text
 from kernelscan.markup.style import BLACK, BODY, LEADER_PEN, WHITE
 from kernelscan.markup.text import LINE_PITCH
 
-__all__ = ["Label", "Line", "boxes_around", "dot", "nearest_in"]
+__all__ = ["GROUND", "Label", "Line", "boxes_around", "dot", "nearest_in"]
 
 GROUND = 0.4
 """How far the white ground reaches beyond the text, in millimetres."""

@@ -1,4 +1,4 @@
-"""A sheet for each room: at the largest scale that fits, with its setting-out dimensions and a key plan."""
+"""A sheet for each room: at the largest scale that fits, with its setting-out dimensions, aims and a key plan."""
 
 from collections.abc import Iterator, Sequence
 from itertools import dropwhile, islice
@@ -7,6 +7,7 @@ import numpy as np
 
 from kernelscan.coverage import RoomAnswer
 from kernelscan.coverage.wording import Custom
+from kernelscan.markup.aims import aim_arcs, place_section_tags
 from kernelscan.markup.dimensions import dimensions_on_paper, lengths_to_set_out
 from kernelscan.markup.drawing import linework_items
 from kernelscan.markup.layout import Blocks, Layout, arrangements
@@ -40,7 +41,7 @@ AROUND_ROOM = 13.0
 """Kept free around the room for its dimensions."""
 SCALES_TRIED = 8
 WORKING_SCALE = 50
-"""A room that fits the smallest paper at this scale is shown there, and else on the next."""
+"""A room that fits the smallest paper at this scale with its schedule is shown there, and else on the next."""
 
 
 def compose_room_sheets(
@@ -101,7 +102,8 @@ def _layout(extent: Box, blocks: Blocks, options: SheetOptions, imperial: bool) 
         layout, scale = min(
             sized, key=lambda each: (not blocks.schedule.fits(each[0].schedule), each[1].denominator)
         )
-        if scale == wanted or scale.denominator <= WORKING_SCALE:
+        good = scale == wanted or scale.denominator <= WORKING_SCALE
+        if good and blocks.schedule.fits(layout.schedule):
             break
     return layout, scale
 
@@ -140,10 +142,13 @@ def _groups(
     if key is not None:
         tags.taken.add(key)
     dimensions = dimensions_on_paper(lengths_to_set_out(room), view, custom, tags.taken)
+    arcs = aim_arcs(room, view, tags.taken)
+    place_section_tags(tags, room, view, custom)
     place_tags(tags, [room], view, custom)
     yield Group("linework", tuple(linework_items(plan.linework, view, view.box)))
-    drawn = tuple(item for dimension in dimensions for item in dimension.items())
-    yield from room_groups([room], view, tags, drawn)
+    drawn = [item for dimension in dimensions for item in dimension.items()]
+    drawn += [item for turn in arcs for item in turn.items()]
+    yield from room_groups([room], view, tags, tuple(drawn))
     if key is not None:
         yield Group("key", tuple(_key(plan, room.room, key)))
     words = f"{room.room.id} {clean_text(room.room.name)}, {view.scale.text} on {layout.paper.name}"

@@ -31,6 +31,7 @@ __all__ = [
     "HIDDEN_ANGLE",
     "HIDDEN_PEN",
     "HIDDEN_SPACING",
+    "HORIZON_PEN",
     "LEADER_PEN",
     "LINEWORK_PEN",
     "MARKS",
@@ -127,6 +128,7 @@ FEATURE_PEN = Pen(0.18)
 FEATURE_EDGE_PEN = Pen(0.35, BLACK, (1.2, 0.6))
 HIDDEN_PEN = Pen(0.18, BLACK, (1.5, 0.8))
 AIM_PEN = Pen(0.35)
+HORIZON_PEN = Pen(0.18, BLACK, (2.0, 0.8))
 LEADER_PEN = Pen(0.25)
 MATCH_PEN = Pen(0.7, BLACK, (12.0, 2.0, 2.0, 2.0))
 DIMENSION_PEN = Pen(0.25)

@@ -14,10 +14,10 @@ from kernelscan.coverage import RoomAnswer, room_answer
 from kernelscan.coverage.cautions import CAUTIONS, cautions_for
 from kernelscan.markup.dxf import zones_dxf
 from kernelscan.markup.room_sheets import compose_room_sheets
-from kernelscan.markup.scene import Scene, Stroke
+from kernelscan.markup.scene import Scene, Stroke, Text
 from kernelscan.markup.sheet import SheetOptions, compose_zone_sheets
 from kernelscan.markup.shown import hatched_device, shown
-from kernelscan.markup.style import FEATURE_EDGE_PEN, HIDDEN_PEN, MARKS
+from kernelscan.markup.style import AIM_PEN, FEATURE_EDGE_PEN, HIDDEN_PEN, MARKS
 from kernelscan.plan import Device
 
 SQUARE = [(0, 0), (6, 0), (6, 5), (0, 5)]
@@ -169,6 +169,43 @@ def test_every_room_and_device_is_told_on_room_sheets(unit: str) -> None:
     told = words(compose_room_sheets(plan_of(answers, unit), answers))
     assert all(
         told.count(f"{name}: ") + told.count(f"{name} (cheapest): ") >= 2 for name in ("Dome", "Corner eye")
+    )
+
+
+def room_sheet_of(*devices: Device) -> Scene:
+    answers = [square(*devices)]
+    return compose_room_sheets(plan_of(answers), answers, SheetOptions(paper="A3"))[0]
+
+
+def test_the_aim_is_an_arc_from_the_wall_with_its_angle() -> None:
+    strings = [
+        item.string for item in room_sheet_of(NOOK).group("setting-out").items if isinstance(item, Text)
+    ]
+    assert strings == ["45°"]
+    narrow = square(NARROW)
+    aim, bearing = narrow.devices[0].partial[0].aim.bearing, shown(narrow).spots[0].bearing
+    turned = abs((aim - (bearing - pi / 2) + pi) % (2 * pi) - pi)
+    told = [
+        item.string for item in room_sheet_of(NARROW).group("setting-out").items if isinstance(item, Text)
+    ]
+    assert f"{np.degrees(turned):.0f}°" in told
+
+
+def test_a_device_that_sees_all_round_has_no_arc() -> None:
+    told = [
+        item.string for item in room_sheet_of(CEILING).group("setting-out").items if isinstance(item, Text)
+    ]
+    assert not any("°" in string for string in told)
+
+
+def test_height_and_tilt_are_in_a_tag_with_a_section() -> None:
+    tags = room_sheet_of(NOOK).group("tags").items
+    assert {"2.40 m high", "tilt 23°"} <= {item.string for item in tags if isinstance(item, Text)}
+    (axis,) = [item for item in tags if isinstance(item, Stroke) and item.pen == AIM_PEN]
+    (x0, y0), (x1, y1) = axis.points
+    assert np.arctan2(y0 - y1, x1 - x0) == pytest.approx(NOOK.tilt)
+    assert not any(
+        "tilt" in item.string for item in room_sheet_of(CEILING).group("tags").items if isinstance(item, Text)
     )
 
 

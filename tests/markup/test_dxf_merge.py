@@ -36,9 +36,8 @@ def merged(path: Path) -> tuple[Drawing, Drawing]:
     original, repairs = open_drawing(path)
     assert not repairs
     copy = merged_dxf(open_drawing(path)[0], plan, answers)
-    return original, ezdxf.read(
-        io.StringIO(copy.decode(original.encoding if original.dxfversion < "AC1021" else "utf-8"))
-    )
+    # As R2010 or later every drawing is written in UTF-8.
+    return original, ezdxf.read(io.StringIO(copy.decode("utf-8")))
 
 
 @pytest.mark.parametrize("name", SAMPLES)
@@ -52,6 +51,13 @@ def test_no_entity_of_the_drawing_is_changed(sample_plans: Path, name: str) -> N
     assert ours
     assert all(layer.startswith("A-KSCN-") for layer in ours)
     assert not copy.audit().errors
+
+
+def test_a_changed_entity_would_be_noticed(sample_plans: Path) -> None:
+    original, copy = merged(sample_plans / SAMPLES[0])
+    entity = next(iter(original.modelspace()))
+    copy.entitydb[entity.dxf.handle].dxf.layer = "OTHER"
+    assert tags_of(copy)[entity.dxf.handle] != tags_of(original)[entity.dxf.handle]
 
 
 @pytest.mark.parametrize("name", SAMPLES)
