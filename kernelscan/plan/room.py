@@ -1,11 +1,13 @@
 """A room: its outline, what stands in it, what opens in its walls, and where in the drawing it came from."""
 
 from dataclasses import dataclass
+from math import atan2
 from typing import Literal, NamedTuple
 
 import numpy as np
 
 from kernelscan.geometry.rings import Ring, signed_area
+from kernelscan.tolerances import Tolerances
 
 __all__ = [
     "Closing",
@@ -135,6 +137,25 @@ class Room:
     def corner_count(self) -> int:
         """How many corners the outline and the obstacles have."""
         return sum(len(ring) for ring in self.rings)
+
+    @property
+    def opening_count(self) -> int:
+        """How many openings there are, where a door in a curved wall, drawn over several of its chords, is one.
+
+        Openings of one kind are one where they meet at a joint at which the wall goes on smoothly.
+        """
+        ends = {(each.wall, each.kind) for each in self.openings if each.span[1] >= 1.0}
+        starts = {(each.wall, each.kind) for each in self.openings if each.span[0] <= 0.0}
+        joined = sum((self._smooth_after(wall), kind) in starts for wall, kind in ends)
+        return max(len(self.openings) - joined, min(len(self.openings), 1))
+
+    def _smooth_after(self, wall: WallRef) -> WallRef | None:
+        """Return the next wall of the ring if this one runs on into it smoothly."""
+        following = WallRef(wall.ring, (wall.edge + 1) % len(self.rings[wall.ring]))
+        (a, b), (c, d) = self.wall_ends(wall), self.wall_ends(following)
+        (ux, uy), (vx, vy) = (b - a).tolist(), (d - c).tolist()
+        turn = abs(atan2(ux * vy - uy * vx, ux * vx + uy * vy))
+        return following if turn < Tolerances().smooth else None
 
     def wall_ends(self, wall: WallRef) -> tuple[np.ndarray, np.ndarray]:
         """Return the two ends of a wall, each ``(2,)`` in metres, in the ring's own direction."""

@@ -10,6 +10,7 @@ from kernelscan.coverage import RoomAnswer, RoomZones, Spot
 from kernelscan.coverage.wording import Custom, angle_in_words
 from kernelscan.plain_text import plain_text
 from kernelscan.plan import Plan, Problem, Room
+from kernelscan.report.no_rooms import no_room_reason
 from kernelscan.report.reason_lines import feature_lines, reason_lines
 from kernelscan.report.terminal import cell, print_parts, table_of
 from kernelscan.report.wording import (
@@ -32,11 +33,11 @@ def print_rooms(plan: Plan, out: TextIO) -> None:
             cell(room.name),
             _area(plan, room),
             str(room.corner_count),
-            str(len(room.openings)),
+            str(room.opening_count),
             str(len(room.obstacles)),
             cell(room.source.layer),
         )
-    print_parts(out, _heading(plan), table)
+    print_parts(out, _heading(plan), *_no_rooms(plan), table)
 
 
 def print_zones(plan: Plan, answers: Sequence[RoomAnswer], out: TextIO) -> None:
@@ -61,7 +62,7 @@ def print_zones(plan: Plan, answers: Sequence[RoomAnswer], out: TextIO) -> None:
         if answer.tolerant is not None:
             depth = tolerance_in_words(plan, answer.tolerant.simplified.depth)
             _add_spots(table, plan, ["", "", ""], answer.tolerant.zones, f"without features to {depth}: ")
-    print_parts(out, _heading(plan), table)
+    print_parts(out, _heading(plan), *_no_rooms(plan), table)
 
 
 def _add_spots(table: Table, plan: Plan, head: list[str | Text], zones: RoomZones, kind: str) -> None:
@@ -92,6 +93,11 @@ def _heading(plan: Plan) -> str:
     said_by = {"header": "its header", "option": "the option", "proposal": "its own sizes"}[plan.unit_from]
     rule = plain_text(plan.room_rule, 400)
     return f"{plain_text(plan.file)}: {_count(len(plan.rooms), 'room')}; unit {plan.unit.name}, from {said_by}. {rule}"
+
+
+def _no_rooms(plan: Plan) -> list[str]:
+    """Return the line that says that there is no room, and why, where there is none."""
+    return [] if plan.rooms else [f"No room found: {no_room_reason(plan)}."]
 
 
 def _count(number: int, noun: str) -> str:
