@@ -32,6 +32,9 @@ from collections.abc import Iterable
 from math import inf
 from typing import Literal
 
+import numpy as np
+import numpy.typing as npt
+
 from kernelscan.geometry.predicates import (
     AT_INFINITY,
     Line,
@@ -70,7 +73,7 @@ class ConvexRegion:
     origin
         The local origin for the filter.
     reach
-        A bound M on the coordinates of all the rows' border points, as seen from the origin.
+        A bound M on the coordinates of all the rows' border points, as seen from the origin; see :meth:`reach_to`.
     """
 
     __slots__ = (
@@ -88,8 +91,8 @@ class ConvexRegion:
     )
 
     def __init__(self, rows: Rows, first: int, second: int, origin: Place, reach: float) -> None:
-        self.rows, self.origin, self.reach = rows, origin, reach
-        self.bound = FILTER * reach + TINY if reach <= 2.0**1000 else inf
+        self.rows, self.origin, self.reach, self.bound = rows, origin, 0.0, 0.0
+        self.reach_to(reach)
         self.exact: dict[int, Line] = {INFINITE: AT_INFINITY}
         self.shape: Shape = "area"
         self.names = [first, second, INFINITE]
@@ -97,6 +100,18 @@ class ConvexRegion:
         self.corners = [_cross(self.lines[k - 1], self.lines[k]) for k in range(3)]
         self.proof: tuple[int, ...] = ()
         self.conflict: tuple[int, ...] = ()
+
+    def reach_to(self, reach: float) -> None:
+        """Let the filter allow for border points up to a distance from the origin, before such are added."""
+        self.reach = max(self.reach, reach)
+        self.bound = FILTER * self.reach + TINY if self.reach <= 2.0**1000 else inf
+
+    def cut_by_rows(self, numbers: npt.NDArray[np.int64], rows: npt.NDArray[np.float64]) -> None:
+        """Add half-planes, ``(m, 6)``, and cut by them in turn."""
+        names, table, (ox, oy) = numbers.tolist(), rows.tolist(), self.origin
+        self.rows.update(zip(names, table, strict=True))
+        self.reach_to(max([max(abs(row[0] - ox), abs(row[1] - oy)) for row in table], default=0.0))
+        self.cut_by_all(names)
 
     def cut_by_all(self, numbers: Iterable[int]) -> None:
         """Cut by the half-planes in turn, and stop as soon as nothing is left."""
@@ -268,23 +283,12 @@ def _cross(g: Floats, h: Floats) -> Floats:
     return g[1] * h[2] - h[1] * g[2], g[2] * h[0] - h[2] * g[0], g[0] * h[1] - h[0] * g[1]
 
 
-def region_of(rows: Rows, origin: Place | None = None, reach: float | None = None) -> ConvexRegion | None:
-    """Return the intersection of half-planes; None if all of them are parallel.
-
-    Parameters
-    ----------
-    rows
-        The half-planes by number.
-    origin, reach
-        A local origin and a bound on all coordinates as seen from there, of these rows and of any to be added
-        later; found from the rows if not given.
-    """
+def region_of(rows: Rows) -> ConvexRegion | None:
+    """Return the intersection of half-planes, given by number; None if all of them are parallel."""
     pair = _starting_pair(rows)
     if pair is None:
         return None
-    if origin is None or reach is None:
-        origin, reach = _surroundings(rows)
-    region = ConvexRegion(rows, *pair, origin, reach)
+    region = ConvexRegion(rows, *pair, *_surroundings(rows))
     region.cut_by_all(i for i in rows if i not in pair)
     return region
 

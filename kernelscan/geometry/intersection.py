@@ -4,12 +4,13 @@ Problem
     Its kind (an area, a segment, a point or empty), its sides in order, its corners; of an empty one, two or three
     half-planes that exclude each other.
 Method
-    Few half-planes cut a region one after the other (:mod:`~kernelscan.geometry.clipping`). Of many, a sample is cut
-    first. If nothing is left of it, nothing is left of all; so, too, for the first few, since walls that follow each
-    other often exclude each other. Else one pass drops every half-plane that holds what the sample leaves
-    (:mod:`~kernelscan.geometry.pruning`); the rest is sampled again, and so on until few are left. Where a pass drops
-    too little, because the intersection has very many sides, a larger sample and those that cut deepest make one
-    more pass, and the sides are found by local elimination (:mod:`~kernelscan.geometry.elimination`).
+    Few half-planes cut a region one after the other (:mod:`~kernelscan.geometry.clipping`). Of many, the first few are
+    cut, since walls that follow each other often exclude each other: if nothing is left of them, nothing is left of
+    all. The region is then cut by the deepest of a sample (:mod:`~kernelscan.geometry.sifting`), one pass drops every
+    half-plane that holds what the sample leaves (:mod:`~kernelscan.geometry.pruning`), and the rest is sifted like the
+    sample. Where a pass drops too little, because the intersection has very many sides, a larger sample and those that
+    cut deepest make one more pass, and the sides are found by local elimination
+    (:mod:`~kernelscan.geometry.elimination`).
 Exactness
     Signs come from floats with proven bounds or else from integers, for the six doubles of each half-plane as they are
     stored. Corners are named by two half-planes and rounded once, at the end.
@@ -21,7 +22,7 @@ Source
     The sampling follows Clarkson, Las Vegas algorithms for linear and integer programming, J. ACM 42(2), 1995.
 """
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 from itertools import pairwise
@@ -36,16 +37,18 @@ from kernelscan.geometry.elimination import sides_of
 from kernelscan.geometry.halfplanes import HalfPlanes
 from kernelscan.geometry.predicates import Row, Triple, exact_line, meet, rounded
 from kernelscan.geometry.pruning import HalfPlaneSource, Indices, Outline, RowSource, most_cutting, survivors
+from kernelscan.geometry.sifting import sift
 
 __all__ = ["FEW", "Intersection", "Solution", "corners_of", "intersect", "solve"]
 
 FEW = 64
+HEAD = 16
 FINISH = 100
-SAMPLE = 64
-LARGE_SAMPLE = 1024
+PORTION = 4096
+SAMPLE = 1024
+CUTTING = 64
 MANY = 8192
-VERY_MANY = 300_000
-HEADS = (16, 128, 1024)
+HEADS = (128, 1024)
 HEAD_SHARE = 1000
 GOLDEN = 0.6180339887498949
 
@@ -152,45 +155,70 @@ def corners_of(names: Sequence[tuple[int, int]], row: Callable[[int], Row]) -> l
 def solve(source: HalfPlaneSource) -> Solution:
     """Return the intersection of many half-planes or of few."""
     count = len(source)
-    if count <= FEW:
-        region = region_of(_rows(source, np.arange(count))) if count else None
-        return _eliminated(source, np.arange(count)) if region is None else _solved(region)
-    for size in HEADS:
-        if count < size * HEAD_SHARE and size != HEADS[0]:
-            break
-        head = solve(RowSource(source.rows(np.arange(size))))
-        if head.kind == "empty":
-            return head
-    return _sampled(source, _spread(count, SAMPLE if count < VERY_MANY else 6 * SAMPLE))
+    if not count:
+        return _eliminated(source, np.arange(0))
+    region = region_of(_rows(source, np.arange(count if count <= FEW else HEAD)))
+    if region is None:
+        region = region_of(_rows(source, _spread(count, FEW)))
+    if region is None:
+        return _eliminated(source, np.arange(count))
+    return _solved(region) if count <= FEW else _narrowed(source, region)
 
 
-def _sampled(source: HalfPlaneSource, sample: Indices) -> Solution:
-    """Cut by a sample, drop what holds the rest of it, and so on with a sample of what is left."""
-    region = region_of(_rows(source, sample), *source.surroundings())
-    pool = None
-    while region is not None and region.shape != "empty":
+def _narrowed(source: HalfPlaneSource, region: ConvexRegion) -> Solution:
+    """Cut a region by samples, and then by all that may still change it."""
+    count, pool = len(source), None
+    for sample in _samples(count):
+        if region.shape == "area":
+            sift(region, source.rows(sample), sample)
+    if region.shape == "area" and count > PORTION:
         outline = Outline.of(region)
-        if outline is None and region.shape == "area":
-            # The pool is without the region's own lines: they are needed again.
-            own = np.array([name for name in region.names if name != INFINITE])
-            return _eliminated(source, None if pool is None else _together(len(source), own, pool))
-        before = len(source) if pool is None else len(pool)
-        pool = _without(_survivors(source, pool, outline), region)
-        if len(pool) <= FINISH or region.shape != "area":
-            _cut(region, source, pool)
-            break
-        if 2 * len(pool) > before:
-            return _many_sided(source, np.array(region.names), pool, outline)
-        _cut(region, source, pool[_spread(len(pool))])
-    return _eliminated(source, pool) if region is None else _solved(region)
+        if outline is None:
+            return _eliminated(source, None)
+        pool = survivors(source, outline)
+        if 2 * len(pool) > count:
+            return _many_sided(source, region, _without(pool, region), outline)
+    if region.shape == "area":
+        pool = _sifted(source, region, np.arange(count) if pool is None else pool)
+        if region.shape == "area" and len(pool) > FINISH:
+            return _many_sided(source, region, pool, Outline.of(region))
+    if region.shape in ("segment", "point"):
+        pool = _survivors(source, pool, Outline.of(region))
+    if pool is not None and region.shape != "empty":
+        region.cut_by_rows(pool, source.rows(pool))
+    return _solved(region)
 
 
-def _many_sided(source: HalfPlaneSource, own: Indices, pool: Indices, outline: Outline | None) -> Solution:
+def _samples(count: int) -> Iterator[Indices]:
+    """Yield some of all, and the first, since walls that follow each other often exclude each other."""
+    if count > PORTION:
+        yield _spread(count, SAMPLE)
+    for size in HEADS:
+        if count >= size * HEAD_SHARE:
+            yield np.arange(size)
+
+
+def _sifted(source: HalfPlaneSource, region: ConvexRegion, pool: Indices) -> Indices:
+    """Cut a region by a pool, a portion at a time; return who is still in doubt."""
+    left = []
+    for k in range(0, len(pool), PORTION):
+        portion = pool[k : k + PORTION]
+        left.append(sift(region, source.rows(portion), portion))
+    pool = np.concatenate(left) if left else pool
+    if region.shape == "area" and len(pool) > FINISH and len(left) > 1:
+        pool = sift(region, source.rows(pool), pool)
+    return _without(pool, region)
+
+
+def _many_sided(
+    source: HalfPlaneSource, region: ConvexRegion, pool: Indices, outline: Outline | None
+) -> Solution:
     """Find the sides of a region that has many; if the pool is large, with the help of a large sample of it."""
+    own = np.array([name for name in region.names if name != INFINITE])
     if outline is not None and len(pool) > MANY:
         rows = source.rows(pool)
-        cutting = most_cutting(rows, outline, SAMPLE)
-        sample = _together(len(source), own, pool[_spread(len(pool), LARGE_SAMPLE)], pool[cutting])
+        cutting = most_cutting(rows, outline, CUTTING)
+        sample = _together(len(source), own, pool[_spread(len(pool), SAMPLE)], pool[cutting])
         rough = _eliminated(source, sample)
         if rough.kind == "empty":
             return rough
@@ -225,19 +253,14 @@ def _without(numbers: Indices, region: ConvexRegion) -> Indices:
     return np.delete(numbers, places[numbers[places] == np.array(own)[known]])
 
 
-def _spread(count: int, size: int = SAMPLE) -> Indices:
-    """Return some numbers below count, far from each other and from any period."""
-    places: Indices = np.unique((np.arange(1, size + 1) * GOLDEN % 1 * count).astype(np.int64))
-    return places
+def _spread(count: int, size: int) -> Indices:
+    """Return some numbers below count, ascending, far from each other and from any period."""
+    places = np.sort((np.arange(1, size + 1) * GOLDEN % 1 * count).astype(np.int64))
+    return places[np.diff(places, prepend=-1) > 0]
 
 
 def _rows(source: HalfPlaneSource, numbers: Indices) -> dict[int, Row]:
     return dict(zip(numbers.tolist(), source.rows(numbers).tolist(), strict=True))
-
-
-def _cut(region: ConvexRegion, source: HalfPlaneSource, numbers: Indices) -> None:
-    region.rows.update(_rows(source, numbers))
-    region.cut_by_all(numbers.tolist())
 
 
 def _solved(region: ConvexRegion) -> Solution:
@@ -267,7 +290,9 @@ def _eliminated(source: HalfPlaneSource, numbers: Indices | None) -> Solution:
     if len(found.thin) == 2:
         return Solution("segment", numbers[list(found.thin)], (), (), is_bounded=False)
     if found.thin:
-        return _sampled(source, numbers[list(found.thin)])
+        region = region_of(_rows(source, numbers[list(found.thin)]))
+        assert region is not None  # the three are not all parallel
+        return _narrowed(source, region)
     sides = numbers[found.order]
     if found.is_bounded:
         return Solution("area", sides)

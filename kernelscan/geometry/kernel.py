@@ -117,7 +117,7 @@ def kernel_of_rings(rings: Sequence[Ring]) -> Kernel:
     if solution.kind == "empty":
         conflict = wall_numbers(rings, np.array(solution.conflict, dtype=np.int64))
         return Kernel("empty", NO_POINTS, 0.0, NO_WALLS, conflict, tuple(rings))
-    walls = wall_numbers(rings, solution.sides)
+    walls = _named(rings, solution.sides.tolist())
     vertices, area = _corners_of_many(source, solution)
     return Kernel(solution.kind, vertices, area, walls, NO_WALLS, tuple(rings))
 
@@ -147,6 +147,10 @@ def _corners_of_many(source: RingSource, solution: Solution) -> tuple[npt.NDArra
         row = dict(zip(solution.sides.tolist(), sides.tolist(), strict=True))
         triples = corners_of(solution.corners, row.__getitem__)
         return np.array([rounded(triple) for triple in triples]), 0.0
+    if len(sides) <= FEW:
+        triples = _corners_around(sides.tolist())
+        points = [rounded(triple) for triple in triples]
+        return np.array(points), polygon_area(points, lambda: triples)
     before = np.roll(sides, 1, axis=0)
     vertices = sides[:, :2].copy()
     apart = np.flatnonzero((before[:, 4:] != vertices).any(axis=1))

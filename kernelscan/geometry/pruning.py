@@ -18,7 +18,7 @@ Letters
     p, d as above; g = c - p; q corners, r the box.
 """
 
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from math import inf
 from typing import Protocol
@@ -53,9 +53,6 @@ class HalfPlaneSource(Protocol):
     def rows(self, numbers: Indices) -> Floats:
         """Return some of them as ``(m, 6)`` rows."""
 
-    def surroundings(self) -> tuple[tuple[float, float], float]:
-        """Return a border point and a bound on the coordinates of all border points as seen from there."""
-
     def portions(self) -> Iterator[tuple[int, Floats, Floats]]:
         """Yield border points and ways, ``(2, m)`` each, in portions, with the number of the first."""
 
@@ -72,10 +69,6 @@ class RowSource:
     def rows(self, numbers: Indices) -> Floats:
         """Return some of them as ``(m, 6)`` rows."""
         return self.table[numbers]
-
-    def surroundings(self) -> tuple[tuple[float, float], float]:
-        """Return a border point and a bound on the coordinates of all border points as seen from there."""
-        return _surroundings([self.table[:, :2]])
 
     def portions(self) -> Iterator[tuple[int, Floats, Floats]]:
         """Yield border points and ways, ``(2, m)`` each, in portions, with the number of the first."""
@@ -98,7 +91,7 @@ class RingSource:
         """Return some of them as ``(m, 6)`` rows."""
         if len(self.rings) == 1:
             (ring,) = self.rings
-            starts, ends = ring[numbers], ring[(numbers + 1) % len(ring)]
+            starts, ends = ring.take(numbers, axis=0), ring.take(numbers + 1, axis=0, mode="wrap")
             return np.concatenate([starts, starts, ends], axis=1)
         table = np.empty((len(numbers), 6))
         for ring, first, after in zip(self.rings, self.firsts[:-1], self.firsts[1:], strict=True):
@@ -107,10 +100,6 @@ class RingSource:
             table[mine, :2] = table[mine, 2:4] = ring[edges]
             table[mine, 4:] = ring[(edges + 1) % len(ring)]
         return table
-
-    def surroundings(self) -> tuple[tuple[float, float], float]:
-        """Return a border point and a bound on the coordinates of all border points as seen from there."""
-        return _surroundings(self.rings)
 
     def portions(self) -> Iterator[tuple[int, Floats, Floats]]:
         """Yield border points and ways, ``(2, m)`` each, in portions, with the number of the first."""
@@ -122,24 +111,6 @@ class RingSource:
                     points = np.concatenate([points, ring[:1]])
                 points = np.ascontiguousarray(points.T)
                 yield first + k, points[:, :-1], points[:, 1:] - points[:, :-1]
-
-
-def _surroundings(point_sets: Sequence[Floats]) -> tuple[tuple[float, float], float]:
-    origin = point_sets[0][0]
-    reach = 0.0
-    for points in point_sets:
-        reach = max(reach, float((_extreme(points, np.max) - origin).max()))
-        reach = max(reach, float((origin - _extreme(points, np.min)).max()))
-    return (float(origin[0]), float(origin[1])), reach
-
-
-def _extreme(points: Floats, of: Callable[..., Floats]) -> Floats:
-    """Return the greatest, or least, x and y; in long rows first, because short ones are slow to reduce."""
-    whole = len(points) // 256 * 256
-    if not whole or not points.flags.c_contiguous:
-        return of(points, axis=0)
-    rows = of(points[:whole].reshape(-1, 512), axis=0).reshape(-1, 2)
-    return of(np.concatenate([rows, points[whole:]]), axis=0)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
