@@ -3,7 +3,7 @@
 import re
 from collections.abc import Sequence
 from dataclasses import replace
-from math import isfinite
+from math import inf, isfinite
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -16,21 +16,73 @@ if TYPE_CHECKING:
     import numpy.typing as npt
 
     from kernelscan.plan import Plan, Room
+    from kernelscan.reading.reading_file import ReadingChoices
+    from kernelscan.reading.window import Window
 
     Point = npt.NDArray[np.float64]
 
-__all__ = ["read_drawing", "wanted_spot", "with_rooms"]
+__all__ = ["read_drawing", "reading_choices", "wanted_spot", "with_rooms"]
 
 
-def read_drawing(
-    path: Path, unit: DrawingUnit | None, room_layers: Sequence[str], obstacle_layers: Sequence[str]
-) -> "Plan":
-    """Return the plan of a drawing, read by the shared options."""
+def reading_choices(
+    reading: Path | None,
+    *,
+    unit: DrawingUnit | None,
+    window: str | None,
+    door_gap: float | None,
+    room: Sequence[str],
+    wall: Sequence[str],
+    opening: Sequence[str],
+    obstacle: Sequence[str],
+    device: Sequence[str],
+) -> "ReadingChoices":
+    """Return what the shared options settle about the reading; each counts before the reading file's word."""
+    from kernelscan.reading.reading_file import ReadingChoices, read_choices
+
+    said = read_choices(reading) if reading is not None else ReadingChoices()
+    layers = replace(
+        said.layers,
+        rooms=tuple(room) or said.layers.rooms,
+        walls=tuple(wall) or said.layers.walls,
+        openings=tuple(opening) or said.layers.openings,
+        obstacles=tuple(obstacle) or said.layers.obstacles,
+        devices=tuple(device) or said.layers.devices,
+    )
+    return ReadingChoices(
+        unit.value if unit is not None else said.unit,
+        _window(window) if window is not None else said.window,
+        layers,
+        door_gap if door_gap is not None else said.door_gap,
+    )
+
+
+def read_drawing(path: Path, choices: "ReadingChoices") -> "Plan":
+    """Return the plan of a drawing, read as it was settled."""
     from kernelscan.reading import read_plan
-    from kernelscan.reading.layers import LayerPatterns
+    from kernelscan.tolerances import Tolerances
 
-    layers = LayerPatterns(rooms=tuple(room_layers), obstacles=tuple(obstacle_layers))
-    return read_plan(path, unit=unit, layers=layers)
+    usual = Tolerances()
+    gap = usual.door_gap if choices.door_gap is None else choices.door_gap
+    return read_plan(
+        path,
+        unit=choices.unit,
+        layers=choices.layers,
+        tolerances=replace(usual, door_gap=gap),
+        window=choices.window,
+    )
+
+
+def _window(text: str) -> "Window":
+    """Return the corners that ``--window`` gives."""
+    try:
+        x0, y0, x1, y1 = (float(number) for number in text.split(","))
+    except ValueError:
+        x0 = y0 = x1 = y1 = inf
+    if not all(map(isfinite, (x0, y0, x1, y1))) or x0 == x1 or y0 == y1:
+        raise InputError(
+            f"--window {plain_text(text)!r}: expected two opposite corners in drawing units, such as 0,0,42000,29700"
+        )
+    return x0, y0, x1, y1
 
 
 def with_rooms(plan: "Plan", names: Sequence[str]) -> "Plan":

@@ -9,12 +9,17 @@ import typer
 __all__ = [
     "AsPdf",
     "DeviceFile",
+    "DeviceLayers",
+    "DoorGap",
     "DrawingPath",
     "DrawingUnit",
+    "DrawnWindow",
     "LayerPrefix",
     "Merge",
     "ObstacleLayers",
+    "OpeningLayers",
     "Quiet",
+    "ReadingFile",
     "RoomLayers",
     "RoomNames",
     "RoomSheets",
@@ -28,11 +33,12 @@ __all__ = [
     "SheetScale",
     "SheetTitle",
     "UnitChoice",
+    "WallLayers",
 ]
 
 
 class DrawingUnit(StrEnum):
-    """The units that ``--unit`` takes."""
+    """The units that ``--unit`` takes, and ``auto`` for the one that the drawing's own sizes speak for."""
 
     MM = "mm"
     CM = "cm"
@@ -67,6 +73,38 @@ ObstacleLayers = Annotated[
     typer.Option(
         "--obstacle-layer", metavar="PATTERN", help="Layers whose closed outlines block sight; repeatable."
     ),
+]
+WallLayers = Annotated[
+    list[str],
+    typer.Option("--wall-layer", metavar="PATTERN", help="Layers whose lines are walls; repeatable."),
+]
+OpeningLayers = Annotated[
+    list[str],
+    typer.Option("--opening-layer", metavar="PATTERN", help="Layers of doors and windows; repeatable."),
+]
+DeviceLayers = Annotated[
+    list[str],
+    typer.Option("--device-layer", metavar="PATTERN", help="Layers that devices are drawn on; repeatable."),
+]
+DoorGap = Annotated[
+    float | None,
+    typer.Option(
+        "--door-gap",
+        metavar="METRES",
+        min=0.0,
+        max=10.0,
+        help="Close bare gaps in walls up to this width, else 1.3 m.",
+    ),
+]
+DrawnWindow = Annotated[
+    str | None,
+    typer.Option(
+        "--window", metavar="X0,Y0,X1,Y1", help="Read only what lies between these corners, in drawing units."
+    ),
+]
+ReadingFile = Annotated[
+    Path | None,
+    typer.Option("--reading", metavar="FILE.toml", help="Unit, window and layers, as settled for a project."),
 ]
 DeviceFile = Annotated[
     Path | None,

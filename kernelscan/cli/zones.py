@@ -8,15 +8,20 @@ from typing import TYPE_CHECKING, Annotated
 
 import typer
 
-from kernelscan.cli.drawing import read_drawing, wanted_spot, with_rooms
+from kernelscan.cli.drawing import read_drawing, reading_choices, wanted_spot, with_rooms
 from kernelscan.cli.options import (
     AsPdf,
     DeviceFile,
+    DeviceLayers,
+    DoorGap,
     DrawingPath,
+    DrawnWindow,
     LayerPrefix,
     Merge,
     ObstacleLayers,
+    OpeningLayers,
     Quiet,
+    ReadingFile,
     RoomLayers,
     RoomNames,
     RoomSheets,
@@ -30,6 +35,7 @@ from kernelscan.cli.options import (
     SheetScale,
     SheetTitle,
     UnitChoice,
+    WallLayers,
 )
 from kernelscan.cli.progress import with_progress
 from kernelscan.cli.sheets import SHEET_NAMES, check_sheets, markup_files, print_written, sheet_files
@@ -80,7 +86,13 @@ def zones(
     merge: Merge = False,
     room: RoomNames = [],  # noqa: B006 - typer copies it
     room_layer: RoomLayers = [],  # noqa: B006
+    wall_layer: WallLayers = [],  # noqa: B006
+    opening_layer: OpeningLayers = [],  # noqa: B006
     obstacle_layer: ObstacleLayers = [],  # noqa: B006
+    device_layer: DeviceLayers = [],  # noqa: B006
+    door_gap: DoorGap = None,
+    window: DrawnWindow = None,
+    reading: ReadingFile = None,
     quiet: Quiet = False,
 ) -> None:
     """Find from where every wall of each room is seen; write the report and sheets."""
@@ -103,7 +115,18 @@ def zones(
     if devices is None and (near is not None or towards is not None):
         raise InputError("--near and --towards choose among the spots of devices; give --devices too")
     wanted = read_devices(devices) if devices is not None else ()
-    whole = read_drawing(plan_file, unit, room_layer, obstacle_layer)
+    choices = reading_choices(
+        reading,
+        unit=unit,
+        window=window,
+        door_gap=door_gap,
+        room=room_layer,
+        wall=wall_layer,
+        opening=opening_layer,
+        obstacle=obstacle_layer,
+        device=device_layer,
+    )
+    whole = read_drawing(plan_file, choices)
     spot = wanted_spot(whole, near, towards)
     plan = with_rooms(whole, room)
     answers = [

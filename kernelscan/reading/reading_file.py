@@ -133,11 +133,17 @@ def _layers(table: object, faults: list[str]) -> LayerPatterns:
 
 
 def used_choices(plan: Plan, window: Window | None = None, door_gap: float | None = None) -> ReadingChoices:
-    """Return the choices that read a plan again in the same way: its unit, and the role of each of its layers."""
+    """Return the choices that read a plan again in the same way: its unit, and the role of each of its layers.
+
+    Layers named for rooms are settled only where they outline the rooms: a choice of them is kept to, even where it
+    gives no room.
+    """
     by_role = {
         key: tuple(_escaped(use.layer) for use in plan.layers if use.role == role)
         for key, role in ROLES.items()
     }
+    if not any(room.closed_by == "outline" for room in plan.rooms):
+        by_role["rooms"] = ()
     rest = ("furniture", "stairs", "annotation", "other")
     ignored = tuple(_escaped(use.layer) for use in plan.layers if use.role in rest)
     unit = plan.unit.name if plan.unit.name in OPTION_UNITS else None

@@ -21,7 +21,7 @@ from kernelscan.report.wording import (
     tolerance_in_words,
 )
 
-__all__ = ["print_problems", "print_reasons", "print_rooms", "print_zones"]
+__all__ = ["print_layers", "print_problems", "print_reasons", "print_rooms", "print_zones"]
 
 
 def print_rooms(plan: Plan, out: TextIO) -> None:
@@ -81,6 +81,15 @@ def print_reasons(plan: Plan, answers: Sequence[RoomAnswer], out: TextIO) -> Non
             print_parts(
                 out, f"{answer.room.id} {plain_text(answer.room.name)}:", *(f"  {line}" for line in lines)
             )
+
+
+def print_layers(plan: Plan, out: TextIO) -> None:
+    """Print a row for each layer on which something was found: the part it was given, and why."""
+    if plan.layers:
+        table = table_of("layer", "taken for", "because of", "lines")
+        for use in plan.layers:
+            table.add_row(cell(use.layer), use.role, cell(use.reason), str(use.strokes))
+        print_parts(out, table)
 
 
 def print_problems(plan: Plan, out: TextIO) -> None:
