@@ -2,8 +2,8 @@
 
 Method
     The cross product of each edge with the next, with e = 2**-53 surely positive if it is above
-    6 e (|x y| + |x' y'|), since each component is a difference of doubles, off by a part e. The first few are tried
-    before the rest. A simple ring that turns left all the way turns around once.
+    6 e (|x y| + |x' y'|), since each component is a difference of doubles, off by a part e. The first few are tried,
+    without a bound, before the rest. A simple ring that turns left all the way turns around once.
 """
 
 import numpy as np

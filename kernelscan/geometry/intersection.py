@@ -42,7 +42,7 @@ from kernelscan.geometry.sifting import sift
 __all__ = ["FEW", "Intersection", "Solution", "corners_of", "intersect", "solve"]
 
 FEW = 64
-HEAD = 16
+HEAD = 8
 FINISH = 100
 PORTION = 4096
 SAMPLE = 1024

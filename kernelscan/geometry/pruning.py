@@ -12,8 +12,8 @@ Method
 Exactness
     What is dropped is surely held. With e = 2**-53: c - p errs by a part e, d by a part e, the two products each by a
     part 3 e more, so d x (c - p) is off by less than 5 e (|d_x| |c_y - p_y| + |d_y| |c_x - p_x|), which is bounded with
-    the largest |c - p| of the portion and added to r. The corners' own errors and that of the matrix product,
-    3 e |d| |q|, are added likewise. Overflow gives infinities or NaN, which compare as not held.
+    the largest |c - p| of the portion and added to r. Asking about the corners, their own errors and that of the
+    matrix product, 3 e |d| |q|, take the place of r. Overflow gives infinities or NaN, which compare as not held.
 Letters
     p, d as above; g = c - p; q corners, r the box.
 """
@@ -199,60 +199,64 @@ def _off(numerator: int, denominator: int, nearest: float) -> float:
 
 def survivors(source: HalfPlaneSource, outline: Outline) -> Indices:
     """Return the numbers, ascending, of the half-planes that do not surely hold a region."""
-    found = []
+    found, box = [], outline.reach
+    held = _held_by_corners if outline.corners.shape[1] <= FEW else _held_by_angle
     with np.errstate(over="ignore", invalid="ignore", under="ignore"):
         for first, p, d in source.portions():
-            left = np.flatnonzero(~_held_by_box(p, d, outline))
+            depths, off = _depths(p, d, outline)
+            left = np.flatnonzero(~(depths > _margins(d, box + off)))
             if len(left):
-                held = _held_by_corners if outline.corners.shape[1] <= FEW else _held_by_angle
-                left = left[~held(p[:, left], d[:, left], outline)]
-                found.append(left + first)
+                ways = d.take(left, axis=1)
+                kept = ~held(depths.take(left), ways, outline, off)
+                if outline.limits is not None:
+                    kept &= ~_along(p[:, left], ways, outline.limits)
+                found.append(left[kept] + first)
     return np.concatenate(found) if found else np.zeros(0, dtype=np.int64)
 
 
-def _held_by_box(p: Floats, d: Floats, outline: Outline) -> Flags:
+def _depths(p: Floats, d: Floats, outline: Outline) -> tuple[Floats, Floats]:
+    """Return d x (c - p), and a box about c such that moving c within it covers the error."""
     g_x, g_y = outline.centre[0] - p[0], outline.centre[1] - p[1]
-    r_x, r_y = outline.reach + np.array([8 * UNIT * _largest(g_x), 8 * UNIT * _largest(g_y)])
+    off = 8 * UNIT * np.array([_largest(g_x), _largest(g_y)])
     g_y *= d[0]
     g_x *= d[1]
     g_y -= g_x
-    lowest = np.abs(d[0], out=g_x)
-    lowest *= r_y
+    return g_y, off
+
+
+def _margins(d: Floats, box: Floats) -> Floats:
+    """Return by how much d x q can change while q moves within half of a box."""
+    margins: Floats = np.abs(d[0])
+    margins *= box[1]
     other = np.abs(d[1])
-    other *= r_x
-    lowest += other
-    lowest += TINY
-    return np.asarray(g_y > lowest)
+    other *= box[0]
+    margins += other
+    margins += TINY
+    return margins
 
 
-def _held_by_corners(p: Floats, d: Floats, outline: Outline) -> Flags:
+def _held_by_corners(depths: Floats, d: Floats, outline: Outline, off: Floats) -> Flags:
     q_x, q_y = outline.corners
-    left, right = d[0] * (outline.centre[1] - p[1]), d[1] * (outline.centre[0] - p[0])
-    lowest = (np.column_stack([q_y, -q_x]) @ d).min(axis=0)
-    bound = 6 * UNIT * (np.abs(left) + np.abs(right)) + TINY
-    bound += np.abs(d[0]) * (4 * UNIT * np.abs(q_y).max() + outline.error[1])
-    bound += np.abs(d[1]) * (4 * UNIT * np.abs(q_x).max() + outline.error[0])
-    held = left - right + lowest > bound
-    if outline.limits is not None:
-        held |= _along(p, d, outline.limits)
-    return np.asarray(held)
+    lowest = np.minimum.reduce(np.column_stack([q_y, -q_x]) @ d)
+    lowest += depths
+    return np.asarray(lowest > _margins(d, off + _corner_errors(outline)))
 
 
-def _held_by_angle(p: Floats, d: Floats, outline: Outline) -> Flags:
+def _corner_errors(outline: Outline) -> Floats:
+    errors: Floats = 8 * UNIT * np.abs(outline.corners).max(axis=1) + outline.error
+    return errors
+
+
+def _held_by_angle(depths: Floats, d: Floats, outline: Outline, off: Floats) -> Flags:
     """Ask about the corner where the sides' ways pass d, and its neighbours, if the sides beyond surely turn away."""
     assert outline.ways is not None
     count = outline.ways.shape[1]
     near = np.searchsorted(angle_keys(outline.ways.T), angle_keys(d.T))
-    left, right = d[0] * (outline.centre[1] - p[1]), d[1] * (outline.centre[0] - p[0])
-    q_x, q_y = np.abs(outline.corners).max(axis=1)
-    bound = 8 * UNIT * (np.abs(left) + np.abs(right)) + TINY
-    bound += np.abs(d[0]) * (8 * UNIT * q_y + outline.error[1]) + np.abs(d[1]) * (
-        8 * UNIT * q_x + outline.error[0]
-    )
+    margins = _margins(d, off + _corner_errors(outline))
     held = np.ones(len(near), dtype=bool)
     for shift in (-1, 0, 1):
         x, y = outline.corners[:, (near + shift) % count]
-        held &= left - right + (d[0] * y - d[1] * x) > bound
+        held &= depths + (d[0] * y - d[1] * x) > margins
     before, after = outline.ways[:, (near - 2) % count], outline.ways[:, (near + 1) % count]
     return np.asarray(held & _surely_left(before, d) & _surely_left(d, after))
 

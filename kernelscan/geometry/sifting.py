@@ -34,7 +34,7 @@ MANY_SIDES = 100
 
 
 def sift(region: ConvexRegion, rows: Floats, numbers: Indices) -> Indices:
-    """Cut a region by half-planes, and return the numbers of those still in doubt: neither cut by nor surely held.
+    """Cut a region by half-planes, and return the numbers of those not surely held: sides, and those still in doubt.
 
     Parameters
     ----------
@@ -48,19 +48,16 @@ def sift(region: ConvexRegion, rows: Floats, numbers: Indices) -> Indices:
     with np.errstate(over="ignore", invalid="ignore", under="ignore"):
         lines, reach = _lines(rows, region.origin)
         region.reach_to(reach)
-        places = np.arange(len(numbers))
         while region.shape == "area" and len(region.names) <= MANY_SIDES:
             values = np.array(region.corners) @ lines
-            doubtful = np.flatnonzero(~(values.min(axis=0) > region.bound))
-            places, lines = places[doubtful], lines[:, doubtful]
-            if len(places) <= FEW:
+            doubtful = np.flatnonzero(~(np.minimum.reduce(values) > region.bound))
+            deepest = _deepest(values, region.bound) if len(doubtful) > FEW + len(region.names) else []
+            if deepest:
+                region.cut_by_rows(numbers[deepest], rows[deepest])
+            numbers, rows, lines = numbers[doubtful], rows[doubtful], lines[:, doubtful]
+            if not deepest:
                 break
-            deepest = _deepest(values[:, doubtful], region.bound)
-            if not len(deepest):
-                break
-            region.cut_by_rows(numbers[places[deepest]], rows[places[deepest]])
-            places, lines = np.delete(places, deepest), np.delete(lines, deepest, axis=1)
-    return numbers[places]
+    return numbers
 
 
 def _lines(rows: Floats, origin: tuple[float, float]) -> tuple[Floats, float]:
@@ -74,10 +71,9 @@ def _lines(rows: Floats, origin: tuple[float, float]) -> tuple[Floats, float]:
     return np.array([u, v, u * g_x + v * g_y]), reach
 
 
-def _deepest(values: Floats, bound: float) -> Indices:
+def _deepest(values: Floats, bound: float) -> list[int]:
     """Return the half-planes that have a corner farther outside than any other has, each once, the deepest first."""
     deepest = values.argmin(axis=1)
-    depths = values[np.arange(len(values)), deepest]
-    order = np.argsort(depths)
-    outside = deepest[order[: np.searchsorted(depths[order], -bound)]]
-    return np.array(list(dict.fromkeys(outside.tolist())), dtype=np.int64)
+    depths = values[np.arange(len(values)), deepest].tolist()
+    places = [place for depth, place in sorted(zip(depths, deepest.tolist(), strict=True)) if depth < -bound]
+    return list(dict.fromkeys(places))
