@@ -59,12 +59,21 @@ def _entry(shown: ShownRoom, custom: Custom) -> Entry:
 def _rows(room: str, tag: str, answer: DeviceAnswer, is_cheapest: bool, custom: Custom) -> Iterator[Row]:
     name = clean_text(answer.device.name)
     if not answer.spots:
-        yield Row((room, tag), f"{name}: {shortfall_in_words(answer)}")
+        yield Row((room, tag), f"{name}: {shortfall_in_words(answer)}{_partial_place(answer, custom)}")
         return
     spot = answer.spots[0]
     yield Row((room, tag, MARKS[spot.fixing].word, *_cells(answer, spot, custom)))
     name += " (cheapest)" if is_cheapest else ""
     yield Row((), f"{name}: {set_out_in_words(answer.room, spot.setting_out, custom)}")
+
+
+def _partial_place(answer: DeviceAnswer, custom: Custom) -> str:
+    """Return where the best partial point is, and the aim from there."""
+    if not answer.partial:
+        return ""
+    best = answer.partial[0]
+    x, y = (custom.position(float(value)) for value in best.point)
+    return f" (x {x}, y {y}, aim {degrees(best.aim.bearing) % 360:.0f}°)"
 
 
 def _cells(answer: DeviceAnswer, spot: DeviceSpot, custom: Custom) -> tuple[str, ...]:

@@ -142,6 +142,8 @@ def test_where_no_device_covers_a_room_the_best_partial_point_is_marked_and_the_
     assert "no device covers it" in told
     assert "Slit: its field is too narrow" in told
     assert "does not reach far enough" in told
+    point = next(each.partial[0].point for each in answer.devices if each.partial)
+    assert f"(x {point[0]:.3f}, y {point[1]:.3f}, aim " in told
 
 
 def test_the_mark_up_has_devices_with_attributes_on_their_own_layer() -> None:
