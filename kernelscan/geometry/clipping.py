@@ -199,19 +199,11 @@ class ConvexRegion:
             return
         inside = [s > 0 for s in signs]
         first = len(signs) - inside[::-1].index(False) if inside[0] and inside[-1] else inside.index(True)
-        self._turn_to(first)
-        after = (inside[first:] + inside[:first]).index(False)
-        names, lines, corners = self.names, self.lines, self.corners
-        self.names = [names[-1], *names[:after], i]
-        self.corners = [_cross(line, lines[-1]), *corners[:after], _cross(lines[after - 1], line)]
-        self.lines = [lines[-1], *lines[:after], line]
-
-    def _turn_to(self, k: int) -> None:
-        """Let the cyclic list start at corner k."""
-        if k:
-            self.names = self.names[k:] + self.names[:k]
-            self.lines = self.lines[k:] + self.lines[:k]
-            self.corners = self.corners[k:] + self.corners[:k]
+        names, lines, corners = self.names * 2, self.lines * 2, self.corners * 2
+        end = (inside * 2).index(False, first)
+        self.names = [names[first - 1], *names[first:end], i]
+        self.corners = [_cross(line, lines[first - 1]), *corners[first:end], _cross(lines[end - 1], line)]
+        self.lines = [lines[first - 1], *lines[first:end], line]
 
     def _collapse(self, i: int, signs: list[int]) -> None:
         """No corner is strictly inside: what is left is where the border touches the region."""

@@ -48,16 +48,19 @@ def sift(region: ConvexRegion, rows: Floats, numbers: Indices) -> Indices:
     with np.errstate(over="ignore", invalid="ignore", under="ignore"):
         lines, reach = _lines(rows, region.origin)
         region.reach_to(reach)
+        places = doubtful = np.arange(len(numbers))
         while region.shape == "area" and len(region.names) <= MANY_SIDES:
             values = np.array(region.corners) @ lines
             doubtful = np.flatnonzero(~(np.minimum.reduce(values) > region.bound))
             deepest = _deepest(values, region.bound) if len(doubtful) > FEW + len(region.names) else []
-            if deepest:
-                region.cut_by_rows(numbers[deepest], rows[deepest])
-            numbers, rows, lines = numbers[doubtful], rows[doubtful], lines[:, doubtful]
             if not deepest:
                 break
-    return numbers
+            cutting = places[deepest]
+            region.cut_by_rows(numbers[cutting], rows[cutting])
+            if 2 * len(doubtful) < len(places):
+                places, lines = places[doubtful], lines.take(doubtful, axis=1)
+                doubtful = np.arange(len(places))
+    return numbers[places[doubtful]]
 
 
 def _lines(rows: Floats, origin: tuple[float, float]) -> tuple[Floats, float]:
