@@ -125,7 +125,7 @@ def test_refuses_part_of_a_segment_although_walls_bound_it() -> None:
         verify_kernel(outline, replace(whole, walls=np.array([[0, 1], [0, 5], [0, 2], [0, 6]]), _rings=()))
 
 
-def test_refuses_the_kernel_of_another_room() -> None:
+def test_refuses_a_kernel_that_carries_another_room() -> None:
     whole = visibility_kernel(CRANK)
     elsewhere = visibility_kernel(np.array(CRANK) + [1.0, 0.0])
     with pytest.raises(CertificateError, match="another room"):

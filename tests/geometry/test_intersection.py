@@ -79,6 +79,25 @@ def test_three_ways_agree_on_any_half_planes() -> None:
     assert {("area", True), ("area", False), ("empty", True), ("point", True)} <= set(kinds)
 
 
+@pytest.mark.parametrize("m", [100, 1000, 6000])
+def test_three_ways_agree_on_borders_given_ever_farther_away(m: int) -> None:
+    """Lines through or just beside the corners of a square, by points that are farther and farther from it."""
+    rng = np.random.default_rng(m)
+    box = np.array([(0, 0, 1, 0), (4, 0, 0, 1), (4, 4, -1, 0), (0, 4, 0, -1)], dtype=float)
+    kinds: Counter[str] = Counter()
+    for shift in (0.0, 0.0, 0.0, 1.0, 1.0):
+        ways = rng.integers(-3, 4, (m, 2)).astype(float)
+        ways[(ways == 0).all(axis=1)] = [1, 1]
+        corners = 4.0 * np.column_stack([(ways[:, 1] > 0), (ways[:, 0] < 0)])
+        points = corners + ways * 2.0 ** np.linspace(0, 40, m).astype(int)[:, None]
+        beside = rng.random(m) < 0.1
+        points[beside] = np.nextafter(points[beside], points[beside] + rng.normal(size=(beside.sum(), 2)))
+        points[-1] += shift * 9 * np.array([-ways[-1, 1], ways[-1, 0]])
+        kinds[agreed(half_planes(np.concatenate([box, np.column_stack([points, ways])])).rows).kind] += 1
+    assert kinds["area"] >= 3
+    assert kinds["empty"] >= 1
+
+
 @pytest.mark.parametrize("n", [65, 300, 2000])
 def test_three_ways_agree_on_rooms(n: int) -> None:
     rng = np.random.default_rng(n)

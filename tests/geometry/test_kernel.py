@@ -3,6 +3,7 @@
 from collections import Counter
 from collections.abc import Callable
 from fractions import Fraction
+from itertools import combinations
 from math import cos, inf, pi, sin
 
 import numpy as np
@@ -282,6 +283,20 @@ def inside_or_on(room: list, p: tuple) -> bool:
         if (a[1] > p[1]) != (b[1] > p[1]) and (s > 0) == (b[1] > a[1]):
             odd = not odd
     return odd
+
+
+@fair
+@given(rooms)
+def test_kernel_inside_room(outline: np.ndarray) -> None:
+    """Its corners are, no wall parts two of them, and no corner of the room is strictly inside the kernel."""
+    room = [(Fraction(x), Fraction(y)) for x, y in outline.tolist()]
+    kernel = visibility_kernel(outline)
+    ends = kernel.rationals()
+    assert all(inside_or_on(room, end) for end in ends)
+    assert all(sees(room, p, q) for p, q in combinations(ends, 2))
+    if kernel.kind == "area":
+        sides = list(zip(ends, ends[1:] + ends[:1], strict=True))
+        assert not any(all(cross(p, q, corner) > 0 for p, q in sides) for corner in room)
 
 
 @fair
