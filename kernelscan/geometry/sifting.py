@@ -6,7 +6,8 @@ Method
     All are asked about all corners in one matrix product. Those that surely hold every corner hold the region and are
     dropped. For each corner, the half-plane that has it farthest outside is cut by next; these cut away most of what
     has to go, so the next round drops most of the rest. It ends when no corner is surely outside any more, when so
-    few are left that asking one by one is quicker, or when the region gets too many sides for that.
+    few are left that asking one by one is quicker, or when the region has very many sides, or many while most
+    half-planes are still in doubt.
 Exactness
     Which half-planes are cut by first is a mere hint: the cuts themselves are exact. What is dropped is surely held:
     lines, corners and bound are those of :mod:`~kernelscan.geometry.clipping`, whose proof does not depend on the
@@ -30,6 +31,7 @@ Floats = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.int64]
 
 FEW = 8
+SOME_SIDES = 24
 MANY_SIDES = 100
 
 
@@ -52,6 +54,8 @@ def sift(region: ConvexRegion, rows: Floats, numbers: Indices) -> Indices:
         while region.shape == "area" and len(region.names) <= MANY_SIDES:
             values = np.array(region.corners) @ lines
             doubtful = np.flatnonzero(~(np.minimum.reduce(values) > region.bound))
+            if len(region.names) > SOME_SIDES and 2 * len(doubtful) > len(numbers):
+                break
             deepest = _deepest(values, region.bound) if len(doubtful) > FEW + len(region.names) else []
             if not deepest:
                 break
