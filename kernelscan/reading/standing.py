@@ -94,8 +94,9 @@ def standing_columns(
     patches = _faces(pieces.plus(*around, np.full(len(around[0]), ROOM)), tolerances.snap)
     solid: list[Patch] = []
     wide: list[Patch] = []
-    for patch, where in zip(patches, _holders(patches, rings), strict=True):
-        if where is not None and _drawn_part(patch, pieces) >= LEAST_DRAWN:
+    drawn = _drawn_parts(patches, pieces).tolist()
+    for patch, where, part in zip(patches, _holders(patches, rings), drawn, strict=True):
+        if where is not None and part >= LEAST_DRAWN and _short_side(patch) > tolerances.snap:
             half = _net_area(patch) >= abs(signed_area(rings[where])) / 2
             (wide if half or _short_side(patch) > WIDEST else solid).append(patch)
     found = _outlines(solid, pieces, loose, origin, tolerances)
@@ -190,8 +191,7 @@ def _edges(rings: Sequence[np.ndarray], pieces: Segments) -> tuple[np.ndarray, n
     touched = sorted(set(rings_around(rings, points)[1].tolist()))
     if not touched:
         return np.empty((0, 2)), np.empty((0, 2))
-    chosen = [rings[k] for k in touched]
-    return np.concatenate(chosen), np.concatenate([np.roll(ring, -1, axis=0) for ring in chosen])
+    return _ring_edges([rings[k] for k in touched])
 
 
 def _faces(lines: Segments, snap: float) -> list[Patch]:
@@ -216,13 +216,22 @@ def _holders(patches: Sequence[Patch], rings: Sequence[np.ndarray]) -> list[int 
     return home
 
 
-def _drawn_part(patch: Patch, pieces: Segments) -> float:
-    """Return which part of a patch's edge was drawn as an obstacle."""
-    ring = np.asarray(patch.outline)
-    after = np.roll(ring, -1, axis=0)
-    length = np.hypot(*(after - ring).T)
-    near = np.unique(lines_near((ring + after) / 2, pieces.a, pieces.b, 3 * GRID)[0])
-    return float(length[near].sum() / length.sum())
+def _drawn_parts(patches: Sequence[Patch], pieces: Segments) -> np.ndarray:
+    """Return which part of each patch's edge was drawn as an obstacle."""
+    if not patches:
+        return np.empty(0)
+    rings = [np.asarray(patch.outline) for patch in patches]
+    starts, ends = _ring_edges(rings)
+    owner = np.repeat(np.arange(len(rings)), [len(ring) for ring in rings])
+    length = np.hypot(*(ends - starts).T)
+    near = np.unique(lines_near((starts + ends) / 2, pieces.a, pieces.b, 3 * GRID)[0])
+    drawn = np.bincount(owner[near], length[near], len(rings))
+    return np.asarray(drawn / np.bincount(owner, length, len(rings)))
+
+
+def _ring_edges(rings: Sequence[np.ndarray]) -> tuple[np.ndarray, np.ndarray]:
+    """Return the starts and the ends of the edges of rings, ring by ring."""
+    return np.concatenate(rings), np.concatenate([np.roll(ring, -1, axis=0) for ring in rings])
 
 
 def _gross_area(patch: Patch) -> float:
@@ -246,22 +255,26 @@ def _outlines(
     tolerances: Tolerances,
 ) -> list[Outline]:
     """Return what the patches cover together as outlines, without holes, each with a stroke that bounds it."""
+    raw = [np.asarray(whole.outline) for whole in union(patches)] if patches else []
     found = []
-    for whole in union(patches) if patches else ():
-        raw = np.asarray(whole.outline)
-        ring, _ = clean_ring(raw, np.zeros(len(raw), dtype=np.int64), CORNER * tolerances.snap, STRAIGHT)
-        if len(ring) < 3 or not are_simple([ring])[0]:
-            ring = raw
-        stroke = strokes[_nearest_stroke(raw, pieces)]
-        found.append(Outline(ring + origin, abs(signed_area(ring)), stroke))
+    for ring, stroke in zip(raw, _nearest_strokes(raw, pieces), strict=True):
+        cleaned, _ = clean_ring(ring, np.zeros(len(ring), dtype=np.int64), CORNER * tolerances.snap, STRAIGHT)
+        sound = len(cleaned) > 2 and bool(are_simple([cleaned])[0])
+        outline = cleaned if sound else ring
+        found.append(Outline(outline + origin, abs(signed_area(outline)), strokes[stroke]))
     return found
 
 
-def _nearest_stroke(ring: np.ndarray, pieces: Segments) -> int:
-    """Return the first stroke that an edge of a ring lies on."""
-    middles = (ring + np.roll(ring, -1, axis=0)) / 2
-    hits = lines_near(middles, pieces.a, pieces.b, 3 * GRID)[1]
-    return int(pieces.stroke[hits].min()) if len(hits) else int(pieces.stroke[0])
+def _nearest_strokes(rings: Sequence[np.ndarray], pieces: Segments) -> list[int]:
+    """Return for each ring the first stroke that an edge of it lies on."""
+    if not rings:
+        return []
+    starts, ends = _ring_edges(rings)
+    owner = np.repeat(np.arange(len(rings)), [len(ring) for ring in rings])
+    k, i = lines_near((starts + ends) / 2, pieces.a, pieces.b, 3 * GRID)
+    first = np.full(len(rings), int(pieces.stroke.max()))
+    np.minimum.at(first, owner[k], pieces.stroke[i])
+    return [int(stroke) for stroke in first]
 
 
 def _left_over(
@@ -274,12 +287,10 @@ def _left_over(
     """Return each piece, and the room, whose middle is in a room, off its outline, and not on or in what is known."""
     middles = (pieces.a + pieces.b) / 2
     k, room = rings_around(rings, middles)
-    starts = np.concatenate(rings)
-    ends = np.concatenate([np.roll(ring, -1, axis=0) for ring in rings])
+    starts, ends = _ring_edges(rings)
     out = set(lines_near(middles, starts, ends, off)[0].tolist())
     if known:
-        starts = np.concatenate(known)
-        ends = np.concatenate([np.roll(ring, -1, axis=0) for ring in known])
+        starts, ends = _ring_edges(known)
         out |= set(lines_near(middles, starts, ends, 2 * (off if snap is None else snap))[0].tolist())
         out |= set(rings_around(known, middles)[0].tolist())
     return [(i, r) for i, r in zip(k.tolist(), room.tolist(), strict=True) if i not in out]
@@ -307,15 +318,19 @@ def _open(
 def _wide(
     patches: Sequence[Patch], pieces: Segments, strokes: Sequence[Stroke], origin: np.ndarray
 ) -> list[Problem]:
-    """Return a problem for each patch that lines of obstacle layers enclose and that is too wide for a column."""
+    """Return a problem for each layer whose lines enclose what is too wide for a column."""
+    groups: dict[str, list[tuple[Patch, Stroke]]] = defaultdict(list)
+    rings = [np.asarray(patch.outline) for patch in patches]
+    for patch, stroke in zip(patches, _nearest_strokes(rings, pieces), strict=True):
+        groups[strokes[stroke].layer].append((patch, strokes[stroke]))
     problems = []
-    for patch in patches:
-        ring = np.asarray(patch.outline)
-        stroke = strokes[_nearest_stroke(ring, pieces)]
-        x, y = (inner_points([ring])[0] + origin).tolist()
+    for layer, its in sorted(groups.items()):
+        patch, first = max(its, key=lambda pair: _gross_area(pair[0]))
+        x, y = (inner_points([np.asarray(patch.outline)])[0] + origin).tolist()
+        cells = "an area" if len(its) == 1 else f"{len(its)} areas"
         text = (
-            f"lines on layer {stroke.layer} enclose {_gross_area(patch):.2f} m2, too much for a column; left out, "
-            "a closed outline would block sight"
+            f"lines on layer {layer} enclose {cells} of up to {_gross_area(patch):.2f} m2, too much for a column; "
+            "left out, but a closed outline would block sight"
         )
-        problems.append(Problem("wide-obstacle", text, (x, y), Source(stroke.layer, stroke.handle)))
+        problems.append(Problem("wide-obstacle", text, (x, y), Source(layer, first.handle)))
     return problems
