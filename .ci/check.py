@@ -8,7 +8,7 @@ import sys
 from pathlib import Path
 
 ROOT = Path(__file__).resolve().parent.parent
-TESTS = ("tests and coverage", ["-m", "pytest", "--cov"])
+TESTS = ("tests and coverage", ["-m", "pytest", "--cov", "-n", "auto"])
 CHECKS = (
     ("lint", ["-m", "ruff", "check", "."]),
     ("formatting", ["-m", "ruff", "format", "--check", "."]),

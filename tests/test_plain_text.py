@@ -36,6 +36,8 @@ def test_long_text_is_cut_with_a_mark():
 def test_nothing_unprintable_is_left_and_twice_is_once(text):
     line = plain_text(text)
     assert not any(unicodedata.category(sign) in {"Cc", "Cs", "Co", "Cn"} for sign in line)
-    assert not any(unicodedata.bidirectional(sign) in {"RLO", "LRO", "RLE", "LRE", "RLI", "LRI", "FSI"} for sign in line)
+    assert not any(
+        unicodedata.bidirectional(sign) in {"RLO", "LRO", "RLE", "LRE", "RLI", "LRI", "FSI"} for sign in line
+    )
     assert len(line) <= 200
     assert plain_text(line) == line

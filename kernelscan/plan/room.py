@@ -23,7 +23,7 @@ __all__ = [
 
 NameSource = Literal["label", "layer", "number"]
 OpeningKind = Literal["door", "window", "gap", "feature"]
-"""``feature``: no opening, but the place of a small feature that was left out of an outline; it carries nothing either."""
+"""``feature`` is no opening but the place of a small feature left out of an outline; it carries nothing either."""
 Closing = Literal["outline", "walls"]
 
 

@@ -127,7 +127,7 @@ def test_refuses_part_of_a_segment_although_walls_bound_it() -> None:
 
 def test_refuses_a_kernel_that_carries_another_room() -> None:
     whole = visibility_kernel(CRANK)
-    elsewhere = visibility_kernel(np.array(CRANK) + [1.0, 0.0])
+    elsewhere = visibility_kernel(np.array(CRANK) + np.array([1.0, 0.0]))
     with pytest.raises(CertificateError, match="another room"):
         verify_kernel(CRANK, replace(whole, _rings=elsewhere._rings))
 
