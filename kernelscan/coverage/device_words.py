@@ -17,7 +17,7 @@ OBSTRUCTIONS = {
     "distance": "it would be too near a wall",
     "grazing": "it would see a wall at too small an angle",
     "clearance": "it would be too near an opening or a fixture",
-    "several": "more than one of its limits",
+    "several": "more than one of its limits stands in the way",
 }
 """Why a device does not cover a room, as a person says it."""
 

@@ -41,6 +41,7 @@ OTHER_FILES = {
     b"ISO-10303": "an IFC or STEP file",
 }
 REPAIRS_LISTED = 20
+HEADER_BYTES = 2**20
 
 
 def open_drawing(path: Path) -> tuple[Drawing, list[Problem]]:
@@ -60,13 +61,25 @@ def open_drawing(path: Path) -> tuple[Drawing, list[Problem]]:
     head = _first_bytes(path)
     _refuse_other_files(path, head)
     try:
-        return readfile(path), []
+        drawing = readfile(path)
     except Exception as fault:  # the library's faults on damaged bytes are of any kind
         if head.startswith(BINARY_SENTINEL):
             raise InputError(
                 f"{path.name}: a damaged binary DXF ({_reason(fault)}); save it again, as text DXF"
             ) from fault
-    return _recovered(path)
+        drawing, problems = _recovered(path)
+    else:
+        problems = []
+    if not _states_a_unit(path):
+        # The library makes up a unit for a drawing that has no header.
+        drawing.header["$INSUNITS"] = 0
+    return drawing, problems
+
+
+def _states_a_unit(path: Path) -> bool:
+    """Whether the beginning of the file, where a header stands, speaks of a unit at all."""
+    with path.open("rb") as file:
+        return b"$INSUNITS" in file.read(HEADER_BYTES)
 
 
 def _first_bytes(path: Path) -> bytes:

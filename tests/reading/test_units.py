@@ -113,3 +113,16 @@ def test_a_unit_found_out_says_why(tmp_path: Path) -> None:
     (note,) = plan.problems
     assert note.code == "proposed-unit"
     assert note.message == "the unit, m, was found out from the drawing: the only room has 12.0 m2"
+
+
+def test_a_drawing_without_a_header_says_no_unit(tmp_path):
+    """The reading library would make up a unit for it."""
+    lines = ["0", "SECTION", "2", "ENTITIES", "0", "POLYLINE", "8", "A-AREA", "66", "1", "70", "1"]
+    for x, y in [(0, 0), (6000, 0), (6000, 4000), (0, 4000)]:
+        lines += ["0", "VERTEX", "8", "A-AREA", "10", str(x), "20", str(y), "30", "0"]
+    lines += ["0", "SEQEND"]
+    path = tmp_path / "bare.dxf"
+    path.write_text("\n".join([*lines, "0", "ENDSEC", "0", "EOF", ""]), encoding="ascii")
+    with pytest.raises(InputError, match="says no unit"):
+        read_plan(path)
+    assert read_plan(path, unit="mm").rooms[0].area == pytest.approx(24)
