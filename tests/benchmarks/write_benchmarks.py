@@ -8,6 +8,7 @@ import argparse
 import platform
 import sys
 from datetime import UTC, datetime
+from functools import partial
 from importlib.metadata import version
 from math import log10
 from pathlib import Path
@@ -17,12 +18,18 @@ sys.path[:0] = [str(HERE), str(HERE.parent)]
 
 import cases  # noqa: E402 - beside this file
 import svgwrite  # noqa: E402
+import test_visible_speed  # noqa: E402
+
+from kernelscan.geometry.visible import visible_from  # noqa: E402
 
 DOCS = HERE.parent.parent / "docs"
 HEAD = """Written by `tests/benchmarks/write_benchmarks.py`. Medians of runs in which all sides take turns in one
 process; in brackets how many times as long as ours. Our figure is the exact kernel of a ring already made; the others
 work in floats and are not checked. The numpy pass (edge vectors, cross product, comparison) finds nothing: it is the
 limit."""
+VIEWS_HEAD = (
+    """What one eye sees of a room whose rings are already made, beside pyvispoly, an exact library:"""
+)
 SIZES = (10, 30, 100, 300, 1000, 3000, 10_000, 30_000, 100_000, 300_000, 1_000_000)
 LARGEST = {"shapely clipping": 3000, "float deque": 100_000}
 CURVES = {
@@ -85,6 +92,21 @@ def table(chosen: list[cases.Case]) -> list[str]:
     for case in chosen:
         lines.append(row(case, cases.timed(case)))
         print(lines[-1], flush=True)
+    return lines
+
+
+def views() -> list[str]:
+    """Return a table of the visible region beside an independent exact library."""
+    lines = ["| room | visible region | pyvispoly |", "|---|---|---|"]
+    for corners, columns in test_visible_speed.CASES:
+        rings = test_visible_speed.room_of(corners, columns)
+        eye = test_visible_speed.eye_in(rings)
+        sides = [partial(visible_from, rings, eye), test_visible_speed.other_side(rings, eye)]
+        ours, theirs = test_visible_speed.medians(sides, 15 if corners <= 10_000 else 5)
+        others = f"{theirs * 1e3:.2f} ms ({theirs / ours:.2g} x)"
+        row = f"| {corners:,} walls, {columns} columns | {ours * 1e3:.2f} ms | {others} |"
+        print(row, flush=True)
+        lines.append(row)
     return lines
 
 
@@ -158,7 +180,15 @@ def main() -> int:
     figure.parent.mkdir(exist_ok=True)
     plot(growth(), figure)
     head = ["# Benchmarks", "", HEAD, "", setting(), ""]
-    tail = ["", "![Time against n, both axes logarithmic](figures/growth.svg)", ""]
+    tail = [
+        "",
+        "![Time against n, both axes logarithmic](figures/growth.svg)",
+        "",
+        VIEWS_HEAD,
+        "",
+        *views(),
+        "",
+    ]
     (DOCS / "benchmarks.md").write_text("\n".join(head + lines + tail), encoding="utf-8", newline="\n")
     return 0
 
