@@ -26,10 +26,13 @@ from kernelscan.geometry.linear_programs import deepest_point, least_slack
 from kernelscan.plan import Room, WallRef
 from kernelscan.tolerances import Tolerances
 
-__all__ = ["ConflictWall", "Reasons", "why_no_point"]
+__all__ = ["TELLING_SHORTFALL", "ConflictWall", "Reasons", "why_no_point"]
 
 Floats = npt.NDArray[np.float64]
 Blame = Literal["outline", "obstacles"]
+
+TELLING_SHORTFALL = 1.0
+"""Metres: a room that falls short by more is not a matter of small features, and the figure tells a fitter nothing."""
 
 SMALL = 0.5
 """Metres: features up to this depth are named as such."""

@@ -57,6 +57,12 @@ class Custom:
             return feet_and_inches(_down(metres / 0.0254 * 16) / 16 * 0.0254)
         return f"{_down(metres * 1000)}"
 
+    def length_up(self, metres: float) -> str:
+        """Return a length with its unit, rounded up to the millimetre or the sixteenth of an inch."""
+        if self.imperial:
+            return feet_and_inches(_up(metres / 0.0254 * 16) / 16 * 0.0254)
+        return f"{_up(metres * 1000)} mm"
+
     def length(self, metres: float) -> str:
         """Return a length with its unit."""
         return feet_and_inches(metres) if self.imperial else f"{metres:.2f} m"

@@ -3,7 +3,7 @@
 from collections.abc import Iterator, Sequence
 
 from kernelscan.coverage.hidden import Hidden
-from kernelscan.coverage.reasons import Reasons
+from kernelscan.coverage.reasons import TELLING_SHORTFALL, Reasons
 from kernelscan.coverage.wording import Custom, angle_in_words, kernel_in_words
 from kernelscan.markup.schedule import Entry, Form, Row, Schedule, measured
 from kernelscan.markup.shown import ShownRoom
@@ -15,7 +15,7 @@ __all__ = ["remarks", "room_schedule", "tried_in_words"]
 NAME_WIDTH = 30.0
 NOTES = (
     "x and y are counted from the drawing's own origin. Field: horizontal field of view needed there. "
-    "Range: to the farthest corner. Off by: how far the device may be off and still see every wall."
+    "Range: to the farthest corner. Off by: how far the device may be off with every wall in line of sight."
 )
 
 
@@ -91,11 +91,10 @@ def _why_not(shown: ShownRoom, custom: Custom) -> Iterator[str]:
 
 def _tried(reasons: Reasons, custom: Custom) -> Iterator[str]:
     yield from reasons.because
-    step = 0.0254 / 16 if custom.imperial else 0.001
-    unit = "" if custom.imperial else " mm"
-    yield f"The room falls short by {custom.tolerance_down(reasons.shortfall + step)}{unit}."
+    if 0 < reasons.shortfall <= TELLING_SHORTFALL:
+        yield f"The room falls short by {custom.length_up(reasons.shortfall)}."
     if reasons.least is not None and reasons.least.depth > 0:
-        deep = f"{custom.tolerance_down(reasons.least.depth + step)}{unit}"
+        deep = custom.length_up(reasons.least.depth)
         yield f"Without small features up to {deep} deep the outline would have such points."
     x, y = (custom.position(float(value)) for value in reasons.best.point)
     yield f"{TRIED_LETTER} at x {x}, y {y}: {tried_in_words(reasons, custom)}."

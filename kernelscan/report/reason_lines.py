@@ -6,17 +6,15 @@ from math import ceil
 from kernelscan.coverage import RoomAnswer
 from kernelscan.coverage.features import Feature
 from kernelscan.coverage.hidden import Hidden
+from kernelscan.coverage.reasons import TELLING_SHORTFALL
 from kernelscan.coverage.wording import Custom
 from kernelscan.plan import Plan
-from kernelscan.report.wording import drawn_position, tolerance_in_words
+from kernelscan.report.wording import drawn_position
 
 __all__ = ["feature_lines", "reason_lines"]
 
 PATCHES = 3
 """How many hidden patches are told one by one."""
-
-TELLING = 1.0
-"""Metres: a room that falls short by more is not a matter of small features, and the figure tells a fitter nothing."""
 
 SLACK = 1e-6
 """In the last place: what is whole but for its rounding is not pushed over."""
@@ -28,8 +26,9 @@ def reason_lines(plan: Plan, answer: RoomAnswer) -> Iterator[str]:
     if reasons is None:
         return
     yield from reasons.because
-    if 0 < reasons.shortfall <= TELLING:
-        yield f"It falls short by {_up_in_words(plan, reasons.shortfall)}: so far would every wall have to give way."
+    if 0 < reasons.shortfall <= TELLING_SHORTFALL:
+        short = Custom(plan.unit.imperial).length_up(reasons.shortfall)
+        yield f"It falls short by {short}: so far would every wall have to give way."
     used = 0.0 if answer.tolerant is None else answer.tolerant.simplified.depth
     if reasons.least is not None and reasons.least.depth > used:
         advice = ceil(reasons.least.depth * 1000 - SLACK) / 1000
@@ -72,9 +71,3 @@ def _hidden(plan: Plan, hidden: Hidden) -> str:
         f"it does not see {custom.area(hidden.floor_hidden)} {custom.area_unit} of the floor{patches}, "
         f"and {custom.length(hidden.wall_hidden)} of the walls"
     )
-
-
-def _up_in_words(plan: Plan, metres: float) -> str:
-    """A length rounded up to the millimetre or the sixteenth of an inch."""
-    step = 0.0254 / 16 if plan.unit.imperial else 0.001
-    return tolerance_in_words(plan, ceil(metres / step - SLACK) * step)
