@@ -1,4 +1,4 @@
-"""Draws the sample plans: six buildings of one invented site, a community workshop with a library.
+"""Draws the sample plans: seven buildings of one invented site, a community workshop with a library.
 
 ``python sample_plans/make_samples.py`` writes them anew beside this file, or into the folder given as only argument.
 The same bytes come out every time. The drawings themselves are in ``straight_plans.py`` and ``curved_plans.py``.
@@ -11,7 +11,7 @@ from pathlib import Path
 from curved_plans import library, pavilion
 from drafting import write_drawing
 from ezdxf.document import Drawing
-from straight_plans import annex, mezzanine, studios, workshop
+from straight_plans import annex, mezzanine, small_features, studios, workshop
 
 __all__ = ["SAMPLES", "main"]
 
@@ -22,6 +22,7 @@ SAMPLES: dict[str, Callable[[], Drawing]] = {
     "studios-in-blocks": studios,
     "mezzanine": mezzanine,
     "pavilion-on-survey-grid": pavilion,
+    "small-features": small_features,
 }
 """File names without ``.dxf``, and what draws them."""
 

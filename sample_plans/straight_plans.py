@@ -18,7 +18,7 @@ from ezdxf.enums import TextEntityAlignment
 from ezdxf.layouts.base import BaseLayout
 from ezdxf.math import Vec3
 
-__all__ = ["annex", "mezzanine", "studios", "workshop"]
+__all__ = ["annex", "mezzanine", "small_features", "studios", "workshop"]
 
 
 def workshop() -> Drawing:
@@ -237,4 +237,33 @@ def mezzanine() -> Drawing:
     pen.shelf(12.55, 0.05, 16.2, 0.4)
     pen.dimension((0, 0), (16.25, 0), 0.9)
     pen.note("MEZZANINE, DIMENSIONS IN METRES", (0, -1.9))
+    return doc
+
+
+def small_features() -> Drawing:
+    """Millimetres: five store rooms of 6 x 4 m, each with one small thing that upsets an exact answer, or seems to."""
+    doc = new_drawing(MILLIMETRE)
+    pen = Pen(doc.modelspace(), text_height=250)
+    rooms: dict[str, list[Pair]] = {
+        "Pilaster": [
+            (0, 0), (2800, 0), (2800, 200), (3200, 200), (3200, 0), (6000, 0), (6000, 4000), (0, 4000),
+        ],
+        "Window reveal": [
+            (0, 0), (6000, 0), (6000, 4000), (3800, 4000), (3800, 4150), (2000, 4150), (2000, 4000), (0, 4000),
+        ],
+        "Skirting jog": [(0, 0), (3000, 0), (3000, 20), (6000, 20), (6000, 4000), (0, 4000)],
+        "Chamfer": [(0, 0), (5700, 0), (6000, 300), (6000, 4000), (0, 4000)],
+        "Column": rectangle(0, 0, 6000, 4000),
+    }  # fmt: skip
+    placed, doors = [], []
+    for number, (name, outline) in enumerate(rooms.items()):
+        x0 = 200 + 6200 * number
+        placed.append([(x0 + x, 200 + y) for x, y in outline])
+        pen.closed("A-AREA", placed[-1])
+        pen.tag(name, (x0 + 4300, 1500))
+        doors.append(Door((x0 + 5400, 4200), (x0 + 4500, 4200), (0, 200)))
+    pen.walls([*placed, rectangle(0, 0, 31200, 4400)], [*doors, Window((8400, 4350), (10200, 4350), (0, 50))])
+    pen.closed("A-COLS", rectangle(27200, 1850, 27500, 2150))
+    pen.dimension((0, 0), (31200, 0), 900)
+    pen.note("STORE ROOMS, DIMENSIONS IN MILLIMETRES", (0, -1900))
     return doc

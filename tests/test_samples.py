@@ -15,13 +15,14 @@ from ezdxf.disassemble import recursive_decompose
 from ezdxf.math import Vec2
 
 from kernelscan import Plan, Room, read_plan, verify_kernel, visibility_kernel
-from kernelscan.coverage import room_zones
+from kernelscan.coverage import room_answer, room_zones
 
 NAMES = (
     "annex-feet-and-inches",
     "library-wing",
     "mezzanine",
     "pavilion-on-survey-grid",
+    "small-features",
     "studios-in-blocks",
     "workshop-ground-floor",
 )
@@ -56,6 +57,13 @@ STRAIGHT = {
     "studios-in-blocks": [(f"Studio {n}", 4.8 * 6 - 1.2 * 1.8, "area", 3.6 * 4.2) for n in range(1, 7)],
     "mezzanine": [("Crossing", 16 + 4 * 4, "point", 0), ("Landing", 2 * 16, "segment", 0)],
     "pavilion-on-survey-grid": [("Garden room", 44, "area", 36)],
+    "small-features": [
+        ("Pilaster", 24 - 0.4 * 0.2, "empty", 0),
+        ("Window reveal", 24 + 1.8 * 0.15, "area", 1.8 * 4),
+        ("Skirting jog", 24 - 3 * 0.02, "area", 3 * 3.98),
+        ("Chamfer", 24 - 0.3**2 / 2, "area", 24 - 0.3**2 / 2),
+        ("Column", 24 - 0.3**2, "empty", 0),
+    ],
 }
 
 # The true arcs, by hand: area of the segment of a circle of radius r and angle a is r^2 (a - sin a) / 2.
@@ -244,6 +252,9 @@ OPENINGS = {
     "studios-in-blocks": {f"Studio {n}": (1, 2) for n in range(1, 7)},
     "mezzanine": {"Crossing": (2, 2), "Landing": (2, 2), "Room 3": (1, 0)},
     "pavilion-on-survey-grid": {"Garden room": (1, 1), "Grotto Room": (0, 0)},
+    "small-features": {
+        "Pilaster": (1, 0), "Window reveal": (1, 1), "Skirting jog": (1, 0), "Chamfer": (1, 0), "Column": (1, 0),
+    },
 }  # fmt: skip
 
 
@@ -398,3 +409,26 @@ def test_outlines_on_the_layer_switched_off_are_noted(plans: dict[str, Plan]) ->
     assert [
         problem for problem in plans["workshop-ground-floor"].problems if "A-AREA-PREV" in problem.message
     ]
+
+
+# By hand: 6 x 4 m without the feature; of the jog the longer part of the wall stays, and of equal ones the inner.
+WITHOUT_FEATURES = {
+    "Pilaster": ("area", 24),
+    "Window reveal": ("area", 24),
+    "Skirting jog": ("area", 6 * 3.98),
+    "Chamfer": ("area", 24),
+    "Column": ("empty", 0),
+}
+
+
+@pytest.mark.parametrize("name", WITHOUT_FEATURES)
+def test_small_features_left_out(name: str, plans: dict[str, Plan]) -> None:
+    """Exact and tolerant answers are those that an experienced fitter would expect; a column stays a column."""
+    answer = room_answer(room_named(plans["small-features"], name), ignore_depth=0.25)
+    assert answer.tolerant is not None
+    kernel = answer.tolerant.zones.kernel
+    assert (kernel.kind, kernel.area) == (WITHOUT_FEATURES[name][0], pytest.approx(WITHOUT_FEATURES[name][1]))
+    assert len(answer.tolerant.simplified.features) == (0 if name == "Column" else 1)
+    for hidden in answer.tolerant.hidden:
+        assert hidden is not None
+        assert hidden.floor_fraction > 0.95

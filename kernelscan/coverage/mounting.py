@@ -15,7 +15,7 @@ from math import atan2, inf, pi
 import numpy as np
 
 from kernelscan.coverage.depth import deepest_along, line_depths
-from kernelscan.coverage.surfaces import corners, joint_turns, solid_spans, walls_along
+from kernelscan.coverage.surfaces import corners, joint_turns, runs, solid_spans, walls_along
 from kernelscan.coverage.zones import CornerZone, FloorZone, RoomZones, Spot, WallZone
 from kernelscan.geometry.halfplanes import wall_half_planes
 from kernelscan.geometry.intersection import intersect
@@ -38,7 +38,7 @@ def room_zones(room: Room, tolerances: Tolerances = Tolerances()) -> RoomZones:
     corner_zones = tuple(_corner_zones(room, lines, tolerances.smooth))
     best = (
         _ceiling_spot(room, kernel, lines),
-        _best(_wall_spot(room, zone, lines) for zone in walls),
+        _best(_wall_spot(room, zone, lines, tolerances.smooth) for zone in walls),
         _best(zone.spot for zone in corner_zones if zone.spot.field_of_view < pi),
     )
     recommended = tuple(spot for spot in best if spot is not None)
@@ -110,16 +110,17 @@ def _deepest(vertices: np.ndarray) -> np.ndarray:
     return inner.mean(axis=0) if len(inner) else deepest.point
 
 
-def _wall_spot(room: Room, zone: WallZone, lines: np.ndarray) -> Spot:
+def _wall_spot(room: Room, zone: WallZone, lines: np.ndarray, smooth: float) -> Spot:
     """The spot of a stretch that may be missed by most, without leaving the kernel or coming onto an opening."""
     others = lines[~walls_along(room, zone.walls, lines)]
     # A round room is one zone along all of its wall: then the device is to stay on its own side of it.
     most = inf if len(others) else deepest_point([room.outline]).radius
+    run = {wall for run in runs(room, smooth) if zone.walls[0] in run for wall in run}
+    openings = [room.opening_ends(each) for each in room.openings if each.wall in run]
     best: tuple[float, np.ndarray, WallRef] | None = None
     for wall, (start, end) in zip(zone.walls, pairwise(zone.path), strict=True):
-        openings = [room.opening_ends(each) for each in room.openings if each.wall == wall]
 
-        def depth(points: np.ndarray, openings: list[np.ndarray] = openings) -> np.ndarray:
+        def depth(points: np.ndarray) -> np.ndarray:
             off = [np.hypot(*(points - ends[k]).T) for ends in openings for k in (0, 1)]
             depths = line_depths(points, others).min(axis=1, initial=most)
             return np.asarray(np.min([depths, *off], axis=0))
