@@ -4,7 +4,7 @@ The places are those of :mod:`kernelscan.coverage.device_zones`, as far as the d
 is what they ask for. Where there is none, each limit is lifted in turn to find the one that is to blame.
 """
 
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import replace
 from math import cos, inf, pi, sin
 
@@ -24,6 +24,9 @@ from kernelscan.tolerances import Tolerances
 __all__ = ["device_answer"]
 
 Floats = npt.NDArray[np.float64]
+
+ALTERNATIVES = 3
+"""How many further spots are offered."""
 
 ENOUGH = 1e-9
 """Radians by which a field may fall short."""
@@ -55,7 +58,8 @@ def device_answer(
     found = _found(room, device, limits, tolerances)
     spots = tuple(_spots(room, device, limits, found, step, near))
     if spots:
-        return DeviceAnswer(room, device, limits, *found, spots, None, ())
+        others = _alternatives(room, device, limits, found, spots, step)
+        return DeviceAnswer(room, device, limits, *found, spots, None, (), others)
     obstruction, without = _obstruction(room, device, limits, tolerances)
     partial = _partial_spots(room, device, limits, without)
     return DeviceAnswer(room, device, limits, *found, (), obstruction, partial)
@@ -109,6 +113,20 @@ def _spots(
             yield _place_spot(room, device, limits, *_chosen(walls, near), step, near)
         elif fixing == "corner" and nooks:
             yield _place_spot(room, device, limits, *_chosen(nooks, near), 0.0, near)
+
+
+def _alternatives(
+    room: Room, device: Device, limits: Limits, found: Found, spots: Sequence[DeviceSpot], step: float
+) -> tuple[DeviceSpot, ...]:
+    """The best spots of the places, walls and corners, on which no chosen spot is."""
+    taken = {spot.walls for spot in spots}
+    _, walls, nooks = found
+    places = [(place, place.best()) for place in (*walls, *nooks) if place.walls not in taken]
+    places.sort(key=lambda each: -round(float(each[0].tolerances(each[1][None])[0]), 6))
+    return tuple(
+        _place_spot(room, device, limits, place, best, step if place.fixing == "wall" else 0.0, None)
+        for place, best in places[:ALTERNATIVES]
+    )
 
 
 def _chosen(places: Iterable[Place], near: Floats | None) -> tuple[Place, Floats]:

@@ -93,6 +93,8 @@ class DeviceAnswer:
         Where on the walls, and in which corners, it may be fixed.
     spots
         The best spot of each fixing that covers the whole room, in the device's order of preference.
+    alternatives
+        The best spots of other places, that which may be missed by most first.
     obstruction
         What keeps it from that when there is no spot.
     partial
@@ -108,6 +110,7 @@ class DeviceAnswer:
     spots: tuple[DeviceSpot, ...]
     obstruction: Obstruction | None
     partial: tuple[PartialSpot, ...]
+    alternatives: tuple[DeviceSpot, ...] = ()
 
     @property
     def covers(self) -> bool:

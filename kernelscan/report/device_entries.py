@@ -100,6 +100,7 @@ class DeviceEntry(TypedDict):
     obstruction: str | None
     zones: DeviceZonesEntry
     spots: list[DeviceSpotEntry]
+    alternatives: list[DeviceSpotEntry]
     partial: list[PartialEntry]
 
 
@@ -123,6 +124,7 @@ def _entry(answer: DeviceAnswer, is_cheapest: bool) -> DeviceEntry:
             "corners": [_position(place.ends[0]) for place in answer.corners],
         },
         "spots": [_spot(spot) for spot in answer.spots],
+        "alternatives": [_spot(spot) for spot in answer.alternatives],
         "partial": [_partial(spot) for spot in answer.partial[:PARTIAL_SPOTS]],
     }
 

@@ -242,3 +242,12 @@ def test_no_tried_aim_sees_more_floor(seed):
 def test_all_round_sees_all_from_the_kernel():
     aim = best_aim(room(L_ROOM), np.array([1.0, 1.0]), 2 * pi)
     assert (aim.floor, aim.wall) == (pytest.approx(1), pytest.approx(1))
+
+
+def test_alternatives_are_ranked_and_elsewhere():
+    found = answer(room(RECTANGLE), replace(WALL_SENSOR, fixings=("wall", "corner")))
+    assert len(found.alternatives) == 3
+    tolerances = [spot.tolerance for spot in found.alternatives]
+    assert tolerances == sorted(tolerances, reverse=True)
+    assert not {spot.walls for spot in found.alternatives} & {spot.walls for spot in found.spots}
+    assert answer(room(L_ROOM), CORNER_CAMERA).alternatives == ()
