@@ -21,13 +21,11 @@ __all__ = [
     "Patch",
     "are_simple",
     "area",
-    "common_area",
     "covers_points",
     "crossing_place",
     "deepest_point",
     "difference",
     "faces_between",
-    "faces_of_lines",
     "inner_points",
     "interior_point",
     "intersection",
@@ -37,7 +35,6 @@ __all__ = [
     "meetings_of_rings",
     "nearest_point",
     "neighbouring_lines",
-    "noded_lines",
     "overlap_areas",
     "rings_around",
     "union",
@@ -57,11 +54,6 @@ class Patch(NamedTuple):
 def area(patch: Patch) -> float:
     """Return the area of a patch, its holes taken off."""
     return float(_polygon(patch).area)
-
-
-def common_area(a: Patch, b: Patch) -> float:
-    """Return the area of what two patches share."""
-    return float(_polygon(a).intersection(_polygon(b)).area)
 
 
 def covers_points(patch: Patch, points: npt.ArrayLike) -> npt.NDArray[np.bool_]:
@@ -103,18 +95,6 @@ def nearest_point(patch: Patch, point: Floats) -> Floats:
     """Return the point of a patch, ``(2,)``, that is nearest to a given one."""
     line = shapely.shortest_line(_polygon(patch), shapely.Point(point))
     return np.asarray(shapely.get_coordinates(line)[0])
-
-
-def noded_lines(lines: Iterable[npt.ArrayLike]) -> list[Floats]:
-    """Return the lines, each ``(k, 2)``, cut wherever two of them meet."""
-    noded = shapely.node(shapely.MultiLineString([np.asarray(line, dtype=np.float64) for line in lines]))
-    return [shapely.get_coordinates(line) for line in shapely.get_parts(noded)]
-
-
-def faces_of_lines(lines: Iterable[npt.ArrayLike]) -> list[Patch]:
-    """Return the bounded faces between lines that meet only at their ends, such as :func:`noded_lines` makes."""
-    strings = [shapely.LineString(np.asarray(line, dtype=np.float64)) for line in lines]
-    return _patches(shapely.polygonize(strings))
 
 
 def _polygon(patch: Patch) -> shapely.Polygon:

@@ -7,14 +7,11 @@ from kernelscan.geometry.rings import as_ring, as_rings, signed_area
 from kernelscan.geometry.shapes import (
     Patch,
     area,
-    common_area,
     covers_points,
     difference,
-    faces_of_lines,
     interior_point,
     intersection,
     neighbouring_lines,
-    noded_lines,
     union,
 )
 
@@ -32,12 +29,6 @@ def total(patches: list[Patch]) -> float:
 
 def test_area_takes_holes_off() -> None:
     assert area(FRAME) == 96
-
-
-def test_common_area_of_overlapping_apart_and_touching_patches() -> None:
-    assert common_area(FRAME, Patch(rectangle(5, 5, 12, 12))) == 24
-    assert common_area(FRAME, Patch(rectangle(11, 0, 12, 1))) == 0
-    assert common_area(FRAME, Patch(rectangle(10, 0, 12, 1))) == 0
 
 
 def test_points_on_the_edge_are_covered_and_points_in_a_hole_are_not() -> None:
@@ -100,14 +91,6 @@ def test_a_label_point_keeps_away_from_walls_and_holes(dx: float, dy: float) -> 
     x, y = interior_point(outline, [hole])
     assert covers_points(Patch(outline, [hole]), [(x, y)]).all()
     assert np.hypot(x - dx - 1.5, y - dy - 1.5) > 2
-
-
-def test_lines_are_cut_where_they_meet_and_close_faces() -> None:
-    lines = [[(0, 0), (4, 0)], [(0, 2), (4, 2)], [(0, -1), (0, 3)], [(4, -1), (4, 3)], [(2, -1), (2, 3)]]
-    noded = noded_lines(lines)
-    assert len(noded) == 4 + 9
-    assert sorted(area(face) for face in faces_of_lines(noded)) == [4, 4]
-    assert faces_of_lines(lines) == []
 
 
 def test_neighbouring_lines_are_those_no_farther_off() -> None:
