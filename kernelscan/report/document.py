@@ -91,6 +91,7 @@ def _room(room: Room) -> RoomEntry:
         "name_from": room.name_from,
         "layer": room.source.layer,
         "handle": room.source.handle,
+        "closed_by": room.closed_by,
         "outline": _positions(room.outline),
         "holes": [_positions(hole) for hole in room.holes],
         "area": room.area,

@@ -150,6 +150,7 @@ class RoomEntry(TypedDict):
     name_from: str
     layer: str
     handle: str
+    closed_by: str
     outline: list[Position]
     holes: list[list[Position]]
     area: float

@@ -26,7 +26,7 @@ __all__ = ["print_layers", "print_problems", "print_reasons", "print_rooms", "pr
 
 def print_rooms(plan: Plan, out: TextIO) -> None:
     """Print a row for each room: what it is, how large, and what stands or opens in it."""
-    table = table_of("room", "name", "area", "corners", "openings", "obstacles", "layer")
+    table = table_of("room", "name", "area", "corners", "openings", "obstacles", "closed by", "layer")
     for room in plan.rooms:
         table.add_row(
             room.id,
@@ -35,6 +35,7 @@ def print_rooms(plan: Plan, out: TextIO) -> None:
             str(room.corner_count),
             str(room.opening_count),
             str(len(room.obstacles)),
+            room.closed_by,
             cell(room.source.layer),
         )
     print_parts(out, _heading(plan), *_no_rooms(plan), table)
